@@ -1,0 +1,121 @@
+"""Matched controls: the effector with an empty driver, and the driver with no effector.
+
+Controls are targets like any other: same sex, number, age and date as the flies that they are controls for, made by the
+same kind of crosses, so that whatever the driver or the effector does alone can be told from what they do together.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Mapping, Sequence
+from dataclasses import dataclass, replace
+
+from crossplan.genetics.catalogue import Catalogue
+from crossplan.plan.screen_file import WantedTarget
+from crossplan.schemes.batch import Asked, ControlKind
+from crossplan.schemes.target import Carried, base_name, find_component
+
+#: component classes that turn an effector on, and those that are turned on
+DRIVERS = frozenset(("AD", "DBD", "GAL4", "LexA"))
+EFFECTORS = frozenset(("effector", "reporter"))
+
+
+@dataclass(frozen=True)
+class WithControls:
+    """Targets with their controls behind them, and what could not be added."""
+
+    asked: tuple[Asked, ...]
+    remarks: tuple[str, ...]
+
+
+def component_class(name: str, shelf: Mapping[str, Carried], catalogue: Catalogue) -> str:
+    """Return the class of a component (`AD`, `DBD`, `effector`, ...); empty when nothing tells."""
+    found = find_component(name, shelf)
+    if isinstance(found, Carried) and found.element.component:
+        return found.element.component
+    entry = catalogue.component(base_name(name))
+    return entry.cls if entry is not None else ""
+
+
+def empty_parts(shelf: Mapping[str, Carried], named: Sequence[str]) -> dict[tuple[str, str], str]:
+    """Return the empty half-driver or driver for each (class, site), as the screen names them or by the word `empty`."""
+    chosen = [shelf[s] for s in named if s in shelf] or [
+        c for symbol, c in sorted(shelf.items()) if "empty" in base_name(symbol).lower()
+    ]
+    found: dict[tuple[str, str], str] = {}
+    for carried in chosen:
+        element = carried.element
+        if element.component in DRIVERS:
+            found.setdefault((element.component, element.site), element.symbol)
+            found.setdefault((element.component, ""), element.symbol)
+    return found
+
+
+def with_controls(
+    targets: Iterable[WantedTarget], shelf: Mapping[str, Carried], catalogue: Catalogue, named_empty: Sequence[str]
+) -> WithControls:
+    """Return the targets, each followed by the control without effector, and one empty-driver control an effector."""
+    empties = empty_parts(shelf, named_empty)
+    asked: list[Asked] = []
+    empty_controls: dict[tuple[object, ...], Asked] = {}
+    remarks: dict[str, None] = {}
+    no_effector: dict[tuple[object, ...], Asked] = {}
+    for target in targets:
+        asked.append(Asked(target))
+        if target.stock:
+            continue
+        classes = {name: component_class(name, shelf, catalogue) for name, _ in target.components}
+        drivers = tuple((n, k) for n, k in target.components if classes[n] in DRIVERS)
+        effectors = tuple((n, k) for n, k in target.components if classes[n] in EFFECTORS)
+        if not drivers or not effectors:
+            remarks[f"{target.name}: no controls, its driver and effector parts could not be told apart"] = None
+            continue
+        alone = _control(target, drivers, f"{target.name}, no effector", "no effector")
+        no_effector.setdefault((frozenset(drivers), target.sex), alone)
+        replaced = _with_empty(drivers, shelf, classes, empties)
+        if replaced is None:
+            remarks["no empty driver on this shelf: the effector-alone control was left out"] = None
+            continue
+        label = "empty driver, " + " + ".join(base_name(n) for n, _ in effectors)
+        key = (frozenset(replaced + effectors), target.sex)
+        known = empty_controls.get(key)
+        if known is None or known.wanted.flies < target.flies:
+            empty_controls[key] = _control(target, replaced + effectors, label, "empty driver")
+    asked += no_effector.values()
+    asked += _distinct_names(empty_controls.values())
+    return WithControls(tuple(asked), tuple(remarks))
+
+
+def _control(
+    target: WantedTarget, components: tuple[tuple[str, int], ...], name: str, kind: ControlKind
+) -> Asked:
+    of = target.name if kind == "no effector" else "all targets with this effector"
+    return Asked(replace(target, name=name, components=components), of, kind)
+
+
+def _distinct_names(controls: Iterable[Asked]) -> list[Asked]:
+    seen: dict[str, int] = {}
+    distinct = []
+    for control in controls:
+        name = control.wanted.name
+        seen[name] = seen.get(name, 0) + 1
+        if seen[name] > 1:
+            control = replace(control, wanted=replace(control.wanted, name=f"{name} ({seen[name]})"))
+        distinct.append(control)
+    return distinct
+
+
+def _with_empty(
+    drivers: Sequence[tuple[str, int]],
+    shelf: Mapping[str, Carried],
+    classes: Mapping[str, str],
+    empties: Mapping[tuple[str, str], str],
+) -> tuple[tuple[str, int], ...] | None:
+    replaced = []
+    for name, copies in drivers:
+        found = find_component(name, shelf)
+        site = found.element.site if isinstance(found, Carried) else ""
+        empty = empties.get((classes[name], site)) or empties.get((classes[name], ""))
+        if empty is None:
+            return None
+        replaced.append((empty, copies))
+    return tuple(replaced)

@@ -1,0 +1,414 @@
+"""Fewest generations, exhaustively.
+
+Level 0 holds the flies of the shelf; level k + 1 adds every fly that a cross of flies of the levels before gives as a
+pure class of one genotype. A target takes n generations when its last cross joins flies of level n - 1 and no cross
+of earlier levels will do. Levels are searched in order and completely, so the first hit is minimal; the work of
+a scheme (sum over its crosses) decides among the hits of one level, ties by the order of the forms.
+
+What is searched: all crosses between stocks and kept classes, with balancers and markers. What is not: classes of
+recombinants are never kept as parents (they are counted as strangers wherever they occur), and stocks that tie
+chromosomes 2 and 3 together are not used. `SearchResult` says how far the search was complete.
+
+The join of the last cross is done with one boolean table for each chromosome instead of pair by pair; every hit is
+then looked at again with the whole progeny in view before it counts.
+"""
+
+from __future__ import annotations
+
+import heapq
+from collections.abc import Callable, Iterable, Iterator
+from dataclasses import dataclass, field
+from enum import StrEnum
+from itertools import product
+from typing import TYPE_CHECKING
+
+from crossplan.genetics.appearance import Observer
+from crossplan.genetics.chromosome import FEMALE, MALE, PAIRS, Sex
+from crossplan.genetics.fly import Fly
+from crossplan.genetics.survival import cause_of_death, is_fertile, sex_of
+from crossplan.schemes.forms import Form, ReducedShelf
+from crossplan.schemes.segregation import (
+    Child,
+    ChromosomeTable,
+    pickable,
+    reachable_goal,
+    total_share,
+)
+
+if TYPE_CHECKING:
+    import numpy as np
+    from numpy.typing import NDArray
+
+State = tuple[int, int, int, int]
+
+#: hands-on work of one cross, in minutes: setting up and clearing, and looking through flies for one parent of a given
+#: share; virgins from a kept class cost more than virgins from a stock that can be bulked up (our weights; issue of
+#: taste, the order of schemes of equal generations is all that they decide)
+CROSS_MINUTES = 20.0
+SCORE_MINUTES = 1.5
+VIRGIN_FROM_STEP_MINUTES = 10.0
+STOCK_VIRGIN_MINUTES = 5.0
+BALANCED_STOCK_VIRGIN_MINUTES = 8.0
+
+
+class Status(StrEnum):
+    """What a search found out."""
+
+    PROVED_MINIMAL = "proved minimal"
+    FOUND = "found, not proved"
+    IMPOSSIBLE = "proved impossible"
+    LIMIT = "limit reached"
+
+
+class Breeding(StrEnum):
+    """How completely the flies of one level were bred."""
+
+    COMPLETE = "complete"
+    PARTIAL = "partial"
+    NONE = "none"
+
+
+@dataclass(frozen=True)
+class Leaf:
+    """A parent taken from the shelf: the number of its form."""
+
+    form: int
+    sex: Sex
+
+
+@dataclass(frozen=True)
+class Node:
+    """A cross of a scheme, in reduced terms: its parents, and the class that is kept.
+
+    `keep` is the one genotype that an intermediate class holds; None for the last cross, whose class holds every
+    genotype that the wish accepts.
+    """
+
+    mother: Leaf | Node
+    father: Leaf | Node
+    keep: Fly | None
+
+    @property
+    def generation(self) -> int:
+        """Longest run of crosses from a stock to this one, itself counted."""
+        return 1 + max(p.generation if isinstance(p, Node) else 0 for p in (self.mother, self.father))
+
+
+@dataclass(frozen=True)
+class SearchResult:
+    """The answer for one wish: the best schemes of the fewest generations, cheapest first.
+
+    `searched_to` is the number of generations up to which every possibility was tried without a hit below
+    `generations` (or without any hit).
+    """
+
+    status: Status
+    schemes: tuple[Node, ...] = ()
+    generations: int | None = None
+    searched_to: int = 0
+    forms: tuple[Form, ...] = field(default=(), repr=False)
+
+
+@dataclass
+class _Found:
+    """The cheapest way so far to one state."""
+
+    level: int
+    cost: float
+    source: Leaf | tuple[State, State]
+
+
+class _Search:
+    def __init__(self, shelf: ReducedShelf, observer: Observer, kept_schemes: int, budget: int) -> None:
+        self.shelf = shelf
+        self.wish = shelf.wish
+        self.observer = observer
+        self.kept_schemes = kept_schemes
+        self.budget = budget
+        restored = {g for f in shelf.forms for fly in (f.female, f.male) if fly for e in fly.elements()
+                    for g in e.traits.restores}  # fmt: skip
+        self.tables = [ChromosomeTable(name, observer, self.wish, frozenset(restored)) for name in PAIRS]
+        self.found: dict[State, _Found] = {}
+        self._content: dict[tuple[int, int], frozenset[str]] = {}
+        self._bred: set[tuple[State, State]] = set()
+        self._kept: dict[tuple[int, int, int, bool], tuple[Child, ...]] = {}
+        for i, form in enumerate(shelf.forms):
+            for fly in (form.female, form.male):
+                if fly is not None:
+                    self._add_stock(i, fly)
+
+    def _add_stock(self, form: int, fly: Fly) -> None:
+        for table, (_, homologue) in ((t, h) for t, p in zip(self.tables, fly.pairs, strict=True) for h in
+                                      ((t.chromosome, p[0]), (t.chromosome, p[1]))):  # fmt: skip
+            table.add_parental(homologue)
+        if not is_fertile(fly):
+            return
+        state = self._state(fly)
+        cost = 0.0
+        if fly.sex == FEMALE:
+            pure = all(a == b for a, b in fly.pairs)
+            cost = STOCK_VIRGIN_MINUTES if pure else BALANCED_STOCK_VIRGIN_MINUTES
+        self._offer(state, _Found(0, cost, Leaf(form, fly.sex)))
+
+    def _state(self, fly: Fly) -> State:
+        a, b, c, d = (t.number(p, fly.sex) for t, p in zip(self.tables, fly.pairs, strict=True))
+        return (a, b, c, d)
+
+    def fly(self, state: State) -> Fly:
+        pairs = [t.pairs[i] for t, i in zip(self.tables, state, strict=True)]
+        return Fly(self.tables[0].sexes[state[0]], (pairs[0], pairs[1], pairs[2], pairs[3]))
+
+    def _offer(self, state: State, found: _Found) -> None:
+        known = self.found.get(state)
+        if known is None or (found.level, found.cost) < (known.level, known.cost):
+            self.found[state] = found
+
+    def content(self, state: State) -> frozenset[str]:
+        """Return the wanted elements that a fly carries."""
+        wanted: frozenset[str] = frozenset()
+        for k, (table, number) in enumerate(zip(self.tables, state, strict=True)):
+            part = self._content.get((k, number))
+            if part is None:
+                first, second = table.pairs[number]
+                part = self._content[k, number] = self.wish.carried(first) | self.wish.carried(second)
+            wanted |= part
+        return wanted
+
+    # -- breeding one more level ---------------------------------------------------------------------------------
+
+    def parents(self, below: int) -> tuple[list[State], list[State]]:
+        """Return the females and the males of the levels up to `below`, in a fixed order."""
+        sexes = self.tables[0].sexes
+        states = [s for s, f in self.found.items() if f.level <= below]
+        return [s for s in states if sexes[s[0]] == FEMALE], [s for s in states if sexes[s[0]] == MALE]
+
+    def breed(self, level: int, last: bool) -> Breeding:
+        """Add the flies of `level` to what was found, and say how completely.
+
+        With `last`, the flies are bred to be parents of the last cross only, and those that no last cross can
+        use are left out: every parent must have, on each chromosome, a homologue that the wanted flies may carry.
+        When even this is beyond the budget, only flies with wanted elements are bred.
+        """
+        mothers, fathers = self.parents(level - 1)
+        pairs = [(m, f) for m in mothers for f in fathers if (m, f) not in self._bred]
+        must = self._both_parents_need()
+        if last and must:
+            pairs = [(m, f) for m, f in pairs if must <= self.content(m) | self.content(f)]
+        breeding = Breeding.COMPLETE
+        if len(pairs) > self.budget:
+            if not last:
+                return Breeding.NONE
+            pairs = [(m, f) for m, f in pairs if self.content(m) or self.content(f)]
+            breeding = Breeding.PARTIAL
+            if len(pairs) > self.budget:
+                return Breeding.NONE
+        for mother, father in pairs:
+            self._bred.add((mother, father))
+            self._breed_pair(mother, father, level, last)
+        return breeding
+
+    def _both_parents_need(self) -> frozenset[str]:
+        """Return the wanted elements that both parents of the last cross must carry: those wanted twice."""
+        return frozenset(symbol for symbol, _, copies in self.wish.components if copies > 1)
+
+    def _breed_pair(self, mother: State, father: State, level: int, last: bool) -> None:
+        options = []
+        for k, (m, f) in enumerate(zip(mother, father, strict=True)):
+            children = self._kept_children(k, m, f, last)
+            if not children:
+                return
+            options.append(children)
+        base = self.found[mother].cost + self.found[father].cost + CROSS_MINUTES
+        for combination in product(*options):
+            if not pickable(combination):
+                continue
+            child: State = (combination[0].pair, combination[1].pair, combination[2].pair, combination[3].pair)
+            cost = base + self._keep_cost(child, combination)
+            known = self.found.get(child)
+            if known is not None and (known.level, known.cost) <= (level, cost):
+                continue
+            if self._is_pure(mother, father, child):
+                self._offer(child, _Found(level, cost, (mother, father)))
+
+    def _kept_children(self, k: int, mother: int, father: int, last: bool) -> tuple[Child, ...]:
+        """Return the pairs of chromosome number `k` that may be kept; with `last`, those that a last cross can use."""
+        key = (k, mother, father, last)
+        found = self._kept.get(key)
+        if found is None:
+            table = self.tables[k]
+            found = tuple(
+                c for c in table.children(mother, father) if c.keepable and (not last or self._useful(k, c.pair))
+            )
+            self._kept[key] = found
+        return found
+
+    def _useful(self, k: int, number: int) -> bool:
+        must = {s for s, place, copies in self.wish.components if copies > 1 and place == self.tables[k].chromosome}
+        return any(
+            must <= set(h.symbols) and not any(self.wish.forbids(e) for e in h.elements)
+            for h in self.tables[k].pairs[number]
+        )
+
+    def _keep_cost(self, child: State, parts: tuple[Child, ...]) -> float:
+        share = total_share(tuple(c.share for c in parts))
+        virgin = VIRGIN_FROM_STEP_MINUTES if self.tables[0].sexes[child[0]] == FEMALE else 0.0
+        return SCORE_MINUTES / share + virgin
+
+    def _is_pure(self, mother: State, father: State, child: State) -> bool:
+        """Look at the whole progeny: the child lives, is fertile, and nobody else looks like it."""
+        fly = self.fly(child)
+        if cause_of_death(fly) is not None or not is_fertile(fly):
+            return False
+        looks = self.observer.signs(fly)
+        return all(
+            other == fly or other.sex != fly.sex or self.observer.signs(other) != looks
+            for other in self._progeny(mother, father)
+        )
+
+    def _progeny(self, mother: State, father: State) -> Iterator[Fly]:
+        options = [t.alternatives(m, f) for t, m, f in zip(self.tables, mother, father, strict=True)]
+        for a, b, c, d in product(*options):
+            pairs = tuple(t.pairs[x.pair] for t, x in zip(self.tables, (a, b, c, d), strict=True))
+            fly = Fly(sex_of(pairs[0]), (pairs[0], pairs[1], pairs[2], pairs[3]))
+            if cause_of_death(fly) is None:
+                yield fly
+
+    # -- the last cross ------------------------------------------------------------------------------------------
+
+    def last_crosses(self, below: int) -> list[tuple[float, State, State]]:
+        """Return the cheapest last crosses between flies of the levels up to `below`, cheapest first."""
+        import numpy as np
+
+        females, males = self.parents(below)
+        candidates: list[tuple[float, State, State]] = []
+        for mothers, fathers in self._by_content(females, males):
+            m, f = np.array(mothers), np.array(fathers)
+            rows, columns = np.nonzero(self._goal_table(m, f))
+            costs = np.array([self.found[s].cost for s in mothers])[rows]
+            costs = costs + np.array([self.found[s].cost for s in fathers])[columns]
+            for i in np.argsort(costs, kind="stable")[: 50 * self.kept_schemes]:
+                mother, father = mothers[rows[i]], fathers[columns[i]]
+                candidates.append((self._last_cost(mother, father, float(costs[i])), mother, father))
+        heapq.heapify(candidates)
+        hits: list[tuple[float, State, State]] = []
+        while candidates and len(hits) < self.kept_schemes:
+            cost, mother, father = heapq.heappop(candidates)
+            if self._gives_wish(mother, father):
+                hits.append((cost, mother, father))
+        return hits
+
+    def _last_cost(self, mother: State, father: State, cost: float) -> float:
+        shares = tuple(t.goal(m, f).share for t, m, f in zip(self.tables, mother, father, strict=True))
+        return cost + CROSS_MINUTES + SCORE_MINUTES / max(total_share(shares), 1e-9)
+
+    def _by_content(
+        self, females: list[State], males: list[State]
+    ) -> Iterator[tuple[list[State], list[State]]]:
+        """Yield groups of mothers and fathers that carry all wanted elements between them."""
+        wanted = frozenset(self.wish.symbols)
+        by_mother: dict[frozenset[str], list[State]] = {}
+        by_father: dict[frozenset[str], list[State]] = {}
+        for group, states in ((by_mother, females), (by_father, males)):
+            for state in states:
+                group.setdefault(self.content(state), []).append(state)
+        for of_mother, mothers in sorted(by_mother.items(), key=lambda item: sorted(item[0])):
+            for of_father, fathers in sorted(by_father.items(), key=lambda item: sorted(item[0])):
+                if of_mother | of_father == wanted:
+                    yield mothers, fathers
+
+    def _goal_table(self, m: NDArray[np.int64], f: NDArray[np.int64]) -> NDArray[np.bool_]:
+        """Return for every mother (rows) and father (columns) whether the last cross can give the wish."""
+        import numpy as np
+
+        strict, plain, white, pigmented = [], [], [], []
+        for k, table in enumerate(self.tables):
+            of_m, m_index = np.unique(m[:, k], return_inverse=True)
+            of_f, f_index = np.unique(f[:, k], return_inverse=True)
+            goals = [[table.goal(int(a), int(b)) for b in of_f] for a in of_m]
+            spread = np.ix_(m_index, f_index)
+            strict.append(np.array([[g.strict for g in row] for row in goals])[spread])
+            plain.append(np.array([[g.strict_plain for g in row] for row in goals])[spread])
+            white.append(np.array([[g.white for g in row] for row in goals])[spread])
+            pigmented.append(np.array([[g.pigmented for g in row] for row in goals])[spread])
+        good = np.logical_and.reduce(strict) | np.logical_and.reduce(white)
+        for k in range(len(self.tables)):
+            others = [p for j, p in enumerate(plain) if j != k]
+            good |= pigmented[k] & np.logical_and.reduce(others)
+        return np.asarray(good, dtype=np.bool_)
+
+    def _gives_wish(self, mother: State, father: State) -> bool:
+        """Look at the whole progeny of the last cross: a look whose bearers all satisfy the wish exists."""
+        goals = tuple(t.goal(m, f) for t, m, f in zip(self.tables, mother, father, strict=True))
+        if not reachable_goal(goals):
+            return False
+        progeny = list(self._progeny(mother, father))
+        return bool(accepted_looks(progeny, self.observer, self.accepts, self.wish.sexes()))
+
+    def accepts(self, fly: Fly) -> bool:
+        return all(self.wish.accepts(p, name) for name, p in zip(PAIRS, fly.pairs, strict=True))
+
+    # -- schemes -------------------------------------------------------------------------------------------------
+
+    def scheme(self, mother: State, father: State) -> Node:
+        return Node(self._origin(mother), self._origin(father), None)
+
+    def _origin(self, state: State) -> Leaf | Node:
+        source = self.found[state].source
+        if isinstance(source, Leaf):
+            return source
+        mother, father = source
+        return Node(self._origin(mother), self._origin(father), self.fly(state))
+
+
+def accepted_looks(
+    progeny: Iterable[Fly], observer: Observer, wish_accepts: Callable[[Fly], bool], sexes: tuple[str, ...]
+) -> list[frozenset[str]]:
+    """Return the looks that the wish can be picked by: in every wanted sex there are bearers, and all will do.
+
+    Args:
+        progeny: every living genotype of the cross.
+        observer: who looks at them.
+        wish_accepts: whether a fly will do.
+        sexes: the sexes that are wanted; with both, one look must serve both.
+    """
+    groups: dict[tuple[str, frozenset[str]], bool] = {}
+    for fly in progeny:
+        key = (fly.sex, observer.signs(fly))
+        groups[key] = groups.get(key, True) and wish_accepts(fly)
+    looks = {look for _, look in groups}
+    good = [look for look in looks if all(groups.get((sex, look), False) for sex in sexes)]
+    return sorted(good, key=lambda look: (len(look), sorted(look)))
+
+
+def find_schemes(
+    shelf: ReducedShelf,
+    observer: Observer,
+    max_generations: int,
+    kept_schemes: int = 5,
+    budget: int = 400_000,
+) -> SearchResult:
+    """Return the cheapest schemes of the fewest generations for the wish of `shelf`.
+
+    Args:
+        shelf: the forms and the wish, in reduced terms.
+        observer: who tells flies apart, with the lab's means.
+        max_generations: how far to search.
+        kept_schemes: how many schemes of that number of generations to return at most.
+        budget: largest number of crosses that one level may try; a level beyond it is not searched, and the result
+            says so.
+    """
+    search = _Search(shelf, observer, kept_schemes, budget)
+    for generations in range(1, max_generations + 1):
+        breeding = Breeding.COMPLETE
+        if generations > 1:
+            # what is bred for the last cross alone may leave flies out that a further generation would need
+            breeding = search.breed(generations - 1, last=generations > 2 and generations == max_generations)
+        if breeding is Breeding.NONE:
+            return SearchResult(Status.LIMIT, searched_to=generations - 1, forms=shelf.forms)
+        hits = search.last_crosses(generations - 1)
+        if hits:
+            schemes = tuple(search.scheme(mother, father) for _, mother, father in hits)
+            return SearchResult(Status.PROVED_MINIMAL, schemes, generations, generations, shelf.forms)
+        if breeding is Breeding.PARTIAL:
+            return SearchResult(Status.LIMIT, searched_to=generations - 1, forms=shelf.forms)
+    return SearchResult(Status.IMPOSSIBLE, searched_to=max_generations, forms=shelf.forms)
