@@ -1,0 +1,522 @@
+"""The public door: everything that the commands may call, and that a script may.
+
+    read_genotypes, genotype, reading_json ...   genotypes and what was understood of them
+    cross_flies, progeny_json                    one cross
+    read_stocks, audit_stocks, audit_json        the shelf
+    plan_screen, plan_json, load_plan            a screen
+    write_plan, write_labels, write_calendar     what people hold
+    rearing_report, count_report                 the clock and the head-counts
+    write_demo                                   the demo
+
+Functions that write do so whole or not at all. Nothing here prints or reads the clock.
+"""
+
+from __future__ import annotations
+
+import datetime as dt
+from collections.abc import Callable, Iterable, Sequence
+from dataclasses import dataclass
+from pathlib import Path
+from typing import TYPE_CHECKING, Any
+
+from crossplan.errors import InputError, Problem, Severity
+from crossplan.genetics.appearance import Means, Observer
+from crossplan.genetics.catalogue import Catalogue
+from crossplan.genetics.catalogue_lab import load_catalogue
+from crossplan.genetics.fly import Fly
+from crossplan.genetics.meiosis import MapFunction
+from crossplan.genetics.notation import Reading as Reading
+from crossplan.genetics.notation import fly_json, format_genotype, read_fly, read_genotype
+from crossplan.genetics.notation import reading_json as reading_json
+from crossplan.genetics.progeny import Progeny, cross
+from crossplan.genetics.progeny import ProgenyClass as ProgenyClass
+
+if TYPE_CHECKING:
+    from crossplan.plan.model import Plan as Plan
+    from crossplan.stocks.audit import Finding
+    from crossplan.stocks.shelf import Shelf
+
+Progress = Callable[[str, int, int], None]
+
+
+# -- genotypes ---------------------------------------------------------------------------------------------------
+
+
+def read_genotypes(texts: Iterable[str], lab_file: Path | None = None) -> list[Reading]:
+    """Return what was understood of each genotype; never raises on any text."""
+    catalogue = load_catalogue(lab_file)
+    return [read_genotype(text, catalogue) for text in texts]
+
+
+def genotype_column(table: Path, column: str) -> list[str]:
+    """Return the cells of one column of a table as text.
+
+    Raises:
+        InputError: the table cannot be read, or has no such column.
+    """
+    from crossplan.stocks.table import read_column
+
+    return read_column(table, column)
+
+
+def genotype(fly: Fly) -> str:
+    """Return the fly in short notation."""
+    return format_genotype(fly)
+
+
+def short_form(reading: Reading) -> str:
+    """Return what was read, in short notation."""
+    fly = reading.female or reading.male
+    return format_genotype(fly) if fly is not None else ""
+
+
+def reading_rows(reading: Reading) -> list[tuple[str, str, str, str, str]]:
+    """Return a row for each element understood: chromosome, homologue, symbol, kind, source of its facts."""
+    catalogue = load_catalogue(None)
+    fly = reading.female or reading.male
+    if fly is None:
+        return []
+    rows = []
+    for chromosome in ("X", "2", "3", "4"):
+        pair = fly.pair(chromosome)
+        homologues = pair[:1] if pair[0] == pair[1] else pair
+        for i, homologue in enumerate(homologues):
+            which = "both" if len(homologues) == 1 else ("first", "second")[i]
+            if not homologue.elements and chromosome != "4":
+                rows.append((chromosome, which, "+", "wild type", ""))
+            for element in homologue.elements:
+                kind = str(element.kind) + (f", {element.component}" if element.component else "")
+                place = f"{element.position_cM:.1f} cM" if element.position_cM is not None else "place unknown"
+                words = kind if element.kind == "Y" else f"{kind}; {place}"
+                rows.append((chromosome, which, element.symbol, words, catalogue.provenance(element.symbol)))
+    return rows
+
+
+# -- one cross ---------------------------------------------------------------------------------------------------
+
+
+@dataclass(frozen=True)
+class CrossResult:
+    """The progeny of a cross, with the observer who sorted them and what was assumed when the parents were read."""
+
+    progeny: Progeny
+    observer: Observer
+    problems: tuple[Problem, ...]
+
+    def looks(self, found: ProgenyClass) -> str:
+        """Return what one sees on a class, in words; signs that only others show are named by their opposites."""
+        sex = [c for c in self.progeny.classes if c.sex == found.sex]
+        seen = frozenset[str]().union(*(c.signs for c in sex))
+        signs = self.observer.catalogue.signs
+        words = sorted(found.signs)
+        words += [signs[s].opposite for s in sorted(seen - found.signs) if s in signs and signs[s].opposite]
+        return ", ".join(words) or "wild type"
+
+    def causes_of_death(self) -> list[tuple[str, float]]:
+        """Return each cause of death with its share of the zygotes, the largest first."""
+        causes: dict[str, float] = {}
+        for zygote in self.progeny.dead:
+            causes[zygote.cause] = causes.get(zygote.cause, 0.0) + float(zygote.share_of_zygotes)
+        return sorted(causes.items(), key=lambda item: (-item[1], item[0]))
+
+    def remarks(self) -> list[str]:
+        """Return what qualifies the shares: leaky balancers, elements of unknown place."""
+        remarks = [
+            f"{leak.element} lies outside the cover of {leak.balancer}: in up to {100 * leak.rate:.1f} % of eggs it"
+            " may have left its homologue (not counted above)"
+            for leak in self.progeny.leaks
+        ]
+        if self.progeny.unplaced:
+            names = ", ".join(dict.fromkeys(self.progeny.unplaced))
+            remarks.append(f"map position unknown: {names}; taken to be unlinked")
+        return remarks
+
+
+def cross_flies(
+    mother: str,
+    father: str,
+    *,
+    stocks: Path | None = None,
+    lab_file: Path | None = None,
+    pupae: bool = False,
+    fluorescence: bool = False,
+    rearing_C: float = 25.0,
+    map_function: MapFunction = "haldane",
+) -> CrossResult:
+    """Return the progeny of a cross of two flies, given by genotype or by the name of a stock.
+
+    Raises:
+        InputError: a genotype cannot be read, or a fly cannot be a parent.
+    """
+    from crossplan.genetics.survival import cause_of_death, sterile_because
+
+    catalogue = load_catalogue(lab_file)
+    shelf = None
+    if stocks is not None:
+        from crossplan.stocks.shelf import read_stocks as read
+
+        shelf = read(stocks, catalogue=catalogue)
+    flies: list[Fly] = []
+    problems: list[Problem] = []
+    for text, sex in ((mother, "female"), (father, "male")):
+        stock = shelf.by_name(text) if shelf is not None else None
+        known = shelf.elements() if shelf is not None else None
+        written = stock.genotype if stock is not None else text
+        fly = read_fly(written, "female" if sex == "female" else "male", catalogue, known)
+        problems += [p for p in read_genotype(written, catalogue, known).problems if p.severity != Severity.NOTE]
+        dead = cause_of_death(fly)
+        if dead:
+            raise InputError(f"the {sex} parent {written} cannot live: {dead}", "check the genotype")
+        sterile = sterile_because(fly)
+        if sterile:
+            raise InputError(f"{written} cannot be a parent: {sterile}", "use its sibs, or the other sex")
+        flies.append(fly)
+    means = Means(pupae=pupae, fluorescence=fluorescence, rearing_C=rearing_C)
+    observer = Observer(catalogue, means)
+    return CrossResult(cross(flies[0], flies[1], observer, map_function), observer, tuple(problems))
+
+
+def progeny_json(result: CrossResult) -> dict[str, Any]:
+    """Return the progeny as the JSON contract writes them."""
+    progeny = result.progeny
+    return {
+        "mother": fly_json(progeny.mother),
+        "father": fly_json(progeny.father),
+        "classes": [
+            {
+                "sex": c.sex,
+                "signs": sorted(c.signs),
+                "looks": result.looks(c),
+                "share": float(c.share),
+                "exact": str(c.exact) if c.exact is not None else None,
+                "members": [{"fly": fly_json(m.fly), "share": float(m.share)} for m in c.members],
+                "look_alikes": c.look_alikes,
+            }
+            for c in progeny.classes
+        ],
+        "dead": [
+            {"fly": fly_json(d.fly), "share_of_zygotes": float(d.share_of_zygotes), "cause": d.cause}
+            for d in progeny.dead
+        ],
+        "alive": float(progeny.alive),
+        "remarks": result.remarks(),
+    }
+
+
+# -- the shelf ---------------------------------------------------------------------------------------------------
+
+
+def read_stocks(path: Path, *, sheet: str | None = None, lab_file: Path | None = None) -> Shelf:
+    """Return the stock list with everything that was and was not understood.
+
+    Raises:
+        StockListError: the file cannot be read at all.
+    """
+    from crossplan.stocks.shelf import read_stocks as read
+
+    return read(path, sheet=sheet, catalogue=load_catalogue(lab_file))
+
+
+@dataclass(frozen=True)
+class Audited:
+    """The findings of an audit, and for a screen what cannot be made and what to obtain."""
+
+    shelf: Shelf
+    findings: tuple[Finding, ...]
+    plan: Plan | None = None
+
+    @property
+    def acquire(self) -> list[tuple[str, int]]:
+        """Return what would unlock targets, with the number of targets each unlocks, most first."""
+        counts: dict[str, int] = {}
+        for target in self.plan.targets if self.plan else ():
+            for what in dict.fromkeys(target.would_unlock):
+                counts[what] = counts.get(what, 0) + 1
+        return sorted(counts.items(), key=lambda item: (-item[1], item[0]))
+
+    @property
+    def needs_a_person(self) -> bool:
+        """Whether there is an error or a warning, or a target that cannot be made."""
+        impossible = self.plan is not None and any(t.status == "impossible" for t in self.plan.targets)
+        return impossible or any(f.severity != Severity.NOTE for f in self.findings)
+
+
+def audit_stocks(
+    stocks: Path,
+    screen: Path | None = None,
+    *,
+    today: dt.date,
+    sheet: str | None = None,
+    lab_file: Path | None = None,
+) -> Audited:
+    """Return what is wrong with a stock list, and for a screen which targets it cannot make and why."""
+    from crossplan.stocks.audit import audit
+
+    shelf = read_stocks(stocks, sheet=sheet, lab_file=lab_file)
+    findings = audit(shelf, today)
+    if screen is None:
+        return Audited(shelf, findings)
+    planned = plan_screen(screen, stocks, today=today, sheet=sheet, lab_file=lab_file, with_calendar=False)
+    return Audited(shelf, findings, planned.plan)
+
+
+def audit_json(audited: Audited) -> dict[str, Any]:
+    """Return an audit as the JSON contract writes it."""
+    document: dict[str, Any] = {
+        "stocks": len(audited.shelf.stocks),
+        "findings": [
+            {
+                "code": f.code, "severity": str(f.severity), "stock": f.stock, "row": f.row,
+                "message": f.message, "suggestion": f.suggestion,
+            }
+            for f in audited.findings
+        ],
+        "gaps": [],
+        "acquire": [{"what": what, "unlocks": n} for what, n in audited.acquire],
+    }  # fmt: skip
+    if audited.plan is not None:
+        document["gaps"] = [
+            {"target": t.target, "missing": t.would_unlock, "reason": t.reason}
+            for t in audited.plan.targets
+            if t.status == "impossible"
+        ]
+    return document
+
+
+# -- a screen ----------------------------------------------------------------------------------------------------
+
+
+@dataclass(frozen=True)
+class Planned:
+    """A plan, and the shelf and problems that it was made from."""
+
+    plan: Plan
+    shelf: Shelf
+    problems: tuple[Problem, ...]
+
+    @property
+    def rows_assumed(self) -> int:
+        """Rows that were understood with a stated assumption."""
+        return sum(s.reading.ok and s.reading.assumed for s in self.shelf.stocks)
+
+    @property
+    def needs_a_person(self) -> bool:
+        """Whether a target cannot be made, a date cannot be met, or a row was not understood."""
+        late = any("due" in c for t in self.plan.targets for c in t.cautions)
+        impossible = any(t.status == "impossible" for t in self.plan.targets)
+        return late or impossible or self.shelf.rows_refused > 0 or any(
+            p.severity == Severity.ERROR for p in self.problems
+        )
+
+
+def plan_screen(
+    screen: Path,
+    stocks: Path,
+    *,
+    today: dt.date,
+    start: dt.date | None = None,
+    sheet: str | None = None,
+    lab_file: Path | None = None,
+    progress: Progress | None = None,
+    with_calendar: bool = True,
+) -> Planned:
+    """Return the plan of a screen.
+
+    Args:
+        screen: the screen file (TOML).
+        stocks: the stock list.
+        today: the day on which work can begin when neither `start` nor the screen file says.
+        start: first day of work.
+        sheet: the sheet of a workbook.
+        lab_file: the lab's own catalogue entries.
+        progress: called with what is being done, how much is done, and of how much.
+        with_calendar: whether days are planned too (an audit does not need them).
+
+    Raises:
+        InputError: a file cannot be used at all.
+        PlanCheckError: the independent replay refuted the plan (a bug).
+    """
+    from crossplan.plan.screen_file import read_screen
+    from crossplan.schemes.controls import with_controls
+    from crossplan.schemes.screen_plan import answer_targets, sources_of
+    from crossplan.schemes.target import carried_elements
+
+    tell = progress or (lambda what, done, total: None)
+    request = read_screen(screen)
+    tell("reading stocks", 0, 0)
+    shelf = read_stocks(stocks, sheet=sheet, lab_file=lab_file)
+    catalogue = load_catalogue(lab_file)
+    sources = sources_of(shelf)
+    elements = carried_elements(sources)
+    asked, remarks = with_controls(request, elements, catalogue)
+    answers, temperatures = answer_targets(
+        asked, sources, request.screen, catalogue, lambda done, total: tell("finding schemes", done, total)
+    )
+    return _finish(request, shelf, catalogue, answers, temperatures, remarks, start or today, with_calendar)
+
+
+def plan_json(plan: Plan) -> dict[str, Any]:
+    """Return the plan as the JSON contract writes it."""
+    return plan.model_dump(mode="json", by_alias=True)
+
+
+def load_plan(path: Path) -> Plan:
+    """Return the plan of a `plan.json`, given by itself or by its folder.
+
+    Raises:
+        InputError: there is no such file, or it is no plan.
+    """
+    from pydantic import ValidationError
+
+    from crossplan.plan.model import Plan as Plan
+
+    place = path / "plan.json" if path.is_dir() else path
+    try:
+        return Plan.model_validate_json(place.read_bytes())
+    except FileNotFoundError:
+        raise InputError(f"there is no plan at {place}", "make one: crossplan plan SCREEN --stocks TABLE --out FOLDER") from None
+    except OSError as error:
+        raise InputError(f"cannot read {place}: {error.strerror}") from error
+    except ValidationError as error:
+        first = error.errors()[0]
+        where = ".".join(str(part) for part in first["loc"]) or "the file"
+        raise InputError(f"{place} is no crossplan plan: {where}: {first['msg']}", "plan again") from None
+
+
+# -- what people hold --------------------------------------------------------------------------------------------
+
+
+def write_plan(plan: Plan, folder: Path) -> tuple[Path, ...]:
+    """Write plan, summary, report, labels, bench sheets and calendar into a folder; return the files."""
+    from crossplan.bench.plan_folder import write_plan_folder
+
+    return write_plan_folder(plan, folder)
+
+
+def label_layouts() -> list[tuple[str, str]]:
+    """Return the label layouts by name, each with its size in words."""
+    from crossplan.bench.sheet_layout import LAYOUTS
+
+    return [
+        (name, f"{x.columns} x {x.rows} labels of {x.label_width:g} x {x.label_height:g} mm")
+        for name, x in sorted(LAYOUTS.items())
+    ]
+
+
+def write_labels(
+    plan: Path,
+    out: Path,
+    *,
+    layout: str | None = None,
+    steps: Sequence[str] | None = None,
+    dates: str | None = None,
+    person: str | None = None,
+    start_at: int = 1,
+    copies: int = 1,
+) -> int:
+    """Write the vial labels of a plan as a PDF; return its size in bytes."""
+    from crossplan.bench.labels import labels_pdf
+    from crossplan.bench.sheet_layout import DEFAULT_LAYOUT, layout_named
+
+    content = labels_pdf(
+        load_plan(plan), layout_named(layout or DEFAULT_LAYOUT), steps=steps, dates=parse_days(dates),
+        person=person, start_at=start_at, copies=copies,
+    )  # fmt: skip
+    return _write(out, content)
+
+
+def write_calendar(
+    plan: Path,
+    out: Path,
+    *,
+    dates: str | None = None,
+    person: str | None = None,
+    alarm_minutes: int | None = None,
+    instead_of: Path | None = None,
+) -> int:
+    """Write the calendar of a plan; return its size in bytes. `instead_of` is the calendar file or plan given out before."""
+    from crossplan.bench.calendar_file import calendar_ics
+
+    previous: Plan | bytes | None = None
+    if instead_of is not None:
+        previous = instead_of.read_bytes() if instead_of.suffix == ".ics" else load_plan(instead_of)
+    content = calendar_ics(load_plan(plan), parse_days(dates), person, alarm_minutes, previous)
+    return _write(out, content)
+
+
+def _write(out: Path, content: bytes) -> int:
+    from crossplan.bench.plan_folder import write_files
+    from crossplan.errors import OutputError
+
+    try:
+        out.parent.mkdir(parents=True, exist_ok=True)
+        write_files(out.parent, {out.name: content})
+    except OSError as error:
+        raise OutputError(f"cannot write {out}: {error.strerror or error}", "choose another place with --out") from error
+    return len(content)
+
+
+def parse_day(text: str) -> dt.date:
+    """Return the day of an ISO date.
+
+    Raises:
+        InputError: it is none.
+    """
+    try:
+        return dt.date.fromisoformat(text)
+    except ValueError:
+        raise InputError(f"'{text}' is not a day", "write it as 2027-01-11 (year-month-day)") from None
+
+
+def parse_days(text: str | None) -> list[dt.date] | None:
+    """Return the days of `DAY` or `FROM..TO`, both included; None for None.
+
+    Raises:
+        InputError: a day is none, or the range is empty or longer than ten years.
+    """
+    if text is None:
+        return None
+    first_text, _, last_text = text.partition("..")
+    first = parse_day(first_text)
+    last = parse_day(last_text) if last_text else first
+    days = (last - first).days + 1
+    if not 1 <= days <= 3660:
+        raise InputError(f"'{text}' holds no day, or more than ten years of them", "write FROM..TO, FROM first")
+    return [first + dt.timedelta(days=i) for i in range(days)]
+
+
+# -- clock, counts, demo -----------------------------------------------------------------------------------------
+
+REARING_WORDS = {
+    "egg_to_adult_hours": "egg to adult",
+    "first_flies_hours": "first flies",
+    "virgin_hours": "a newly emerged female is surely a virgin for",
+    "clear_parents_by_hours": "clear the parents by",
+    "stop_collecting_hours": "stop collecting by (the next generation follows)",
+}
+
+
+def write_demo(folder: Path) -> tuple[Path, ...]:
+    """Write the demo stock list and screen into a folder; files of the same names that differ are not touched.
+
+    Raises:
+        OutputError: the folder cannot be written, or holds other files of these names.
+    """
+    from importlib import resources
+
+    from crossplan.bench.plan_folder import write_files
+    from crossplan.errors import OutputError
+
+    packed = resources.files("crossplan") / "_demo"
+    source = packed if packed.is_dir() else Path(__file__).resolve().parent.parent / "demo_stocks"
+    files = {f.name: f.read_bytes() for f in sorted(source.iterdir(), key=lambda f: f.name) if f.is_file()}
+    try:
+        changed = [n for n, content in files.items() if (folder / n).exists() and (folder / n).read_bytes() != content]
+        if changed:
+            raise OutputError(
+                f"{folder} already holds {', '.join(changed)}, with other contents", "choose an empty folder"
+            )
+        folder.mkdir(parents=True, exist_ok=True)
+        return write_files(folder, files)
+    except OSError as error:
+        raise OutputError(f"cannot write into {folder}: {error.strerror or error}", "choose another folder") from error
