@@ -19,6 +19,7 @@ from dataclasses import dataclass
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
+from crossplan import __version__
 from crossplan.errors import InputError, Problem, Severity
 from crossplan.genetics.appearance import Means, Observer
 from crossplan.genetics.catalogue import Catalogue
@@ -33,6 +34,10 @@ from crossplan.genetics.progeny import ProgenyClass as ProgenyClass
 
 if TYPE_CHECKING:
     from crossplan.plan.model import Plan as Plan
+    from crossplan.plan.model import TaskRecord
+    from crossplan.plan.screen_file import ScreenRequest
+    from crossplan.schemes.batch import Answer
+    from crossplan.schemes.screen_plan import ScreenPlanner
     from crossplan.stocks.audit import Finding
     from crossplan.stocks.shelf import Shelf
 
@@ -337,22 +342,67 @@ def plan_screen(
         PlanCheckError: the independent replay refuted the plan (a bug).
     """
     from crossplan.plan.screen_file import read_screen
-    from crossplan.schemes.controls import with_controls
-    from crossplan.schemes.screen_plan import answer_targets, sources_of
-    from crossplan.schemes.target import carried_elements
+    from crossplan.schemes.batch import Asked
+    from crossplan.schemes.controls import controls_for
+    from crossplan.schemes.screen_plan import ScreenPlanner, sources_of
 
     tell = progress or (lambda what, done, total: None)
     request = read_screen(screen)
     tell("reading stocks", 0, 0)
     shelf = read_stocks(stocks, sheet=sheet, lab_file=lab_file)
     catalogue = load_catalogue(lab_file)
-    sources = sources_of(shelf)
-    elements = carried_elements(sources)
-    asked, remarks = with_controls(request, elements, catalogue)
-    answers, temperatures = answer_targets(
-        asked, sources, request.screen, catalogue, lambda done, total: tell("finding schemes", done, total)
-    )
-    return _finish(request, shelf, catalogue, answers, temperatures, remarks, start or today, with_calendar)
+    planner = ScreenPlanner(sources_of(shelf), request.screen, catalogue)
+    answers = list(planner.answer([Asked(t) for t in request.targets], lambda n, of: tell("finding schemes", n, of)))
+    remarks: tuple[str, ...] = ()
+    if request.screen.screen.controls:
+        made = [a.asked.wanted for a in answers if a.status != "impossible"]
+        controls = controls_for(made, planner.shelf, catalogue, request.screen.screen.empty)
+        answers += planner.answer(controls.asked, lambda n, of: tell("finding schemes for controls", n, of))
+        remarks = controls.remarks
+    tell("planning days", 0, 0)
+    plan = _assemble(request, shelf, planner, answers, remarks, start or request.screen.calendar.start or today,
+                     with_calendar)  # fmt: skip
+    return Planned(plan, shelf, (*shelf.problems, *request.problems))
+
+
+def _assemble(
+    request: ScreenRequest,
+    shelf: Shelf,
+    planner: ScreenPlanner,
+    answers: Sequence[Answer],
+    remarks: Sequence[str],
+    start: dt.date,
+    with_calendar: bool,
+) -> Plan:
+    from crossplan.plan.totals import plan_of
+    from crossplan.schedule.from_plan import put_on_calendar
+    from crossplan.schemes.record import write_records
+
+    screen = request.screen
+    targets, steps = write_records(answers, screen, planner, {s.name: s.location for s in shelf.stocks})
+    tasks: list[TaskRecord] = []
+    status = ""
+    if with_calendar and steps:
+        ages = {a.asked.wanted.name: a.asked.wanted.age_days for a in answers if not a.asked.wanted.stock}
+        fed = frozenset(a.asked.wanted.name for a in answers if planner.needs(a.asked).retinal)
+        tasks, schedule = put_on_calendar(steps, targets, ages, fed, screen, start)
+        status = f"{schedule.status}, gap {100 * schedule.gap:.1f} %" if schedule.gap else schedule.status
+    plan = plan_of(request, shelf, targets, steps, tasks, remarks, start, status, __version__)
+    _check(plan, planner, shelf)
+    return plan
+
+
+def _check(plan: Plan, planner: ScreenPlanner, shelf: Shelf) -> None:
+    """Replay the plan by genetics alone before it is handed out."""
+    from crossplan.errors import PlanCheckError
+    from crossplan.plan.replay import replay
+
+    faults = replay(plan, planner.observer_of, shelf.elements())
+    if faults:
+        raise PlanCheckError(
+            f"crossplan's own check refuted the plan: {faults[0].message}",
+            "this is a fault of crossplan, not of your files; please report it with both files",
+        )
 
 
 def plan_json(plan: Plan) -> dict[str, Any]:
@@ -494,6 +544,32 @@ REARING_WORDS = {
     "clear_parents_by_hours": "clear the parents by",
     "stop_collecting_hours": "stop collecting by (the next generation follows)",
 }
+
+
+def rearing_report(temperature: str, hours_at_25: float | None = None) -> dict[str, Any]:
+    """Return stages, first flies and handling windows along a temperature course, as the JSON contract writes them.
+
+    Raises:
+        RearingError: the course cannot be read, or leaves the range of the clock.
+    """
+    from crossplan.rearing.course import Course
+    from crossplan.rearing.development import Clock
+    from crossplan.rearing.report import rearing_report as report
+
+    return report(Course.parse(temperature), Clock() if hours_at_25 is None else Clock(hours_at_25))
+
+
+def count_report(share: str, need: int, probability: float, per_vial: float) -> dict[str, Any]:
+    """Return flies to look through and vials to set up, as the JSON contract writes them.
+
+    Raises:
+        RearingError: the share, the number or the probability cannot be.
+    """
+    from crossplan.rearing.counting import parse_share
+    from crossplan.rearing.report import count_report as report
+    from crossplan.rearing.yields import Yield
+
+    return report(parse_share(share), need, probability, Yield(mean=per_vial))
 
 
 def write_demo(folder: Path) -> tuple[Path, ...]:

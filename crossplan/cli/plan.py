@@ -147,7 +147,7 @@ def _show_dates(plan: Plan) -> None:
         f" on {totals['working_days']} days"
     )
     out.print(
-        f"First flies ready [bold]{totals['first_ready_words']}[/bold],"
-        f" last [bold]{totals['last_ready_words']}[/bold];"
-        f" fullest day {totals['busiest_day_words']} ({totals['busiest_day_minutes']} minutes of work)"
+        f"First flies ready [bold]{totals['first_ready']}[/bold],"
+        f" last [bold]{totals['last_ready']}[/bold];"
+        f" fullest day {totals['busiest_day']} ({totals['busiest_day_minutes']} minutes of work)"
     )

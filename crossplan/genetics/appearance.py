@@ -7,6 +7,8 @@ Appearance is computed from what the fly carries, never looked up:
 * a fly without a working white gene has white eyes, unless a mini-white insertion gives pigment back. How many
   mini-white copies it has cannot be told by eye with certainty (Levis et al. 1985, Science 229:558: the colour
   depends on the place of insertion), so pigment is a yes or a no and nothing more;
+* the eye has a brown and a red pigment: a fly without the brown one (v, cn, st) and without the red one (bw) is
+  white too (Lindsley & Grell 1968, Carnegie Publ. 627, bw);
 * where pigment comes from mini-white, other eye-colour markers are not scored (common practice, no source);
 * some signs hide others (the catalogue says which): white eyes hide every other eye colour, a tiny or glazed eye
   hides its pigment;
@@ -29,6 +31,9 @@ from crossplan.genetics.survival import restored_genes
 
 WHITE = "w"
 WHITE_EYES = "white eyes"
+#: genes without which an eye has no brown pigment, and no red pigment
+NO_BROWN_PIGMENT = frozenset(("v", "cn", "st"))
+NO_RED_PIGMENT = frozenset(("bw",))
 
 
 @dataclass(frozen=True)
@@ -113,11 +118,12 @@ class Observer:
         exposed: set[tuple[str, str]] = set().union(*(p.exposed for p in parts))
         restored: set[str] = set().union(*(p.restores for p in parts))
         white_gone = any(gene == WHITE and not sign for gene, sign in exposed)
-        if white_gone and WHITE not in restored:
-            present.add(WHITE_EYES)
         present |= {sign for gene, sign in exposed if sign and gene not in restored}
+        mutant = {gene for gene, _ in exposed} - restored
         if white_gone:
             present = {s for s in present if WHITE_EYES not in self._hidden_by(s)}
+        if (white_gone and WHITE not in restored) or (mutant & NO_BROWN_PIGMENT and mutant & NO_RED_PIGMENT):
+            present.add(WHITE_EYES)
         return frozenset(s for s in present if self._scorable(s, present))
 
     def _hidden_by(self, sign: str) -> tuple[str, ...]:

@@ -1,5 +1,4 @@
-"""The genetic catalogue: signs, markers, balancers, landing sites, component classes and the map, with their
-sources.
+"""The genetic catalogue: signs, markers, balancers, landing sites, component classes and the map.
 
 The facts are the tables in `data/` (one CSV file each, see `data/SOURCES.md`); this module reads them, checks
 that they fit together and answers questions about them. Every row says where it comes from (`source`) and how
@@ -60,7 +59,12 @@ KEYS: Final[Mapping[str, tuple[str, ...]]] = {
 }
 #: numbered divisions of the polytene map on each arm (Bridges 1935, J. Hered. 26:60)
 DIVISIONS: Final[Mapping[str, tuple[int, int]]] = {
-    "X": (1, 20), "2L": (21, 40), "2R": (41, 60), "3L": (61, 80), "3R": (81, 100), "4": (101, 102),
+    "X": (1, 20),
+    "2L": (21, 40),
+    "2R": (41, 60),
+    "3L": (61, 80),
+    "3R": (81, 100),
+    "4": (101, 102),
 }
 #: about how many bands a lettered subdivision has at most; only orders bands within a letter (our scale)
 BANDS_IN_A_LETTER: Final = 15
@@ -71,7 +75,9 @@ LIKENESS: Final = 0.66
 SHORTEST_BALANCER_NAME: Final = 3
 
 _SYMBOL = re.compile(r"(?P<gene>.+?)(?:\[(?P<allele>[^\[\]]*)\])?")
-_BAND = re.compile(r"(?P<division>\d{1,3})(?:-?(?P<letter>[A-F])(?P<band>\d{1,2})?)?(?:[-;,].*)?", re.IGNORECASE)
+_BAND = re.compile(
+    r"(?P<division>\d{1,3})(?:-?(?P<letter>[A-F])(?P<band>\d{1,2})?)?(?:[-;,].*)?", re.IGNORECASE
+)
 _VK = re.compile(r"(?:attp)?vk0*(\d{1,5})")
 _LETHAL_NAME = re.compile(r"l\([1-4]\)\S+")
 _FLUORESCENT_MARKER = re.compile(r"(?i)3xP3|GFP|YFP|CFP|RFP|DsRed|tdTom|mCherry")
@@ -308,11 +314,19 @@ class Catalogue:
         return tuple(self._markers.values())
 
     def _wild_type(self, gene: str, allele: str) -> MarkerEntry | None:
-        known = self._markers.get((gene, "")) or next((m for m in self._markers.values() if m.gene == gene), None)
+        known = self._markers.get((gene, "")) or next(
+            (m for m in self._markers.values() if m.gene == gene), None
+        )
         if known is None:
             return None
         return replace(
-            known, allele=allele, synonyms=(), dominance="wild type", sign="", traits=PLAIN, homozygote="viable",
+            known,
+            allele=allele,
+            synonyms=(),
+            dominance="wild type",
+            sign="",
+            traits=PLAIN,
+            homozygote="viable",
             hemizygous_male="",
         )
 
@@ -327,10 +341,21 @@ class Catalogue:
         where = f"marker {row['gene']}[{row['allele']}]"
         sign = self._known_sign(row["sign"], where) if row["sign"] else ""
         return MarkerEntry(
-            gene=row["gene"], allele=row["allele"], synonyms=_split(row["synonyms"]), chromosome=row["chromosome"],
-            map_cM=_number(row["map_cM"], where), band=row["band"], dominance=row["dominance"], sign=sign,
-            traits=self._marker_traits(row), source=row["source"], kind=row["kind"], homozygote=row["homozygote"],
-            hemizygous_male=row["hemizygous_male"], other_alleles=row["other_alleles"], note=row["note"],
+            gene=row["gene"],
+            allele=row["allele"],
+            synonyms=_split(row["synonyms"]),
+            chromosome=row["chromosome"],
+            map_cM=_number(row["map_cM"], where),
+            band=row["band"],
+            dominance=row["dominance"],
+            sign=sign,
+            traits=self._marker_traits(row),
+            source=row["source"],
+            kind=row["kind"],
+            homozygote=row["homozygote"],
+            hemizygous_male=row["hemizygous_male"],
+            other_alleles=row["other_alleles"],
+            note=row["note"],
         )
 
     def _marker_traits(self, row: Row) -> Traits:
@@ -351,10 +376,11 @@ class Catalogue:
 
     def _marker_of(self, symbol: str, where: str) -> MarkerEntry:
         match = _SYMBOL.fullmatch(symbol)
-        found = self.marker(match["gene"], match["allele"] or "") if match else None
+        gene, allele = (match["gene"], match["allele"] or "") if match else (symbol, "")
+        found = self.marker(gene, allele)
         if found is None:
-            genes = sorted({m.gene for m in self._markers.values()} | set(self._marker_synonyms))
-            raise InputError(f"{where}: there is no marker '{symbol}'", _near_hint(symbol, genes))
+            known = sorted({m.gene for m in self._markers.values()} | set(self._marker_synonyms))
+            raise InputError(f"{where}: there is no marker '{symbol}'", _near_hint(gene, known))
         return found
 
     # balancers ----------------------------------------------------------------------------------------------
@@ -396,12 +422,21 @@ class Catalogue:
         assumed = [self._marker_of(s, f"{where}, assumed") for s in _split(row["assumed"])]
         traits = self._balancer_traits(row, where)
         return BalancerEntry(
-            name=row["name"], synonyms=_split(row["synonyms"]), chromosome=row["chromosome"],
-            linked_to=row["linked_to"], assumed=tuple(m.symbol for m in assumed),
-            assumed_reason=row["assumed_reason"], traits=traits, traits_assumed=self._with_markers(traits,
-            assumed), leaks=row["leaks"], source=row["source"], kind=row["kind"],
-            dominant=_split(row["dominant"]), recessive=_split(row["recessive"]),
-            covers_note=row["covers_note"], caution=row["caution"],
+            name=row["name"],
+            synonyms=_split(row["synonyms"]),
+            chromosome=row["chromosome"],
+            linked_to=row["linked_to"],
+            assumed=tuple(m.symbol for m in assumed),
+            assumed_reason=row["assumed_reason"],
+            traits=traits,
+            traits_assumed=self._with_markers(traits, assumed),
+            leaks=row["leaks"],
+            source=row["source"],
+            kind=row["kind"],
+            dominant=_split(row["dominant"]),
+            recessive=_split(row["recessive"]),
+            covers_note=row["covers_note"],
+            caution=row["caution"],
         )
 
     def _balancer_traits(self, row: Row, where: str) -> Traits:
@@ -466,11 +501,20 @@ class Catalogue:
     def _component(self, row: Row) -> ComponentEntry:
         where = f"component {row['name']}"
         return ComponentEntry(
-            name=row["name"], cls=row["class"], pattern=row["pattern"], activation=row["activation"],
-            needs_retinal=_yes(row["needs_retinal"], where), needs_dark=_yes(row["needs_dark"], where),
-            rear_max_C=_number(row["rear_max_C"], where), rear_min_C=_number(row["rear_min_C"], where),
-            test_C=_number(row["test_C"], where), carries=_split(row["carries"]), control_role=row["control_role"],
-            caution=row["caution"], source=row["source"], kind=row["kind"],
+            name=row["name"],
+            cls=row["class"],
+            pattern=row["pattern"],
+            activation=row["activation"],
+            needs_retinal=_yes(row["needs_retinal"], where),
+            needs_dark=_yes(row["needs_dark"], where),
+            rear_max_C=_number(row["rear_max_C"], where),
+            rear_min_C=_number(row["rear_min_C"], where),
+            test_C=_number(row["test_C"], where),
+            carries=_split(row["carries"]),
+            control_role=row["control_role"],
+            caution=row["caution"],
+            source=row["source"],
+            kind=row["kind"],
             sign=self._known_sign(row["sign"], where) if row["sign"] else "",
         )
 
@@ -556,7 +600,9 @@ def _fluorescence(marker: str) -> str:
 
 def _refuse_twice(name: str, first: str, second: str) -> None:
     if first != second:
-        raise InputError(f"'{name}' is a name of both {first} and {second}", "give one of them another synonym")
+        raise InputError(
+            f"'{name}' is a name of both {first} and {second}", "give one of them another synonym"
+        )
 
 
 def _near_hint(name: str, known: Iterable[str]) -> str:
@@ -575,7 +621,9 @@ def _number(text: str, where: str) -> float | None:
     try:
         return float(text)
     except ValueError:
-        raise InputError(f"{where}: '{text}' is not a number", "write it with a point, such as 12.5") from None
+        raise InputError(
+            f"{where}: '{text}' is not a number", "write it with a point, such as 12.5"
+        ) from None
 
 
 def _yes(text: str, where: str) -> bool:
@@ -585,11 +633,10 @@ def _yes(text: str, where: str) -> bool:
 
 
 def _cover(text: str, where: str) -> Cover:
-    start, _, end = text.partition("-")
-    low, high = _number(start.strip(), where), _number(end.strip(), where)
-    if low is None or high is None or low >= high:
+    match = re.fullmatch(r"(\d+(?:\.\d+)?)\s*-\s*(\d+(?:\.\d+)?)", text)
+    if match is None or float(match[1]) >= float(match[2]):
         raise InputError(f"{where}: '{text}' is not a stretch in cM", "write start-end, such as 5.1-98.9")
-    return Cover(low, high)
+    return Cover(float(match[1]), float(match[2]))
 
 
 def _pattern(row: Row) -> re.Pattern[str]:
@@ -604,9 +651,16 @@ def _pattern(row: Row) -> re.Pattern[str]:
 
 def _sign(row: Row) -> Sign:
     return Sign(
-        name=row["sign"], opposite=row["opposite"], part=row["part"], stage=row["stage"], ease=row["ease"],
+        name=row["sign"],
+        opposite=row["opposite"],
+        part=row["part"],
+        stage=row["stage"],
+        ease=row["ease"],
         unreliable_below_C=_number(row["unreliable_below_C"], f"sign {row['sign']}"),
-        hidden_by=_split(row["hidden_by"]), source=row["source"], kind=row["kind"], note=row["note"],
+        hidden_by=_split(row["hidden_by"]),
+        source=row["source"],
+        kind=row["kind"],
+        note=row["note"],
     )
 
 
@@ -615,9 +669,16 @@ def _site(row: Row) -> SiteEntry:
     if row["arm"] not in CHROMOSOME_OF_ARM:
         raise InputError(f"{where}: '{row['arm']}' is not an arm", "write X, 2L, 2R, 3L, 3R or 4")
     return SiteEntry(
-        name=row["name"], synonyms=_split(row["synonyms"]), arm=row["arm"],
-        chromosome=CHROMOSOME_OF_ARM[row["arm"]], band=row["band"], map_cM=_number(row["map_cM"], where),
-        trouble=row["homozygous_trouble"], source=row["source"], kind=row["kind"], carries=_split(row["carries"]),
+        name=row["name"],
+        synonyms=_split(row["synonyms"]),
+        arm=row["arm"],
+        chromosome=CHROMOSOME_OF_ARM[row["arm"]],
+        band=row["band"],
+        map_cM=_number(row["map_cM"], where),
+        trouble=row["homozygous_trouble"],
+        source=row["source"],
+        kind=row["kind"],
+        carries=_split(row["carries"]),
     )
 
 
@@ -634,14 +695,15 @@ def _anchors(rows: Iterable[Row]) -> dict[str, list[tuple[float, float]]]:
         place = _band_place(row["arm"], row["band"])
         cM = _number(row["cM"], f"band {row['band']}")
         if place is None or cM is None:
-            raise InputError(f"band {row['arm']} {row['band']}: not a band with a place in cM", "see bands.csv")
+            raise InputError(
+                f"band {row['arm']} {row['band']}: not a band with a place in cM", "see bands.csv"
+            )
         found.setdefault(row["arm"], []).append((place, cM))
     return {arm: sorted(anchors) for arm, anchors in found.items()}
 
 
 def _band_place(arm: str, band: str) -> float | None:
-    """Return a number that grows along the arm: division, then letter, then band; a letter alone is its
-    middle."""
+    """Return a number that grows along the arm: division, letter, band; a letter alone is its middle."""
     match = _BAND.fullmatch(band.strip())
     limits = DIVISIONS.get("X" if arm == "1" else arm)
     if match is None or limits is None:
@@ -652,8 +714,9 @@ def _band_place(arm: str, band: str) -> float | None:
     if match["letter"] is None:
         return division * 6 + 3.0
     letter = ord(match["letter"].upper()) - ord("A")
-    within = 0.5 if match["band"] is None else min(int(match["band"]), BANDS_IN_A_LETTER) / (BANDS_IN_A_LETTER
-    + 1) return division * 6 + letter + within
+    if match["band"] is None:
+        return division * 6 + letter + 0.5
+    return division * 6 + letter + min(int(match["band"]), BANDS_IN_A_LETTER) / (BANDS_IN_A_LETTER + 1)
 
 
 def _balancer_key(name: str) -> str:

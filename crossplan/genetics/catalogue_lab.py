@@ -53,8 +53,7 @@ Rows = list[dict[str, str]]
 
 
 def load_catalogue(lab_toml: Path | None) -> Catalogue:
-    """Return the catalogue with the lab's own entries; without a file, the catalogue that comes with the
-    program.
+    """Return the catalogue with the lab's own entries; without a file, the one that comes with the program.
 
     Raises:
         InputError: the file cannot be read, or an entry in it cannot be used; says which entry and which name
@@ -65,7 +64,7 @@ def load_catalogue(lab_toml: Path | None) -> Catalogue:
     tables = read_tables()
     for heading, entries in _read(lab_toml).items():
         table = TABLES[heading]
-        for number, entry in enumerate(entries, start=1):
+        for number, entry in reversed(list(enumerate(entries, start=1))):
             _merge(tables[table], table, entry, f"{lab_toml.name}, [[{heading}]] number {number}")
     try:
         return Catalogue(tables)
@@ -83,12 +82,16 @@ def _read(path: Path) -> dict[str, list[dict[str, object]]]:
     try:
         content = tomllib.loads(text)
     except tomllib.TOMLDecodeError as error:
-        raise InputError(f"{path.name} is not TOML: {error}", "text goes in quotes, lists in square brackets") from None
+        raise InputError(
+            f"{path.name} is not TOML: {error}", "text goes in quotes, lists in square brackets"
+        ) from None
     for heading, entries in content.items():
         if heading not in TABLES:
             raise InputError(f"{path.name}: [[{heading}]] is not known", f"write one of {_headings()}")
         if not isinstance(entries, list) or not all(isinstance(e, dict) for e in entries):
-            raise InputError(f"{path.name}: {heading} must be written as [[{heading}]]", "two square brackets")
+            raise InputError(
+                f"{path.name}: {heading} must be written as [[{heading}]]", "two square brackets"
+            )
     return content
 
 
@@ -97,8 +100,7 @@ def _headings() -> str:
 
 
 def _merge(rows: Rows, table: str, entry: dict[str, object], where: str) -> None:
-    """Change the row of `rows` that `entry` names, or add a new one (in front, so that its pattern is tried
-    first)."""
+    """Change the row of `rows` that `entry` names, or add a new one in front of all others."""
     columns = list(rows[0])
     given = {name: _text(value, f"{where}, {name}") for name, value in entry.items()}
     for name, value in given.items():
@@ -108,9 +110,11 @@ def _merge(rows: Rows, table: str, entry: dict[str, object], where: str) -> None
     if place is None:
         rows.insert(0, _complete(_new(given, columns, table, where), table, where))
     else:
-        changed = rows[place] | {"source": f"the lab, correcting: {rows[place]['source']}", "kind": "lab"} |
-        given rows[place] = _complete(changed, table, where) if "band" in given and "map_cM" not in given else
-        changed
+        old = rows[place]
+        if "band" in given:
+            old = old | {"map_cM": ""}
+        changed = old | {"source": f"the lab, correcting: {old['source']}", "kind": "lab"} | given
+        rows[place] = _complete(changed, table, where)
 
 
 def _place_of(key: tuple[str, ...], rows: Rows, table: str) -> int | None:
@@ -128,33 +132,31 @@ def _text(value: object, where: str) -> str:
         return str(value)
     if isinstance(value, list) and all(isinstance(v, int | float | str) for v in value):
         return ";".join(str(v) for v in value)
-    raise InputError(f"{where}: '{value}' cannot be used here", "write text, a number, true or false, or a
-    list of texts")
+    hint = "write text, a number, true or false, or a list of texts"
+    raise InputError(f"{where}: '{value}' cannot be used here", hint)
 
 
 def _check(name: str, value: str, columns: list[str], where: str) -> None:
     if name not in columns:
         near = get_close_matches(name, columns, n=1)
-        raise InputError(f"{where}: '{name}' is not known here", f"did you mean {near[0]}?" if near else
-                         f"write one of {', '.join(columns)}")
+        hint = f"did you mean {near[0]}?" if near else f"write one of {', '.join(columns)}"
+        raise InputError(f"{where}: '{name}' is not known here", hint)
     if name in ALLOWED and value not in ALLOWED[name]:
         choices = ", ".join(sorted(v for v in ALLOWED[name] if v))
-        raise InputError(f"{where}, {name}: '{value}' is not one of the words for it", f"write one of
-        {choices}")
+        raise InputError(f"{where}, {name}: '{value}' is not a word for it", f"write one of {choices}")
 
 
 def _new(given: dict[str, str], columns: list[str], table: str, where: str) -> dict[str, str]:
     missing = [name for name in REQUIRED[table] if name not in given]
     if missing:
-        raise InputError(f"{where} is new to the catalogue and lacks {', '.join(missing)}", "write it, if only
-        as \"\"")
+        message = f"{where} is new to the catalogue and lacks {', '.join(missing)}"
+        raise InputError(message, 'write it, if only as ""')
     blank = {name: DEFAULTS.get(name, "") for name in columns}
     return blank | {"source": "the lab's own catalogue file"} | given
 
 
 def _complete(row: dict[str, str], table: str, where: str) -> dict[str, str]:
-    """Return the row of a landing site with its place in cM worked out from its band where that is
-    missing."""
+    """Return a landing site with its place in cM worked out from its band where that is missing."""
     if table != "landing_sites" or not row["band"]:
         return row
     place = default_catalogue().band_to_cM(row["arm"], row["band"])

@@ -8,7 +8,7 @@ last step whether its flies are what the target asked for.
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 
 from crossplan.errors import Problem, Severity
 from crossplan.genetics.appearance import Observer
@@ -23,15 +23,17 @@ from crossplan.plan.model import FlyRecord, ParentRecord, Plan, StepRecord, Targ
 SHARE_TOLERANCE = 1e-9
 
 
-def replay(plan: Plan, observer: Observer, known: Mapping[str, Element]) -> tuple[Problem, ...]:
+def replay(
+    plan: Plan, observer_of: Callable[[float], Observer], known: Mapping[str, Element]
+) -> tuple[Problem, ...]:
     """Return every fault of the plan; an empty result means that each step does what the plan says.
 
     Args:
         plan: the plan.
-        observer: the lab's catalogue and means, with which every class must be recognisable.
+        observer_of: gives who looks at flies reared at a temperature in degrees C, with the lab's catalogue and means.
         known: elements of the stock list by symbol, so that genotypes mean what they mean there.
     """
-    check = _Replay(plan, observer, known)
+    check = _Replay(plan, observer_of, known)
     faults: list[Problem] = []
     for step in plan.steps:
         faults += check.step(step)
@@ -42,14 +44,16 @@ def replay(plan: Plan, observer: Observer, known: Mapping[str, Element]) -> tupl
 
 
 class _Replay:
-    def __init__(self, plan: Plan, observer: Observer, known: Mapping[str, Element]) -> None:
+    def __init__(
+        self, plan: Plan, observer_of: Callable[[float], Observer], known: Mapping[str, Element]
+    ) -> None:
         self.plan = plan
-        self.observer = observer
+        self.observer_of = observer_of
         self.known = known
         self.steps = {s.id: s for s in plan.steps}
 
     def _fly(self, record: FlyRecord) -> Fly:
-        return read_fly(record.genotype, record.sex, self.observer.catalogue, self.known)
+        return read_fly(record.genotype, record.sex, self.observer_of(25.0).catalogue, self.known)
 
     def step(self, step: StepRecord) -> list[Problem]:
         mother, father = self._fly(step.mother.fly), self._fly(step.father.fly)
@@ -58,7 +62,7 @@ class _Replay:
             faults.append(_fault(step, "the mother must be female and the father male"))
         for parent in (step.mother, step.father):
             faults += self._origin(step, parent)
-        progeny = cross(mother, father, self.observer)
+        progeny = cross(mother, father, self.observer_of(step.temperature_C))
         kept = self._fly(step.keep.fly)
         sexes = ("female", "male") if step.keep.sex == "both" else (step.keep.sex,)
         for sex in sexes:

@@ -1,7 +1,8 @@
 """How many flies to look through, so that enough of a class are among them.
 
-The number of flies of a class with share p among n is binomial, if the flies are told apart without error and live
-equally well. The answer is the fewest n with P(Bin(n, p) >= need) >= probability: exact, no rounding of an approximation.
+The number of flies of a class with share p among n is binomial, if the flies are told apart without error
+and live equally well. The answer is the fewest n with P(Bin(n, p) >= need) >= probability: exact, no
+rounding of an approximation.
 """
 
 from __future__ import annotations
@@ -21,7 +22,7 @@ from crossplan.rearing.tails import binomial_at_least, log_binomial
 MOST_FLIES = 10_000_000
 #: floating point decides unless it comes this close to the probability asked for; then whole numbers do
 _TIE = 1e-8
-#: whole-number arithmetic up to this many bits in all (some seconds); beyond it floating point decides ties too
+#: whole-number arithmetic up to this many bits in all (about a second), else floating point decides ties too
 _MOST_BITS = 4e9
 
 _HOW_TO_WRITE_A_SHARE = "Write a share of all progeny as 1/8, 0.125 or 12.5%."
@@ -33,7 +34,7 @@ Share = Fraction | float
 
 @dataclass(frozen=True, slots=True)
 class Score:
-    """Flies to look through, flies of the class expected among them, and the probability that they are enough."""
+    """Flies to look through, flies of the class expected among them, the probability of enough of it."""
 
     score: int
     expected: float
@@ -61,7 +62,8 @@ def parse_share(text: str) -> Fraction:
 
 
 def as_written(value: Share) -> Fraction:
-    """Return a number exactly as it is written in decimals: 0.1 is one tenth, not the nearest binary fraction."""
+    """Return a number exactly as it is written in decimals: 0.1 is one tenth, not the nearest binary
+    fraction."""
     return value if isinstance(value, Fraction) else Fraction(repr(float(value)))
 
 
@@ -69,7 +71,8 @@ def check_request(share: Share, need: int, probability: float) -> None:
     """Refuse a share, a number or a probability that cannot be meant.
 
     Raises:
-        RearingError: the share is not above 0 and at most 1, `need` is below 1, or the probability not between 0 and 1.
+        RearingError: the share is not above 0 and at most 1, `need` is below 1, or the probability not
+            between 0 and 1.
     """
     if not 0 < share <= 1:
         raise RearingError(f"share {share}: expected more than 0 and at most 1", _HOW_TO_WRITE_A_SHARE)
@@ -78,7 +81,7 @@ def check_request(share: Share, need: int, probability: float) -> None:
     if not 0.0 < probability < 1.0:
         raise RearingError(
             f"probability {probability:g}: expected more than 0 and less than 1, such as 0.95",
-            "No number of flies makes it certain." if probability == 1.0 else "",
+            "No number of flies makes it certain; 95 % is written 0.95.",
         )
 
 
@@ -104,7 +107,9 @@ def flies_to_score(share: Share, need: int, probability: float) -> Score:
         return exact_at_least(need, flies, p) >= asked
 
     guess = sedcole(float(p), need, probability)
-    too_many = f"share {float(share):g}: more than {MOST_FLIES} flies would have to be looked through for {need}"
+    too_many = (
+        f"share {float(share):g}: more than {MOST_FLIES} flies would have to be looked through for {need}"
+    )
     if guess > MOST_FLIES:
         raise RearingError(too_many, "The class is too rare to be picked from one cross.")
     flies = fewest(enough, need, round(guess), MOST_FLIES, too_many)
@@ -115,7 +120,8 @@ def flies_to_score(share: Share, need: int, probability: float) -> Score:
 def flies_to_score_both(
     share_female: Share, need_females: int, share_male: Share, need_males: int, probability: float
 ) -> Score:
-    """Return the fewest flies to look through for females and males of a class at once, as for founding a stock.
+    """Return the fewest flies to look through for females and males of a class at once, as for founding a
+    stock.
 
     The two shares are of all progeny, both sexes together. `expected` counts both.
 
@@ -125,7 +131,9 @@ def flies_to_score_both(
     check_request(share_female, need_females, probability)
     check_request(share_male, need_males, probability)
     if share_female + share_male > 1 + 1e-12:
-        raise RearingError(f"shares {share_female} and {share_male} add up to more than 1", _HOW_TO_WRITE_A_SHARE)
+        raise RearingError(
+            f"shares {share_female} and {share_male} add up to more than 1", _HOW_TO_WRITE_A_SHARE
+        )
     female, male = float(share_female), float(share_male)
     either = need_females + need_males
 
@@ -139,7 +147,8 @@ def flies_to_score_both(
 
 
 def both_at_least(need_a: int, need_b: int, flies: int, share_a: float, share_b: float) -> float:
-    """Return the probability of `need_a` or more of one class and `need_b` or more of another among `flies`."""
+    """Return the probability of `need_a` or more of one class and `need_b` or more of another among
+    `flies`."""
     if need_a + need_b > flies:
         return 0.0
     others = min(1.0, share_a / (1.0 - share_b)) if share_b < 1.0 else 0.0
@@ -174,11 +183,14 @@ def sedcole(share: float, need: int, probability: float) -> float:
     z = NormalDist().inv_cdf(probability)
     miss = 1.0 - share
     a = need - 0.5
-    return max((2.0 * a + z * z * miss + z * math.sqrt(z * z * miss * miss + 4.0 * miss * a)) / (2.0 * share), need)
+    return max(
+        (2.0 * a + z * z * miss + z * math.sqrt(z * z * miss * miss + 4.0 * miss * a)) / (2.0 * share), need
+    )
 
 
 def fewest(enough: Callable[[int], bool], least: int, guess: int, most: int, too_many: str) -> int:
-    """Return the smallest number from `least` to `most` that is `enough`; once enough, every larger one is too.
+    """Return the smallest number from `least` to `most` that is `enough`; once enough, every larger one is
+    too.
 
     The search widens its steps around `guess`, then halves them.
 

@@ -86,7 +86,8 @@ class Course:
 
     @classmethod
     def of_starts(cls, starts: Sequence[tuple[float, float]]) -> Course:
-        """Return the course given by (start hour, temperature) in rising order; the last temperature holds on.
+        """Return the course given by (start hour, temperature) in rising order; the last temperature holds
+        on.
 
         Raises:
             RearingError: no start, the first is not hour 0, or hours do not rise.
@@ -118,15 +119,17 @@ class Course:
         last, colon, _ = parts[-1].partition(":")
         if colon:
             raise RearingError(
-                f"temperature course '{text}': the last part '{parts[-1]}' has a duration, but what comes after it"
-                f" is not said (expected '{last.strip()}', which holds from then on, or one more temperature)",
+                f"temperature course '{text}': the last part '{parts[-1]}' has a duration, but what comes"
+                f" after it is not said (expected '{last.strip()}', which holds from then on, or one more"
+                " temperature)",
                 HOW_TO_WRITE,
             )
         return cls(tuple(lead), tuple(_spans(last, text)))
 
     @classmethod
     def of(cls, where: Course | float) -> Course:
-        """Return `where` itself if it is a course, else the constant course at that temperature in degrees C."""
+        """Return `where` itself if it is a course, else the constant course at that temperature in degrees
+        C."""
         return where if isinstance(where, Course) else cls.constant(where)
 
     @property
@@ -140,7 +143,8 @@ class Course:
         return len({span.temperature for span in self.repeat}) > 1
 
     def _stretches(self) -> Iterator[tuple[float, float]]:
-        """Yield (hours, temperature) from hour 0 on; the last stretch of a course that settles is infinite."""
+        """Yield (hours, temperature) from hour 0 on; the last stretch of a course that settles is
+        infinite."""
         for span in self.lead:
             yield span.hours, span.temperature
         if not self.is_cycle:
@@ -174,8 +178,8 @@ class Course:
     def hours_until(self, total: float, rate: Callable[[float], float], start: float = 0.0) -> float:
         """Return the hour at which the integral of `rate(temperature)` from hour `start` reaches `total`.
 
-        Exact for each piece, since the rate is constant there; temperatures are never averaged. `rate` is per hour,
-        positive, and is asked only for temperatures that are reached.
+        Exact for each piece, since the rate is constant there; temperatures are never averaged. `rate` is
+        per hour, positive, and is asked only for temperatures that are reached.
         """
         done = 0.0
         for piece in self.pieces(start):
@@ -200,7 +204,8 @@ def _temperature(text: str, whole: str) -> float:
     found = _TEMPERATURE.fullmatch(text.strip())
     if found is None:
         raise RearingError(
-            f"temperature course '{whole}': '{text.strip()}' is not a temperature (expected degrees C, such as 25)",
+            f"temperature course '{whole}': '{text.strip()}' is not a temperature"
+            " (expected degrees C, such as 25)",
             HOW_TO_WRITE,
         )
     return float(found[1])
@@ -210,7 +215,8 @@ def _hours(text: str, whole: str) -> float:
     found = _DURATION.fullmatch(text.strip())
     if found is None:
         raise RearingError(
-            f"temperature course '{whole}': '{text.strip()}' is not a duration (expected days or hours: 5d, 12h)",
+            f"temperature course '{whole}': '{text.strip()}' is not a duration"
+            " (expected days or hours: 5d, 12h)",
             HOW_TO_WRITE,
         )
     return float(found[1]) * (24.0 if found[2].lower() == "d" else 1.0)
@@ -223,8 +229,8 @@ def _spans(text: str, whole: str) -> list[Span]:
         return [Span(24.0, _temperature(text, whole))]
     if len(pieces) == 1:
         raise RearingError(
-            f"temperature course '{whole}': the cycle '{text.strip()}' has only one temperature (expected two or"
-            " more, such as 12h20/12h30)",
+            f"temperature course '{whole}': the cycle '{text.strip()}' has only one temperature"
+            " (expected two or more, such as 12h20/12h30)",
             HOW_TO_WRITE,
         )
     spans = []
@@ -232,8 +238,8 @@ def _spans(text: str, whole: str) -> list[Span]:
         found = _CYCLE_PIECE.fullmatch(piece.strip())
         if found is None:
             raise RearingError(
-                f"temperature course '{whole}': '{piece.strip()}' is not a piece of a cycle (expected hours, then the"
-                " temperature: 12h20)",
+                f"temperature course '{whole}': '{piece.strip()}' is not a piece of a cycle"
+                " (expected hours, then the temperature: 12h20)",
                 HOW_TO_WRITE,
             )
         spans.append(Span(_hours(found[1], whole), _temperature(found[2], whole)))

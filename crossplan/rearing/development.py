@@ -4,16 +4,19 @@ The law, in hours from egg to adult at a constant temperature T in degrees C, be
 
     D(T) = D(25) * (1 + exp(a - b T)) / (1 + exp(a - b 25)),   a = 4.435754, b = 0.20036
 
-* D(25) = 220 h: the stage table of the FlyBase developmental ontology (FBdv), after Bodenstein 1950, Bainbridge & Bownes
-  1981 (J. Embryol. Exp. Morphol. 66:57-80) and Campos-Ortega & Hartenstein 1985. Bonnier 1926 (J. Exp. Biol. 4:186-195)
-  measured 228 h for females and 232 h for males. A lab's own figure is better than any of these.
-* The shape is the logistic of Davidson 1944 (J. Anim. Ecol. 13:26-38) for pupae; its parameters are those of the
-  collection of published rate curves by Rebaudo, Struelens & Dangles 2018 (Methods Ecol. Evol. 9:1144-1150). To use it for
-  the whole development, scaled to D(25), is a combination of our own; laboratories differ by 5 % at one temperature.
-* Shares of the stages are those at 25 C, at every temperature. That embryonic events keep their relative timing between
-  17.5 and 32.5 C is published (Kuntz & Eisen 2014, PLoS Genet. 10:e1004293); for the other stages it is an approximation.
-* Under changing temperatures the rates are summed (rate summation), never the temperatures averaged: a 20/30 C cycle takes
-  longer than 25 C throughout, as Manenti et al. 2021 (Insects 12:925) report.
+* D(25) = 220 h: the stage table of the FlyBase developmental ontology (FBdv), after Bodenstein 1950,
+  Bainbridge & Bownes 1981 (J. Embryol. Exp. Morphol. 66:57-80) and Campos-Ortega & Hartenstein 1985.
+  Bonnier 1926 (J. Exp. Biol. 4:186-195) measured 228 h for females and 232 h for males. A lab's own figure
+  is better than any of these.
+* The shape is the logistic of Davidson 1944 (J. Anim. Ecol. 13:26-38) for pupae; its parameters are those
+  of the collection of published rate curves by Rebaudo, Struelens & Dangles 2018 (Methods Ecol. Evol.
+  9:1144-1150). To use it for the whole development, scaled to D(25), is a combination of our own;
+  laboratories differ by 5 % at one temperature.
+* Shares of the stages are those at 25 C, at every temperature. That embryonic events keep their relative
+  timing between 17.5 and 32.5 C is published (Kuntz & Eisen 2014, PLoS Genet. 10:e1004293); for the other
+  stages it is an approximation.
+* Under changing temperatures the rates are summed (rate summation), never the temperatures averaged: a
+  20/30 C cycle takes longer than 25 C throughout, as Manenti et al. 2021 (Insects 12:925) report.
 """
 
 from __future__ import annotations
@@ -36,8 +39,8 @@ DEFAULT_HOURS_AT_25: Final = 220.0
 LEAST_HOURS_AT_25, MOST_HOURS_AT_25 = 100.0, 600.0
 LEAST_FOOD_FACTOR, MOST_FOOD_FACTOR = 0.5, 4.0
 
-#: Hours of each stage at 25 C (FlyBase FBdv; boundaries at 24, 49, 72, 120, 132.2 and 220 h). Puparium formation is the
-#: end of the third instar; pupa is from pupation to eclosion.
+#: Hours of each stage at 25 C (FlyBase FBdv; boundaries at 24, 49, 72, 120, 132.2 and 220 h). Puparium
+#: formation is the end of the third instar; pupa is from pupation to eclosion.
 STAGES_AT_25: Final[tuple[tuple[str, float], ...]] = (
     ("embryo", 24.0),
     ("first instar", 25.0),
@@ -48,21 +51,23 @@ STAGES_AT_25: Final[tuple[tuple[str, float], ...]] = (
 )
 LARVAL_STAGES: Final = ("first instar", "second instar", "third instar")
 
-#: First flies at 0.93 of the development time: 8.5 days at the least (Ashburner & Thompson 1978, as quoted) against 9.17
-#: days (FlyBase) at 25 C; the ratio is our own.
+#: First flies at 0.93 of the development time: 8.5 days at the least (Ashburner & Thompson 1978, as quoted)
+#: against 9.17 days (FlyBase) at 25 C; the ratio is our own.
 FIRST_FLIES_FRACTION: Final = 0.93
-#: Standard deviation of eclosion as a fraction of development time. Measured: 7 to 9 % within vials on food low in yeast
-#: (open counts of the University of East Anglia on diet conditioning); 6 % on good food is our own choice.
+#: Standard deviation of eclosion as a fraction of development time. Measured: 7 to 9 % within vials on food
+#: low in yeast (open counts of the University of East Anglia on diet conditioning); 6 % on good food is our
+#: own choice.
 ECLOSION_SD_FRACTION: Final = 0.06
 ECLOSION_SD_FRACTION_POOR_FOOD: Final = 0.09
-#: All but a few flies of an egg batch have eclosed this many standard deviations after the first (own choice).
+#: All but a few flies of an egg batch have eclosed this many standard deviations after the first (own
+#: choice).
 ECLOSION_WINDOW_SD: Final = 4.0
 #: Band on every date, in percent: the scatter between published totals (own judgement).
 PLUS_MINUS_PERCENT: Final = 10
 
 _A, _B = 4.435754, 0.20036
-#: Davidson 1944, embryo: rate per hour = K / (1 + exp(a - b T)). Within 5 % of the 22 mean times from laying to hatching
-#: that Powsner 1935 (Physiol. Zool. 8:474-520) measured between 14.95 and 30.8 C.
+#: Davidson 1944, embryo: rate per hour = K / (1 + exp(a - b T)). Within 5 % of the 22 mean times from
+#: laying to hatching that Powsner 1935 (Physiol. Zool. 8:474-520) measured between 14.95 and 30.8 C.
 _EMBRYO_K, _EMBRYO_A, _EMBRYO_B = 0.070953, 4.4514215, 0.2071879
 EMBRYO_COLDEST_C: Final = 14.95
 
@@ -95,14 +100,14 @@ def check_temperature(temperature: float) -> None:
     if temperature > WARMEST_C:
         raise RearingError(
             f"{temperature:g} C is too warm to plan for: expected {COLDEST_C:g} to {WARMEST_C:g} C",
-            "Above 30 C development slows again (eggs took 18.2 h at 32.0 C, 16.8 h at 30.05 C: Powsner 1935), eggs die and"
-            " males are sterile. Rear at 30 C or cooler, and warm the adults for the assay.",
+            "Above 30 C development slows again (eggs: 18.2 h at 32.0 C, 16.8 h at 30.05 C; Powsner 1935),"
+            " most eggs die, and males are sterile. Rear at 30 C or cooler; warm the adults for the assay.",
         )
     if not temperature >= COLDEST_C:
         raise RearingError(
             f"{temperature:g} C is too cold to plan for: expected {COLDEST_C:g} to {WARMEST_C:g} C",
-            "At 12 C development takes over 50 days (Ashburner & Thompson 1978, as quoted); colder, it stops. Rear at 18 C"
-            " to slow a culture down.",
+            "At 12 C development takes over 50 days (Ashburner & Thompson 1978, as quoted); colder, it stops."
+            " Rear at 18 C to slow a culture down.",
         )
 
 
@@ -119,8 +124,8 @@ def relative_rate(temperature: float) -> float:
 def embryo_hours(temperature: float) -> float:
     """Return the hours from laying to hatching of fresh eggs at a constant temperature (Davidson 1944).
 
-    The stage table counts 24 h of embryo at 25 C, as the field stages do; fresh single eggs hatch in 20.4 h (Powsner 1935)
-    and this law gives 20.9 h. Use it for when larvae are first seen.
+    The stage table counts 24 h of embryo at 25 C, as the field stages do; fresh single eggs hatch in 20.4 h
+    (Powsner 1935) and this law gives 20.9 h. Use it for when larvae are first seen.
 
     Raises:
         RearingError: outside 14.95 to 30 C, where hatching was measured.
@@ -141,7 +146,8 @@ def _embryo_rate(temperature: float) -> float:
     check_temperature(temperature)
     if temperature < EMBRYO_COLDEST_C:
         raise RearingError(
-            f"{temperature:g} C is too cold to say when eggs hatch: expected {EMBRYO_COLDEST_C:g} to {WARMEST_C:g} C",
+            f"{temperature:g} C is too cold to say when eggs hatch:"
+            f" expected {EMBRYO_COLDEST_C:g} to {WARMEST_C:g} C",
             "Hatching was not measured colder than 14.95 C (Powsner 1935).",
         )
     return _EMBRYO_K / (1.0 + math.exp(_EMBRYO_A - _EMBRYO_B * temperature))
@@ -152,10 +158,12 @@ class Clock:
     """How fast the flies of a lab develop.
 
     Attributes:
-        hours_at_25: hours from egg to adult at 25 C on good food. A figure measured in the lab stretches all stages alike.
-        food_factor: how many times longer the larval instars last for want of food or room; 1 on good food. Only larvae
-            feel it: on food low in yeast the total rose from about 230 h to 310 h at 25 C, the time from puparium to adult
-            not at all (113 h; open East Anglia counts against Bonnier 1926), which is a factor of about 1.8.
+        hours_at_25: hours from egg to adult at 25 C on good food. A figure measured in the lab stretches
+            all stages alike.
+        food_factor: how many times longer the larval instars last for want of food or room; 1 on good food.
+            Only larvae feel it: on food low in yeast the total rose from about 230 h to 310 h at 25 C, the
+            time from puparium to adult not at all (113 h; open East Anglia counts against Bonnier 1926),
+            which is a factor of about 1.8.
     """
 
     hours_at_25: float = DEFAULT_HOURS_AT_25
@@ -197,8 +205,8 @@ class Clock:
             base = f"{self.hours_at_25:g} h at 25 C (this lab's own figure)"
         food = "" if self.food_factor == 1.0 else f"; larval stages x {self.food_factor:g} for food"
         return (
-            f"{base}{food}; temperature law of Davidson 1944 (J. Anim. Ecol. 13:26-38), scaled; rates summed along the"
-            f" course; dates hold to about {PLUS_MINUS_PERCENT} %, food permitting"
+            f"{base}{food}; temperature law of Davidson 1944 (J. Anim. Ecol. 13:26-38), scaled; rates summed"
+            f" along the course; dates hold to about {PLUS_MINUS_PERCENT} %, food permitting"
         )
 
     def hours(self, temperature: float) -> float:
@@ -210,7 +218,8 @@ class Clock:
         return self.total_at_25 / relative_rate(temperature)
 
     def hour_of(self, fraction: float, course: Course, laid_at: float = 0.0) -> float:
-        """Return the hour of the course at which an egg laid at hour `laid_at` has done `fraction` of its development.
+        """Return the hour of the course at which an egg laid at hour `laid_at` has done `fraction` of its
+        development.
 
         Fractions beyond 1 are allowed: they are the slow flies of a batch.
 
@@ -250,8 +259,9 @@ class Clock:
     def eclosion(self, course: Course, laying_hours: float = 0.0) -> Eclosion:
         """Return when the flies of a vial come out, with eggs laid evenly from hour 0 to `laying_hours`.
 
-        The first come at 0.93 of the development of the first egg, the last 4 standard deviations later in that of the
-        last egg. Sexes are taken together: females were 4.3 h earlier at 25 C (Bonnier 1926), males earlier on poor food.
+        The first come at 0.93 of the development of the first egg, the last 4 standard deviations later in
+        that of the last egg. Sexes are taken together: females were 4.3 h earlier at 25 C (Bonnier 1926),
+        males earlier on poor food.
 
         Raises:
             RearingError: the course leaves 12 to 30 C before the last flies, or laying hours are negative.
@@ -276,15 +286,20 @@ class Clock:
         found: list[str] = []
         if max(met) >= HOT_FROM_C:
             found.append(
-                f"Reared at {max(met):g} C: use these flies for the assay only, do not breed from them (from 29 C up males"
-                " become sterile and eggs die)."
+                f"Reared at {max(met):g} C: use these flies for the assay only, do not breed from them"
+                " (from 29 C up males can be sterile and most eggs die)."
             )
         if min(met) < FEW_FIGURES_BELOW_C:
             found.append(
-                f"Reared at {min(met):g} C: below 18 C few development times were measured and many genotypes do badly."
+                f"Reared at {min(met):g} C: below 18 C few development times were measured"
+                " and many genotypes do badly."
             )
         if len(met) > 1 and course.is_cycle:
-            found.append("Daily cycle: the rest of the development may differ by a further 10 % (own judgement).")
+            found.append(
+                "Daily cycle: the rest of the development may differ by a further 10 % (own judgement)."
+            )
         if self.food_factor > 1.0:
-            found.append("Poor or crowded food: flies come later and more spread out than any temperature law says.")
+            found.append(
+                "Poor or crowded food: flies come later and more spread out than any temperature law says."
+            )
         return tuple(found)

@@ -6,7 +6,7 @@ returns, the one is taken that reuses most of the crosses already in the plan, t
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterable, Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass, replace
 from typing import Literal
 
@@ -71,16 +71,8 @@ class BatchPlanner:
         self._searches: dict[object, SearchResult] = {}
         self._planned: set[tuple[object, ...]] = set()
 
-    def plan(self, asked: Iterable[Asked], progress: Callable[[Asked], None] | None = None) -> tuple[Answer, ...]:
-        """Return an answer for every target, in the order given; `progress` is called after each."""
-        answers = []
-        for one in asked:
-            answers.append(self._answer(one))
-            if progress is not None:
-                progress(one)
-        return tuple(answers)
-
-    def _answer(self, asked: Asked) -> Answer:
+    def answer(self, asked: Asked) -> Answer:
+        """Return what becomes of one target."""
         wanted = asked.wanted
         sex = "both" if wanted.stock else wanted.sex
         wish = make_wish(wanted.components, sex, wanted.forbid, wanted.stock, self.shelf)

@@ -20,8 +20,8 @@ EFFECTORS = frozenset(("effector", "reporter"))
 
 
 @dataclass(frozen=True)
-class WithControls:
-    """Targets with their controls behind them, and what could not be added."""
+class Controls:
+    """The controls of a screen, and what could not be added."""
 
     asked: tuple[Asked, ...]
     remarks: tuple[str, ...]
@@ -50,17 +50,22 @@ def empty_parts(shelf: Mapping[str, Carried], named: Sequence[str]) -> dict[tupl
     return found
 
 
-def with_controls(
+def controls_for(
     targets: Iterable[WantedTarget], shelf: Mapping[str, Carried], catalogue: Catalogue, named_empty: Sequence[str]
-) -> WithControls:
-    """Return the targets, each followed by the control without effector, and one empty-driver control an effector."""
+) -> Controls:
+    """Return the control without effector of each target, and one control with an empty driver for each effector.
+
+    Args:
+        targets: those that can be made.
+        shelf: the elements of the stock list.
+        catalogue: tells drivers from effectors.
+        named_empty: the empty drivers that the screen file names.
+    """
     empties = empty_parts(shelf, named_empty)
-    asked: list[Asked] = []
     empty_controls: dict[tuple[object, ...], Asked] = {}
-    remarks: dict[str, None] = {}
     no_effector: dict[tuple[object, ...], Asked] = {}
+    remarks: dict[str, None] = {}
     for target in targets:
-        asked.append(Asked(target))
         if target.stock:
             continue
         classes = {name: component_class(name, shelf, catalogue) for name, _ in target.components}
@@ -71,7 +76,9 @@ def with_controls(
             continue
         alone = _control(target, drivers, f"{target.name}, no effector", "no effector")
         no_effector.setdefault((frozenset(drivers), target.sex), alone)
-        replaced = _with_empty(drivers, shelf, classes, empties)
+        replaced, other_site = _with_empty(drivers, shelf, classes, empties)
+        if other_site:
+            remarks[f"{target.name}: the empty driver sits at another site than {', '.join(other_site)}"] = None
         if replaced is None:
             remarks["no empty driver on this shelf: the effector-alone control was left out"] = None
             continue
@@ -80,9 +87,7 @@ def with_controls(
         known = empty_controls.get(key)
         if known is None or known.wanted.flies < target.flies:
             empty_controls[key] = _control(target, replaced + effectors, label, "empty driver")
-    asked += no_effector.values()
-    asked += _distinct_names(empty_controls.values())
-    return WithControls(tuple(asked), tuple(remarks))
+    return Controls((*no_effector.values(), *_distinct_names(empty_controls.values())), tuple(remarks))
 
 
 def _control(
@@ -109,13 +114,18 @@ def _with_empty(
     shelf: Mapping[str, Carried],
     classes: Mapping[str, str],
     empties: Mapping[tuple[str, str], str],
-) -> tuple[tuple[str, int], ...] | None:
-    replaced = []
+) -> tuple[tuple[tuple[str, int], ...] | None, list[str]]:
+    """Return the drivers with empty ones in their place (None if one is lacking), and those replaced at another site."""
+    replaced: list[tuple[str, int]] = []
+    other_site: list[str] = []
     for name, copies in drivers:
         found = find_component(name, shelf)
         site = found.element.site if isinstance(found, Carried) else ""
-        empty = empties.get((classes[name], site)) or empties.get((classes[name], ""))
+        empty = empties.get((classes[name], site))
         if empty is None:
-            return None
+            empty = empties.get((classes[name], ""))
+            other_site.append(name)
+        if empty is None:
+            return None, []
         replaced.append((empty, copies))
-    return tuple(replaced)
+    return tuple(replaced), other_site

@@ -11,7 +11,10 @@ from collections.abc import Callable, Sequence
 from dataclasses import replace
 
 from crossplan.genetics.catalogue import Catalogue
+from crossplan.genetics.chromosome import FEMALE, MALE, Sex
+from crossplan.genetics.fly import make_pair
 from crossplan.genetics.notation import read_genotype
+from crossplan.genetics.survival import exposed_lethals, sex_of
 from crossplan.schemes.forms import Source
 from crossplan.schemes.search import SearchResult, Status
 from crossplan.schemes.target import Refusal
@@ -47,6 +50,9 @@ def explain_failure(
         search: runs a search for another wish or another shelf.
         catalogue: reads the helper kit.
     """
+    dead = _always_dead(wish, sources)
+    if dead:
+        return Refusal(dead)
     how_far = f"no scheme of up to {result.searched_to} generation(s) gives these flies as a class that can be picked"
     if result.status is Status.LIMIT:
         how_far += f"; the search stopped at its limit before generation {result.searched_to + 1}"
@@ -57,10 +63,40 @@ def explain_failure(
         reason += f". {crowded}"
     if blocking:
         reason += ". It would work if " + ", or if ".join(blocking)
-    unlock = [s.name for s in helper_sources(catalogue) if _works(search(wish, (*sources, s)))]
+    unlock = [s.name for s in _new_helpers(sources, catalogue) if _works(search(wish, (*sources, s)))]
     if unlock:
         reason += ". One of these stocks on the shelf would make it possible: " + "; ".join(unlock)
     return Refusal(reason, tuple(unlock))
+
+
+def _new_helpers(sources: Sequence[Source], catalogue: Catalogue) -> list[Source]:
+    """Return the helpers of the kit that are not on the shelf already."""
+    there = {s.female for s in sources}
+    return [s for s in helper_sources(catalogue) if s.female not in there]
+
+
+def _always_dead(wish: Wish, sources: Sequence[Source]) -> str:
+    """Return why the wanted pair of some chromosome dies whichever homologues of the shelf make it; else nothing."""
+    for chromosome in dict.fromkeys(place for _, place, _ in wish.components):
+        shelf = {h for s in sources for fly in (s.female, s.male) if fly is not None for h in fly.pair(chromosome)}
+        sex: Sex = MALE if wish.sex == MALE else FEMALE
+        wanted = [
+            pair
+            for one in shelf
+            for other in shelf
+            if wish.accepts(pair := make_pair(one, other), chromosome) and (chromosome != "X" or sex_of(pair) == sex)
+        ]
+        if not wanted:
+            continue
+        deaths = [exposed_lethals(pair, chromosome, sex) for pair in wanted]
+        if all(deaths):
+            groups = ", ".join(sorted(frozenset().union(*deaths)))
+            names = ", ".join(f"{n}x {s}" if n > 1 else s for s, place, n in wish.components if place == chromosome)
+            return (
+                f"flies with {names} die: every homologue of chromosome {chromosome} on this shelf that could make them"
+                f" carries the recessive lethal {groups}; it would have to be recombined away first"
+            )
+    return ""
 
 
 def _works(result: SearchResult) -> bool:

@@ -11,16 +11,13 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
 from crossplan.genetics.chromosome import FEMALE
-from crossplan.plan.screen import NumbersSection, RearingSection
+from crossplan.plan.screen import ScreenFile
 from crossplan.rearing.counting import flies_to_score
-from crossplan.rearing.yields import Yield, vials_needed
+from crossplan.rearing.yields import Yield, vials_needed, virgin_catch
 from crossplan.schemes.realise import Cross
 
 #: share of collected adults that live to the assay (common practice, no source)
 SURVIVAL_TO_ASSAY = 0.9
-#: share of the virgins that eclose which two collections a day catch (see crossplan.rearing.yields for the windows)
-VIRGIN_CATCH = 0.6
-
 
 @dataclass(frozen=True)
 class Amount:
@@ -45,8 +42,7 @@ def amounts(
     crosses: Sequence[Cross],
     wanted: Mapping[int, int],
     uses: Mapping[int, Sequence[Use]],
-    rearing: RearingSection,
-    numbers: NumbersSection,
+    screen: ScreenFile,
 ) -> tuple[Amount, ...]:
     """Return the numbers of every cross.
 
@@ -54,27 +50,36 @@ def amounts(
         crosses: all crosses of the plan, parents before children.
         wanted: flies that targets ask of a cross, by its position in `crosses`.
         uses: where its kept flies are parents, by position.
-        rearing: vials, parents to a vial, progeny of a vial.
-        numbers: the probability asked for.
+        screen: parents to a vial, progeny of a vial, hours of collection, the probability asked for.
     """
     found: dict[int, Amount] = {}
+    rearing = screen.rearing
     for i in reversed(range(len(crosses))):
         need = math.ceil(wanted.get(i, 0) / SURVIVAL_TO_ASSAY)
         for use in uses.get(i, ()):
             each = rearing.mothers_per_vial if use.as_mother else rearing.fathers_per_vial
             need += found[use.by].vials * each
         virgins = any(use.as_mother for use in uses.get(i, ()))
-        found[i] = _amount(crosses[i], max(need, 1), virgins, rearing, numbers)
+        found[i] = _amount(crosses[i], max(need, 1), virgins, screen)
     return tuple(found[i] for i in range(len(crosses)))
 
 
-def _amount(
-    cross: Cross, need: int, virgins: bool, rearing: RearingSection, numbers: NumbersSection
-) -> Amount:
+def _amount(cross: Cross, need: int, virgins: bool, screen: ScreenFile) -> Amount:
     share = min(c.share for c in cross.kept)
-    catch = VIRGIN_CATCH if virgins and cross.kept[0].sex == FEMALE else 1.0
-    count = vials_needed(
-        float(share), need, numbers.probability, Yield(mean=rearing.progeny_per_vial), catch=catch
-    )
-    score = flies_to_score(share, need, numbers.probability)
+    caught = caught_virgins(screen) if virgins and cross.kept[0].sex == FEMALE else 1.0
+    probability = screen.numbers.probability
+    vial = Yield(mean=screen.rearing.progeny_per_vial)
+    count = vials_needed(share, need, probability, vial, catch=caught)
+    score = flies_to_score(share, need, probability)
     return Amount(need, count.vials, count.expected, count.probability, score.score)
+
+
+def caught_virgins(screen: ScreenFile) -> float:
+    """Return the share of emerging females that the two collections of a working day catch as sure virgins."""
+    hours = [_hour(screen.calendar.morning), _hour(screen.calendar.afternoon)]
+    return virgin_catch(hours, screen.rearing.temperature)
+
+
+def _hour(clock_time: str) -> float:
+    hours, _, minutes = clock_time.partition(":")
+    return int(hours) + int(minutes or 0) / 60

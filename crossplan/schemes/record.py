@@ -15,6 +15,7 @@ from crossplan.plan.model import FlyRecord, KeepRecord, ParentRecord, StepRecord
 from crossplan.plan.screen import ScreenFile
 from crossplan.schemes.batch import Answer
 from crossplan.schemes.numbers import Amount, Use, amounts
+from crossplan.schemes.screen_plan import ScreenPlanner
 from crossplan.schemes.realise import Cross, StockParent, describe_class, look_alike_words
 
 
@@ -42,14 +43,14 @@ def number_crosses(answers: Sequence[Answer]) -> Numbered:
 
 
 def write_records(
-    answers: Sequence[Answer], screen: ScreenFile, observer: Observer, locations: Mapping[str, str]
+    answers: Sequence[Answer], screen: ScreenFile, planner: ScreenPlanner, locations: Mapping[str, str]
 ) -> tuple[list[TargetRecord], list[StepRecord]]:
     """Return the targets and the steps of the plan.
 
     Args:
         answers: what became of every target.
         screen: the screen file, for numbers and temperatures.
-        observer: the lab's catalogue and means.
+        planner: who answered them.
         locations: where each stock stands, by name.
     """
     numbered = number_crosses(answers)
@@ -67,33 +68,36 @@ def write_records(
             wanted[last] = wanted.get(last, 0) + answer.asked.wanted.flies
             for cross in answer.last.crosses():
                 serves.setdefault(position[cross.key], []).append(answer)
-    numbers = amounts(numbered.crosses, wanted, uses, screen.rearing, screen.numbers)
-    write = _StepWriter(numbered, observer, screen, locations)
+    numbers = amounts(numbered.crosses, wanted, uses, screen)
+    write = _StepWriter(numbered, planner, screen, locations)
     steps = [
         write.step(cross, numbers[i], uses.get(i, []), serves.get(i, []))
         for i, cross in enumerate(numbered.crosses)
     ]
-    return [_target(a, numbered, observer.catalogue) for a in answers], steps
+    return [_target(a, numbered, planner) for a in answers], steps
 
 
 class _StepWriter:
     def __init__(
-        self, numbered: Numbered, observer: Observer, screen: ScreenFile, locations: Mapping[str, str]
+        self, numbered: Numbered, planner: ScreenPlanner, screen: ScreenFile, locations: Mapping[str, str]
     ) -> None:
         self.numbered = numbered
-        self.observer = observer
+        self.planner = planner
         self.screen = screen
         self.locations = locations
 
     def step(self, cross: Cross, amount: Amount, uses: Sequence[Use], serves: Sequence[Answer]) -> StepRecord:
         rearing = self.screen.rearing
+        # what serves several targets is reared as the coolest of them asks
+        warm = min((self.planner.temperature_of(a.asked) for a in serves), default=rearing.temperature)
+        observer = self.planner.observer_of(warm)
         used_by = [self.numbered.id_of(self.numbered.crosses[u.by]) for u in uses]
         return StepRecord(
             id=self.numbered.id_of(cross),
             generation=cross.generation,
             mother=self._parent(cross.mother, cross.mother_fly),
             father=self._parent(cross.father, cross.father_fly),
-            keep=self._keep(cross, any(u.as_mother for u in uses)),
+            keep=self._keep(cross, any(u.as_mother for u in uses), observer),
             serves=[a.asked.wanted.name for a in serves],
             used_by=list(dict.fromkeys(used_by)),
             vials=amount.vials,
@@ -103,7 +107,7 @@ class _StepWriter:
             flies_expected=round(amount.flies_expected, 1),
             probability=round(amount.probability, 4),
             flies_to_score=amount.flies_to_score,
-            temperature_C=rearing.temperature,
+            temperature_C=warm,
             is_control=bool(serves) and all(a.asked.control_kind for a in serves),
             cautions=_cautions(cross),
         )
@@ -117,11 +121,11 @@ class _StepWriter:
             location=self.locations.get(parent.stock, ""),
         )  # fmt: skip
 
-    def _keep(self, cross: Cross, as_mothers: bool) -> KeepRecord:
+    def _keep(self, cross: Cross, as_mothers: bool, observer: Observer) -> KeepRecord:
         kept = cross.kept[0]
         both = len(cross.kept) > 1
         virgin = as_mothers and kept.sex == FEMALE
-        words = " / ".join(describe_class(c, cross.progeny, self.observer) for c in cross.kept)
+        words = " / ".join(describe_class(c, cross.progeny, observer) for c in cross.kept)
         return KeepRecord(
             sex="both" if both else kept.sex,
             signs=sorted(kept.signs),
@@ -132,7 +136,7 @@ class _StepWriter:
             exact=_exact(cross.kept),
             virgin=virgin,
             rule=f"virgin {words}" if virgin else words,
-            mistaken_for=look_alike_words(kept, cross.progeny, self.observer),
+            mistaken_for=look_alike_words(kept, cross.progeny, observer),
         )
 
 
@@ -171,10 +175,10 @@ def _cautions(cross: Cross) -> list[str]:
     return found
 
 
-def _target(answer: Answer, numbered: Numbered, catalogue: Catalogue) -> TargetRecord:
+def _target(answer: Answer, numbered: Numbered, planner: ScreenPlanner) -> TargetRecord:
     wanted = answer.asked.wanted
     scheme = [numbered.id_of(c) for c in answer.last.crosses()] if answer.last else []
-    cautions = _site_cautions(answer.last.fly, catalogue) if answer.last else []
+    cautions = _site_cautions(answer.last.fly, planner.catalogue) if answer.last else []
     if answer.stock:
         cautions.append(f"stock {answer.stock} already is what is wanted")
     return TargetRecord(
@@ -192,6 +196,7 @@ def _target(answer: Answer, numbered: Numbered, catalogue: Catalogue) -> TargetR
         reason=answer.reason,
         would_unlock=list(answer.would_unlock),
         cautions=cautions,
+        needs=list(planner.needs(answer.asked).words),
         due=wanted.due.isoformat() if wanted.due else None,
     )
 

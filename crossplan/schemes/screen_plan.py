@@ -6,7 +6,7 @@ cool is less (Curly wings uncurl): their schemes are searched with that in view.
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterable, Mapping, Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import replace
 
 from crossplan.genetics.appearance import Means, Observer
@@ -14,8 +14,9 @@ from crossplan.genetics.catalogue import Catalogue
 from crossplan.genetics.survival import sterile_because
 from crossplan.plan.screen import ScreenFile
 from crossplan.schemes.batch import Answer, Asked, BatchPlanner
-from crossplan.schemes.effects import needs_of
+from crossplan.schemes.effects import Needs, needs_of
 from crossplan.schemes.forms import Source
+from crossplan.schemes.target import carried_elements
 from crossplan.stocks.shelf import Shelf, Stock
 
 
@@ -44,30 +45,43 @@ def means_of(screen: ScreenFile) -> Means:
     )
 
 
-def answer_targets(
-    asked: Sequence[Asked],
-    sources: Sequence[Source],
-    screen: ScreenFile,
-    catalogue: Catalogue,
-    progress: Callable[[int, int], None] | None = None,
-) -> tuple[tuple[Answer, ...], Mapping[str, float]]:
-    """Return an answer for every target in order, and the rearing temperature of each by name."""
-    means = means_of(screen)
-    planners: dict[float, BatchPlanner] = {}
-    temperatures = {a.wanted.name: _temperature(a, screen, catalogue) for a in asked}
-    answers = []
-    for done, one in enumerate(asked, start=1):
-        warm = temperatures[one.wanted.name]
-        if warm not in planners:
-            observer = Observer(catalogue, replace(means, rearing_C=warm))
-            planners[warm] = BatchPlanner(sources, observer, screen.search.max_generations)
-        answers += planners[warm].plan([one])
-        if progress is not None:
-            progress(done, len(asked))
-    return tuple(answers), temperatures
+class ScreenPlanner:
+    """Answers the targets of one screen on one shelf."""
 
+    def __init__(self, sources: Sequence[Source], screen: ScreenFile, catalogue: Catalogue) -> None:
+        self.sources = tuple(sources)
+        self.screen = screen
+        self.catalogue = catalogue
+        self.shelf = carried_elements(sources)
+        self._planners: dict[float, BatchPlanner] = {}
 
-def _temperature(asked: Asked, screen: ScreenFile, catalogue: Catalogue) -> float:
-    names: Iterable[str] = (name for name, _ in asked.wanted.components)
-    limit = needs_of(names, catalogue).rear_max_C
-    return screen.rearing.temperature if limit is None else min(limit, screen.rearing.temperature)
+    def needs(self, asked: Asked) -> Needs:
+        """Return what the components of a target ask of the bench."""
+        return needs_of((name for name, _ in asked.wanted.components), self.catalogue)
+
+    def temperature_of(self, asked: Asked) -> float:
+        """Return the rearing temperature of a target in degrees C: that of the lab, or cooler where an effector asks so."""
+        limit = self.needs(asked).rear_max_C
+        usual = self.screen.rearing.temperature
+        return usual if limit is None else min(limit, usual)
+
+    def observer_of(self, rearing_C: float) -> Observer:
+        """Return who looks at flies reared at that temperature."""
+        return self._planner(rearing_C).observer
+
+    def _planner(self, rearing_C: float) -> BatchPlanner:
+        found = self._planners.get(rearing_C)
+        if found is None:
+            observer = Observer(self.catalogue, replace(means_of(self.screen), rearing_C=rearing_C))
+            found = BatchPlanner(self.sources, observer, self.screen.search.max_generations)
+            self._planners[rearing_C] = found
+        return found
+
+    def answer(self, asked: Sequence[Asked], progress: Callable[[int, int], None] | None = None) -> list[Answer]:
+        """Return an answer for every target in order; `progress` hears how many of how many are done."""
+        answers = []
+        for done, one in enumerate(asked, start=1):
+            answers.append(self._planner(self.temperature_of(one)).answer(one))
+            if progress is not None:
+                progress(done, len(asked))
+        return answers

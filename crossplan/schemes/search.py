@@ -24,16 +24,18 @@ from typing import TYPE_CHECKING
 
 from crossplan.genetics.appearance import Observer
 from crossplan.genetics.chromosome import FEMALE, MALE, PAIRS, Sex
-from crossplan.genetics.fly import Fly
-from crossplan.genetics.survival import cause_of_death, is_fertile, sex_of
+from crossplan.genetics.fly import Fly, Homologue, make_pair
+from crossplan.genetics.survival import cause_of_death, is_fertile, sex_of, x_dose
 from crossplan.schemes.forms import Form, ReducedShelf
 from crossplan.schemes.segregation import (
     Child,
     ChromosomeTable,
+    chromosomes_are_independent,
     pickable,
     reachable_goal,
     total_share,
 )
+from crossplan.schemes.wish import Wish
 
 if TYPE_CHECKING:
     import numpy as np
@@ -58,14 +60,6 @@ class Status(StrEnum):
     FOUND = "found, not proved"
     IMPOSSIBLE = "proved impossible"
     LIMIT = "limit reached"
-
-
-class Breeding(StrEnum):
-    """How completely the flies of one level were bred."""
-
-    COMPLETE = "complete"
-    PARTIAL = "partial"
-    NONE = "none"
 
 
 @dataclass(frozen=True)
@@ -119,7 +113,9 @@ class _Found:
 
 
 class _Search:
-    def __init__(self, shelf: ReducedShelf, observer: Observer, kept_schemes: int, budget: int) -> None:
+    def __init__(
+        self, shelf: ReducedShelf, observer: Observer, kept_schemes: int, budget: int, forms: Iterable[int]
+    ) -> None:
         self.shelf = shelf
         self.wish = shelf.wish
         self.observer = observer
@@ -130,10 +126,10 @@ class _Search:
         self.tables = [ChromosomeTable(name, observer, self.wish, frozenset(restored)) for name in PAIRS]
         self.found: dict[State, _Found] = {}
         self._content: dict[tuple[int, int], frozenset[str]] = {}
-        self._bred: set[tuple[State, State]] = set()
+        self._hidden_by = {name: sign.hidden_by for name, sign in observer.catalogue.signs.items()}
         self._kept: dict[tuple[int, int, int, bool], tuple[Child, ...]] = {}
-        for i, form in enumerate(shelf.forms):
-            for fly in (form.female, form.male):
+        for i in forms:
+            for fly in (shelf.forms[i].female, shelf.forms[i].male):
                 if fly is not None:
                     self._add_stock(i, fly)
 
@@ -182,34 +178,25 @@ class _Search:
         states = [s for s, f in self.found.items() if f.level <= below]
         return [s for s in states if sexes[s[0]] == FEMALE], [s for s in states if sexes[s[0]] == MALE]
 
-    def breed(self, level: int, last: bool) -> Breeding:
-        """Add the flies of `level` to what was found, and say how completely.
+    def breed(self, level: int, last: bool, carriers: bool = False) -> bool:
+        """Add every fly of `level` to what was found; return False when the budget does not allow it.
 
         With `last`, the flies are bred to be parents of the last cross only, and those that no last cross can
-        use are left out: every parent must have, on each chromosome, a homologue that the wanted flies may carry.
-        When even this is beyond the budget, only flies with wanted elements are bred.
+        use are left out: a parent must have, on each chromosome, a homologue that the wanted flies may carry.
+        With `carriers`, only crosses of which a parent carries something wanted are made.
         """
         mothers, fathers = self.parents(level - 1)
-        pairs = [(m, f) for m in mothers for f in fathers if (m, f) not in self._bred]
-        must = self._both_parents_need()
-        if last and must:
-            pairs = [(m, f) for m, f in pairs if must <= self.content(m) | self.content(f)]
-        breeding = Breeding.COMPLETE
-        if len(pairs) > self.budget:
-            if not last:
-                return Breeding.NONE
-            pairs = [(m, f) for m, f in pairs if self.content(m) or self.content(f)]
-            breeding = Breeding.PARTIAL
-            if len(pairs) > self.budget:
-                return Breeding.NONE
-        for mother, father in pairs:
-            self._bred.add((mother, father))
+        crosses = [(m, f) for m in mothers for f in fathers if not carriers or self.content(m) or self.content(f)]
+        if len(crosses) > self.budget:
+            return False
+        for mother, father in crosses:
             self._breed_pair(mother, father, level, last)
-        return breeding
+        return True
 
-    def _both_parents_need(self) -> frozenset[str]:
-        """Return the wanted elements that both parents of the last cross must carry: those wanted twice."""
-        return frozenset(symbol for symbol, _, copies in self.wish.components if copies > 1)
+    def breed_last(self, level: int) -> Iterator[bool]:
+        """Breed the parents of a last cross in two parts, the promising one first; yield whether each was done."""
+        for carriers in (True, False):
+            yield self.breed(level, last=True, carriers=carriers)
 
     def _breed_pair(self, mother: State, father: State, level: int, last: bool) -> None:
         options = []
@@ -243,11 +230,9 @@ class _Search:
         return found
 
     def _useful(self, k: int, number: int) -> bool:
-        must = {s for s, place, copies in self.wish.components if copies > 1 and place == self.tables[k].chromosome}
-        return any(
-            must <= set(h.symbols) and not any(self.wish.forbids(e) for e in h.elements)
-            for h in self.tables[k].pairs[number]
-        )
+        """Return whether a parent with this pair can give a gamete that the wanted flies may carry."""
+        table = self.tables[k]
+        return any(may_be_given(self.wish, table.chromosome, h) for h in table.pairs[number])
 
     def _keep_cost(self, child: State, parts: tuple[Child, ...]) -> float:
         share = total_share(tuple(c.share for c in parts))
@@ -255,10 +240,13 @@ class _Search:
         return SCORE_MINUTES / share + virgin
 
     def _is_pure(self, mother: State, father: State, child: State) -> bool:
-        """Look at the whole progeny: the child lives, is fertile, and nobody else looks like it."""
+        """Return whether the child lives, is fertile, and nobody else of the progeny looks like it."""
         fly = self.fly(child)
         if cause_of_death(fly) is not None or not is_fertile(fly):
             return False
+        couplings = [t.coupling(m, f) for t, m, f in zip(self.tables, mother, father, strict=True)]
+        if chromosomes_are_independent(couplings, self._hidden_by):
+            return True
         looks = self.observer.signs(fly)
         return all(
             other == fly or other.sex != fly.sex or self.observer.signs(other) != looks
@@ -272,6 +260,32 @@ class _Search:
             fly = Fly(sex_of(pairs[0]), (pairs[0], pairs[1], pairs[2], pairs[3]))
             if cause_of_death(fly) is None:
                 yield fly
+
+    # -- one chromosome alone ------------------------------------------------------------------------------------
+
+    def some_chromosome_forbids(self, most: int) -> bool:
+        """Return whether the wish fails on one chromosome alone, all others left out of account.
+
+        On each chromosome every pair that any cross of the pairs so far gives is taken as had, recognisable or
+        not; if even so no last cross within `most` generations gives a wanted pair, no scheme does.
+        """
+        return any(not self._chromosome_allows(k, most) for k in range(len(self.tables)))
+
+    def _chromosome_allows(self, k: int, most: int) -> bool:
+        table = self.tables[k]
+        have = dict.fromkeys(s[k] for s, f in self.found.items() if f.level == 0)
+        for _ in range(most):
+            females = [n for n in have if table.chromosome != "X" or table.sexes[n] == FEMALE]
+            males = [n for n in have if table.chromosome != "X" or table.sexes[n] == MALE]
+            before = len(have)
+            for mother, father in product(females, males):
+                goal = table.goal(mother, father)
+                if goal.strict or goal.white or goal.pigmented:
+                    return True
+                have.update(dict.fromkeys(a.pair for a in table.alternatives(mother, father) if not a.recombinant))
+            if len(have) == before:
+                return False
+        return False
 
     # -- the last cross ------------------------------------------------------------------------------------------
 
@@ -397,18 +411,91 @@ def find_schemes(
         budget: largest number of crosses that one level may try; a level beyond it is not searched, and the result
             says so.
     """
-    search = _Search(shelf, observer, kept_schemes, budget)
-    for generations in range(1, max_generations + 1):
-        breeding = Breeding.COMPLETE
-        if generations > 1:
-            # what is bred for the last cross alone may leave flies out that a further generation would need
-            breeding = search.breed(generations - 1, last=generations > 2 and generations == max_generations)
-        if breeding is Breeding.NONE:
-            return SearchResult(Status.LIMIT, searched_to=generations - 1, forms=shelf.forms)
-        hits = search.last_crosses(generations - 1)
+    whole = _Search(shelf, observer, kept_schemes, budget, range(len(shelf.forms)))
+    hits = whole.last_crosses(0)
+    if hits:
+        return _hit(whole, hits, 1)
+    if max_generations == 1:
+        return SearchResult(Status.IMPOSSIBLE, searched_to=1, forms=shelf.forms)
+    for done in whole.breed_last(1):
+        if not done:
+            return SearchResult(Status.LIMIT, searched_to=1, forms=shelf.forms)
+        hits = whole.last_crosses(1)
         if hits:
-            schemes = tuple(search.scheme(mother, father) for _, mother, father in hits)
-            return SearchResult(Status.PROVED_MINIMAL, schemes, generations, generations, shelf.forms)
-        if breeding is Breeding.PARTIAL:
-            return SearchResult(Status.LIMIT, searched_to=generations - 1, forms=shelf.forms)
-    return SearchResult(Status.IMPOSSIBLE, searched_to=max_generations, forms=shelf.forms)
+            return _hit(whole, hits, 2)
+    if max_generations < 3 or whole.some_chromosome_forbids(max_generations):
+        return SearchResult(Status.IMPOSSIBLE, searched_to=max_generations, forms=shelf.forms)
+    return _deeper(whole, max_generations)
+
+
+def _hit(search: _Search, hits: list[tuple[float, State, State]], generations: int) -> SearchResult:
+    schemes = tuple(search.scheme(mother, father) for _, mother, father in hits)
+    return SearchResult(Status.PROVED_MINIMAL, schemes, generations, generations, search.shelf.forms)
+
+
+def _deeper(whole: _Search, max_generations: int) -> SearchResult:
+    """Search from three generations on, where two are known not to do.
+
+    A small shelf of the handiest helpers is tried first: a hit there is minimal, since everything below was searched on
+    the whole shelf. Only if it gives none is the whole shelf bred, as far as the budget allows.
+    """
+    forms = whole.shelf.forms
+    small = _Search(whole.shelf, whole.observer, whole.kept_schemes, whole.budget, _handiest(whole))
+    for search in (small, whole):
+        result = _search_levels(search, max_generations)
+        if result.schemes and (search is whole or result.generations == FIRST_DEEP_LEVEL):
+            return result
+    return result
+
+
+#: the fewest generations that `_deeper` looks for
+FIRST_DEEP_LEVEL = 3
+
+
+def _search_levels(search: _Search, max_generations: int) -> SearchResult:
+    forms = search.shelf.forms
+    for generations in range(FIRST_DEEP_LEVEL, max_generations + 1):
+        short_of_budget = SearchResult(Status.LIMIT, searched_to=generations - 1, forms=forms)
+        if not search.breed(generations - 2, last=False):
+            return short_of_budget
+        for done in search.breed_last(generations - 1):
+            if not done:
+                return short_of_budget
+            hits = search.last_crosses(generations - 1)
+            if hits:
+                return _hit(search, hits, generations)
+    return SearchResult(Status.IMPOSSIBLE, searched_to=max_generations, forms=forms)
+
+
+#: helper stocks that the first look beyond two generations makes do with
+HANDY_HELPERS = 10
+
+
+def _handiest(search: _Search) -> list[int]:
+    """Return the numbers of the forms with wanted elements, and of the helpers with most balancers and least else."""
+    wanted, helpers = [], []
+    for i, form in enumerate(search.shelf.forms):
+        fly = form.female or form.male
+        assert fly is not None
+        if any(search.wish.carried(h) for _, h in fly.homologues()):
+            wanted.append(i)
+            continue
+        balanced = sum(any(h.balancer is not None for h in p) for p in fly.pairs)
+        loads = {e for _, h in fly.homologues() for e in h.elements if not e.traits.dominant and not e.traits.null_for}
+        helpers.append((len(loads), -balanced, i))
+    helpers.sort()
+    by_balance: dict[int, list[int]] = {}
+    for _, balanced, i in helpers:
+        by_balance.setdefault(balanced, []).append(i)
+    chosen = [i for i in by_balance.get(0, [])[:3]]
+    for balanced in sorted(by_balance):
+        chosen += [i for i in by_balance[balanced] if i not in chosen][: HANDY_HELPERS - len(chosen)]
+    return sorted(wanted + chosen)
+
+
+def may_be_given(wish: Wish, chromosome: str, homologue: Homologue) -> bool:
+    """Return whether a gamete with this homologue can be one half of a wanted fly."""
+    if any(wish.forbids(e) for e in homologue.elements):
+        return False
+    doubled = {s for s, place, copies in wish.components if copies > 1 and place == chromosome}
+    return doubled <= set(homologue.symbols)

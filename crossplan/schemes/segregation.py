@@ -15,9 +15,10 @@ shared or hidden between chromosomes these rules are necessary only, and the sea
 
 from __future__ import annotations
 
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
-from crossplan.genetics.appearance import WHITE, Contribution, Observer
+from crossplan.genetics.appearance import WHITE, WHITE_EYES, Contribution, Observer
 from crossplan.genetics.chromosome import FEMALE, Sex
 from crossplan.genetics.fly import Homologue, Pair
 from crossplan.genetics.meiosis import gametes, recombines
@@ -69,6 +70,23 @@ class Goal:
 
 
 @dataclass(frozen=True, slots=True)
+class Coupling:
+    """What of this chromosome can act on the looks or the life of a fly together with another chromosome.
+
+    Attributes:
+        signs: all signs that any living pair shows.
+        restores: genes other than white of which an insertion brings a working copy.
+        exposed: genes that some pair leaves without a working copy.
+        rescued: whether some pair lives only if another chromosome restores a gene.
+    """
+
+    signs: frozenset[str]
+    restores: frozenset[str]
+    exposed: frozenset[str]
+    rescued: bool
+
+
+@dataclass(frozen=True, slots=True)
 class _Alternative:
     pair: int
     share: float
@@ -89,11 +107,12 @@ class ChromosomeTable:
         self.pairs: list[Pair] = []
         self.sexes: list[Sex] = []
         self._number: dict[tuple[Pair, Sex], int] = {}
-        self._parental: set[Homologue] = set()
+        self.parental: set[Homologue] = set()
         self._outcomes: dict[tuple[int, int], tuple[_Alternative, ...]] = {}
         self._children: dict[tuple[int, int], tuple[Child, ...]] = {}
         self._goals: dict[tuple[int, int], Goal] = {}
-        self._white_usable = self._sign_usable("white eyes")
+        self._couplings: dict[tuple[int, int], Coupling] = {}
+        self._white_usable = self._sign_usable(WHITE_EYES)
 
     def _sign_usable(self, name: str) -> bool:
         sign = self.observer.catalogue.signs.get(name)
@@ -111,9 +130,14 @@ class ChromosomeTable:
 
     def add_parental(self, homologue: Homologue) -> None:
         """Say that the homologue stands on the shelf (anything else is a recombinant)."""
-        self._parental.add(homologue)
+        self.parental.add(homologue)
 
-    def _living(self, pair: Pair, sex: Sex) -> bool:
+    def brings_pigment(self, number: int) -> bool:
+        """Return whether the pair gives the eye pigment."""
+        return self._pigment(self.observer.contribution(self.pairs[number], self.chromosome, self.sexes[number]))
+
+    def is_living(self, pair: Pair, sex: Sex) -> bool:
+        """Return whether a fly with this pair lives, as far as this chromosome goes."""
         if self.chromosome == "X" and not 1 <= x_dose(pair) <= 2:
             return False
         exposed = exposed_lethals(pair, self.chromosome, sex)
@@ -150,12 +174,12 @@ class ChromosomeTable:
         alive = 0.0
         for pair, share in zygote_pairs(mother, father, self.chromosome).items():
             sex = sex_of(pair) if self.chromosome == "X" else FEMALE
-            if not self._living(pair, sex):
+            if not self.is_living(pair, sex):
                 continue
             alive += float(share)
             # an autosomal pair looks the same in both sexes
             part = self.observer.contribution(pair, self.chromosome, sex)
-            recombinant = any(h in new and h not in self._parental for h in pair)
+            recombinant = any(h in new and h not in self.parental for h in pair)
             found.append(
                 _Alternative(
                     self.number(pair, sex), float(share), sex, self._look(part), self._pigment(part), recombinant
@@ -164,6 +188,21 @@ class ChromosomeTable:
         return tuple(
             _Alternative(a.pair, a.share / alive, a.sex, a.look, a.pigment, a.recombinant) for a in found
         )
+
+    def coupling(self, mother: int, father: int) -> Coupling:
+        """Return what of this chromosome may act together with others among the progeny of the cross."""
+        key = (mother, father)
+        found = self._couplings.get(key)
+        if found is None:
+            living = self.alternatives(mother, father)
+            looks = [a.look for a in living]
+            found = self._couplings[key] = Coupling(
+                frozenset(s for dominant, exposed, _ in looks for s in (*dominant, *(sign for _, sign in exposed))),
+                frozenset(g for _, _, restores in looks for g in restores),
+                frozenset(g for _, exposed, _ in looks for g, _ in exposed),
+                any(exposed_lethals(self.pairs[a.pair], self.chromosome, a.sex) for a in living),
+            )
+        return found
 
     def children(self, mother: int, father: int) -> tuple[Child, ...]:
         """Return the children of the cross that could be picked, as far as this chromosome goes."""
@@ -246,6 +285,23 @@ def reachable_goal(goals: tuple[Goal, ...]) -> bool:
         g.pigmented and all(other.strict_plain for k, other in enumerate(goals) if k != i)
         for i, g in enumerate(goals)
     )
+
+
+def chromosomes_are_independent(couplings: Sequence[Coupling], hidden_by: Mapping[str, tuple[str, ...]]) -> bool:
+    """Return whether the three rules are exact for a cross: no sign shared, hidden or covered between chromosomes.
+
+    Args:
+        couplings: of every chromosome of the cross.
+        hidden_by: for every sign of the catalogue the signs that hide it.
+    """
+    seen: set[str] = set()
+    for c in couplings:
+        if c.rescued or c.restores or seen & c.signs:
+            return False
+        seen |= c.signs
+    if sum(bool(c.exposed) for c in couplings) > 1:
+        return False
+    return not any(h in seen for s in (*seen, WHITE_EYES) for h in hidden_by.get(s, ()))
 
 
 def total_share(parts: tuple[float, ...]) -> float:

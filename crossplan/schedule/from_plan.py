@@ -1,0 +1,101 @@
+"""The plan's steps as cultures, and the chosen days back into the plan."""
+
+from __future__ import annotations
+
+import datetime as dt
+import math
+from collections.abc import Mapping, Sequence
+
+from crossplan.plan.model import StepRecord, TargetRecord, TaskRecord
+from crossplan.plan.screen import ScreenFile
+from crossplan.rearing.development import Clock
+from crossplan.rearing.handling import anaesthesia_gap_days, retinal_feeding
+from crossplan.schedule.culture import Biology, Culture
+from crossplan.schedule.solve import Assay, Schedule, solve
+from crossplan.schedule.tasks import share_out, step_dates, write_tasks
+from crossplan.schedule.week import WorkWeek
+
+
+def put_on_calendar(
+    steps: Sequence[StepRecord],
+    targets: Sequence[TargetRecord],
+    ages: Mapping[str, tuple[int, int]],
+    fed: frozenset[str],
+    screen: ScreenFile,
+    start: dt.date,
+) -> tuple[list[TaskRecord], Schedule]:
+    """Give every step its dates and every target its assay day; return the tasks and the schedule.
+
+    Args:
+        steps: of the plan, parents before children; their dates and persons are filled in.
+        targets: of the plan; their assay days are filled in.
+        ages: youngest and oldest age in days for each target.
+        fed: targets whose flies are fed retinal before the assay.
+        screen: the screen file.
+        start: first day on which work can be done.
+    """
+    week = WorkWeek.of(screen.calendar, start)
+    clock = Clock() if screen.rearing.hours_at_25 is None else Clock(screen.rearing.hours_at_25)
+    assays = _assays(targets, ages, fed)
+    cultures = _cultures(steps, assays)
+    biologies = {c.step: Biology.at(c.temperature_C, clock) for c in cultures}
+    schedule = solve(cultures, assays, biologies, screen.rearing.laying_days, week)
+    placed = [c for c in cultures if c.step in schedule.days]
+    person = share_out(placed, schedule, screen.calendar.people)
+    for step in steps:
+        if step.id in schedule.days:
+            step.dates = step_dates(schedule.days[step.id], week)
+            step.person = person.get(step.id, "")
+    _fill_targets(targets, schedule, week)
+    return write_tasks(placed, assays, schedule, week, person), schedule
+
+
+def _assays(
+    targets: Sequence[TargetRecord], ages: Mapping[str, tuple[int, int]], fed: frozenset[str]
+) -> list[Assay]:
+    feed = math.ceil(retinal_feeding().least_days)
+    rest = math.ceil(anaesthesia_gap_days())
+    return [
+        Assay(
+            t.target, t.scheme[-1], ages[t.target], t.flies, dt.date.fromisoformat(t.due) if t.due else None,
+            feed if t.target in fed else 0, rest,
+        )  # fmt: skip
+        for t in targets
+        if t.status == "planned" and t.target in ages
+    ]
+
+
+def _cultures(steps: Sequence[StepRecord], assays: Sequence[Assay]) -> list[Culture]:
+    spans: dict[str, int] = {}
+    for assay in assays:
+        low, high = assay.age_days
+        span = high - max(low, assay.feed_days, assay.rest_days)
+        spans[assay.step] = min(span, spans.get(assay.step, span))
+    cultures = []
+    for step in steps:
+        parents = [(p.step, p is step.mother) for p in (step.mother, step.father) if p.step is not None]
+        cultures.append(
+            Culture(
+                step.id, tuple(parents), step.mother.stock or "", step.temperature_C, step.vials, step.keep.virgin,
+                max(spans[step.id], 0) if step.id in spans else None,
+            )  # fmt: skip
+        )
+    return cultures
+
+
+def _fill_targets(targets: Sequence[TargetRecord], schedule: Schedule, week: WorkWeek) -> None:
+    late = {item.target: item for item in schedule.late}
+    for target in targets:
+        if target.status == "planned" and target.scheme and set(target.scheme) & set(schedule.unplaced):
+            target.cautions.append("no days could be found for its crosses within the calendar's horizon")
+        if target.target not in schedule.assay:
+            continue
+        first, last = schedule.windows[target.target]
+        target.assay_date = week.date(schedule.assay[target.target]).isoformat()
+        target.assay_from, target.assay_to = week.date(first).isoformat(), week.date(last).isoformat()
+        missed = late.get(target.target)
+        if missed is not None:
+            target.cautions.append(
+                f"not ready by the day it is due ({missed.due.isoformat()}): {missed.ready.isoformat()} is the earliest"
+                " found; start earlier, or move the due day"
+            )

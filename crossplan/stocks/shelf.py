@@ -1,0 +1,224 @@
+"""The shelf: stocks with what was understood of them.
+
+A list is read in two passes. Elements whose chromosome some row settles (by site, balancer or all its fields) are known
+afterwards, and settle rows that leave it open.
+"""
+
+from __future__ import annotations
+
+import datetime as dt
+import re
+from collections.abc import Mapping
+from dataclasses import dataclass, field, replace
+from functools import cached_property
+from pathlib import Path
+
+from crossplan.errors import Problem, Severity, StockListError
+from crossplan.genetics.catalogue import Catalogue, default_catalogue
+from crossplan.genetics.element import Element
+from crossplan.genetics.notation import Reading, read_genotype
+from crossplan.stocks.columns import guess_columns
+from crossplan.stocks.dates import order_of, possible_days, read_day
+from crossplan.stocks.table import Row, Table, read_table
+
+#: words in the status column that take a stock out of use
+OUT_OF_USE = ("dead", "lost", "retired", "discarded", "gone", "quarantine")
+
+
+@dataclass(frozen=True)
+class Stock:
+    """One row of the list: a culture that perpetuates itself, and what is known of it.
+
+    `name` is unique; a second stock of the same name is called `NAME (row N)`.
+    """
+
+    name: str
+    genotype: str
+    reading: Reading
+    row: int
+    tray: str = ""
+    vial: str = ""
+    copies: int | None = None
+    temperature_C: float | None = None
+    last_transfer: dt.date | None = None
+    who: str = ""
+    source: str = ""
+    status: str = ""
+    notes: str = ""
+
+    @property
+    def location(self) -> str:
+        """Where the stock stands, as the list says: `T01/3`."""
+        return "/".join(p for p in (self.tray, self.vial) if p)
+
+    @property
+    def in_use(self) -> bool:
+        """Whether flies can be taken from it."""
+        status = self.status.lower()
+        return self.copies != 0 and not any(re.search(rf"\b{word}\b", status) for word in OUT_OF_USE)
+
+
+@dataclass(frozen=True)
+class Shelf:
+    """A whole stock list. `columns` says which heading was taken for what."""
+
+    path: str
+    stocks: tuple[Stock, ...]
+    problems: tuple[Problem, ...]
+    columns: Mapping[str, str] = field(default_factory=dict)
+
+    @property
+    def rows_read(self) -> int:
+        return len(self.stocks)
+
+    @property
+    def rows_refused(self) -> int:
+        """Rows whose genotype was not understood."""
+        return sum(not s.reading.ok for s in self.stocks)
+
+    def usable(self) -> tuple[Stock, ...]:
+        """Return the stocks that were understood and are in use."""
+        return tuple(s for s in self.stocks if s.reading.ok and s.in_use)
+
+    @cached_property
+    def _by_name(self) -> dict[str, Stock]:
+        return {s.name: s for s in reversed(self.stocks)}
+
+    def by_name(self, name: str) -> Stock | None:
+        """Return the stock of that name."""
+        return self._by_name.get(name)
+
+    @cached_property
+    def _elements(self) -> dict[str, Element]:
+        return {e.symbol: e for s in reversed(self.stocks) for e in s.reading.elements}
+
+    def elements(self) -> Mapping[str, Element]:
+        """Return every element of the list by symbol, as the first row that has it reads it."""
+        return self._elements
+
+
+def read_stocks(
+    path: Path,
+    *,
+    columns: Mapping[str, str] | None = None,
+    sheet: str | None = None,
+    catalogue: Catalogue | None = None,
+) -> Shelf:
+    """Return the shelf that a stock list describes; rows that cannot be read are kept with their problems.
+
+    Args:
+        path: CSV, TSV, XLSX or ODS.
+        columns: heading for a kind of column (`genotype`, `stock`, `last_transfer`, ...) where a guess would be wrong.
+        sheet: sheet of a workbook.
+        catalogue: facts to read genotypes with; the shipped ones by default.
+
+    Raises:
+        StockListError: the file cannot be read at all.
+    """
+    table = read_table(path, ["genotype", *(columns or {}).values()], sheet)
+    found = guess_columns(table.headings, columns, table.path)
+    if not table.rows:
+        raise StockListError(f"{path} has column names but no stocks under them", "check that the list was saved")
+    reader = _ShelfReader(table, found, catalogue or default_catalogue())
+    return reader.read()
+
+
+class _ShelfReader:
+    def __init__(self, table: Table, columns: Mapping[str, str], catalogue: Catalogue) -> None:
+        self.table = table
+        self.columns = columns
+        self.catalogue = catalogue
+        self.problems: list[Problem] = list(table.problems)
+        self._readings: dict[str, Reading] = {}
+
+    def read(self) -> Shelf:
+        texts = [self._genotype(row) for row in self.table.rows]
+        for text in texts:
+            if text not in self._readings:
+                self._readings[text] = read_genotype(text, self.catalogue)
+        self._second_pass()
+        order = order_of([self._cell(row, "last_transfer") for row in self.table.rows])
+        stocks = []
+        seen: dict[str, int] = {}
+        for row, text in zip(self.table.rows, texts, strict=True):
+            stocks.append(self._stock(row, text, order, seen))
+        return Shelf(self.table.path, tuple(stocks), tuple(self.problems), dict(self.columns))
+
+    def _second_pass(self) -> None:
+        known: dict[str, Element] = {}
+        for reading in self._readings.values():
+            if reading.ok and not any(p.code == "assumed-place" for p in reading.problems):
+                for element in reading.elements:
+                    if element.chromosome and not element.is_balancer:
+                        known.setdefault(element.symbol, element)
+        for text, reading in self._readings.items():
+            if not reading.ok or reading.assumed:
+                again = read_genotype(text, self.catalogue, known)
+                if again.ok:
+                    self._readings[text] = again
+
+    def _cell(self, row: Row, kind: str) -> str:
+        heading = self.columns.get(kind)
+        return row.cells.get(heading, "") if heading else ""
+
+    def _genotype(self, row: Row) -> str:
+        if "genotype" in self.columns:
+            return self._cell(row, "genotype")
+        fields = [self._cell(row, c) or "+" for c in ("X", "2", "3", "4")]
+        return "; ".join(fields if fields[3] != "+" else fields[:3])
+
+    def _stock(self, row: Row, text: str, order: object, seen: dict[str, int]) -> Stock:
+        reading = self._readings[text]
+        for p in reading.problems:
+            self.problems.append(
+                replace(p, path=self.table.path, line=row.number, column=self.columns.get("genotype", "genotype"))
+            )
+        name = self._cell(row, "stock") or f"row {row.number}"
+        if name in seen:
+            self._problem(row, "stock", "name-twice", f"stock '{name}' stands in row {seen[name]} too", "give it another name")
+            name = f"{name} (row {row.number})"
+        seen.setdefault(name, row.number)
+        return Stock(
+            name, text, reading, row.number,
+            tray=self._cell(row, "tray"), vial=self._cell(row, "vial"),
+            copies=self._number(row, "copies"), temperature_C=self._temperature(row),
+            last_transfer=self._date(row, order), who=self._cell(row, "who"), source=self._cell(row, "source"),
+            status=self._cell(row, "status"), notes=self._cell(row, "notes"),
+        )  # fmt: skip
+
+    def _problem(self, row: Row, kind: str, code: str, message: str, hint: str) -> None:
+        self.problems.append(
+            Problem(code, Severity.WARNING, message, hint, self.table.path, row.number, self.columns.get(kind, kind))
+        )
+
+    def _number(self, row: Row, kind: str) -> int | None:
+        text = self._cell(row, kind)
+        if not text:
+            return None
+        if text.isdigit():
+            return int(text)
+        self._problem(row, kind, "not-a-number", f"'{text}' is no number of copies", "write a whole number")
+        return None
+
+    def _temperature(self, row: Row) -> float | None:
+        text = self._cell(row, "temperature")
+        match = re.fullmatch(r"(\d{1,2}(?:[.,]\d)?)\s*(?:°?\s*C)?", text) if text else None
+        if match:
+            return float(match[1].replace(",", "."))
+        if text and text.upper() not in ("RT", "ROOM"):
+            self._problem(row, "temperature", "not-a-temperature", f"'{text}' is no temperature", "write degrees C, such as 18")
+        return 22.0 if text.upper() in ("RT", "ROOM") else None
+
+    def _date(self, row: Row, order: object) -> dt.date | None:
+        text = self._cell(row, "last_transfer")
+        if not text:
+            return None
+        day = read_day(text, order)  # type: ignore[arg-type]
+        if day is None:
+            two = possible_days(text)
+            meant = " or ".join(d.isoformat() for d in two)
+            self._problem(
+                row, "last_transfer", "date", f"'{text}' could be {meant}" if two else f"'{text}' is no date",
+                "write it as 2026-11-03 (year-month-day)",
+            )  # fmt: skip
+        return day
