@@ -22,14 +22,15 @@ from enum import StrEnum
 from itertools import product
 from typing import TYPE_CHECKING
 
-from crossplan.genetics.appearance import Observer
+from crossplan.genetics.appearance import WHITE, Observer
 from crossplan.genetics.chromosome import FEMALE, MALE, PAIRS, Sex
 from crossplan.genetics.fly import Fly, Homologue, make_pair
-from crossplan.genetics.survival import cause_of_death, is_fertile, sex_of, x_dose
+from crossplan.genetics.survival import NO_GENES, cause_of_death, is_fertile, sex_of, x_dose
 from crossplan.schemes.forms import Form, ReducedShelf
 from crossplan.schemes.segregation import (
     Child,
     ChromosomeTable,
+    Goal,
     chromosomes_are_independent,
     pickable,
     reachable_goal,
@@ -121,13 +122,15 @@ class _Search:
         self.observer = observer
         self.kept_schemes = kept_schemes
         self.budget = budget
-        restored = {g for f in shelf.forms for fly in (f.female, f.male) if fly for e in fly.elements()
-                    for g in e.traits.restores}  # fmt: skip
-        self.tables = [ChromosomeTable(name, observer, self.wish, frozenset(restored)) for name in PAIRS]
+        traits = {e.traits for f in shelf.forms for fly in (f.female, f.male) if fly for e in fly.elements()}
+        restored = frozenset(g for t in traits for g in t.restores)
+        self._coverable = (restored - {WHITE}) & frozenset(g for t in traits for g, _ in t.recessive)
+        self.tables = [ChromosomeTable(name, observer, self.wish, restored) for name in PAIRS]
         self.found: dict[State, _Found] = {}
+        self._covered: dict[tuple[int, int], frozenset[str]] = {}
         self._content: dict[tuple[int, int], frozenset[str]] = {}
         self._hidden_by = {name: sign.hidden_by for name, sign in observer.catalogue.signs.items()}
-        self._kept: dict[tuple[int, int, int, bool], tuple[Child, ...]] = {}
+        self._kept: dict[tuple[int, int, int, bool, frozenset[str]], tuple[Child, ...]] = {}
         for i in forms:
             for fly in (shelf.forms[i].female, shelf.forms[i].male):
                 if fly is not None:
@@ -170,6 +173,23 @@ class _Search:
             wanted |= part
         return wanted
 
+    def coverable(self, mother: State, father: State) -> frozenset[str]:
+        """Return the genes that progeny of the cross may lack, and that an insertion on another chromosome may restore."""
+        if not self._coverable:
+            return NO_GENES
+        return self._mutant(mother) & self._mutant(father)
+
+    def _mutant(self, state: State) -> frozenset[str]:
+        found: frozenset[str] = NO_GENES
+        for k, (table, number) in enumerate(zip(self.tables, state, strict=True)):
+            part = self._covered.get((k, number))
+            if part is None:
+                elements = (e for h in table.pairs[number] for e in h.elements)
+                genes = frozenset(g for e in elements for g, _ in e.traits.recessive)
+                part = self._covered[k, number] = genes & self._coverable
+            found |= part
+        return found
+
     # -- breeding one more level ---------------------------------------------------------------------------------
 
     def parents(self, below: int) -> tuple[list[State], list[State]]:
@@ -200,8 +220,9 @@ class _Search:
 
     def _breed_pair(self, mother: State, father: State, level: int, last: bool) -> None:
         options = []
+        coverable = self.coverable(mother, father)
         for k, (m, f) in enumerate(zip(mother, father, strict=True)):
-            children = self._kept_children(k, m, f, last)
+            children = self._kept_children(k, m, f, last, coverable)
             if not children:
                 return
             options.append(children)
@@ -217,14 +238,18 @@ class _Search:
             if self._is_pure(mother, father, child):
                 self._offer(child, _Found(level, cost, (mother, father)))
 
-    def _kept_children(self, k: int, mother: int, father: int, last: bool) -> tuple[Child, ...]:
+    def _kept_children(
+        self, k: int, mother: int, father: int, last: bool, coverable: frozenset[str]
+    ) -> tuple[Child, ...]:
         """Return the pairs of chromosome number `k` that may be kept; with `last`, those that a last cross can use."""
-        key = (k, mother, father, last)
+        key = (k, mother, father, last, coverable)
         found = self._kept.get(key)
         if found is None:
             table = self.tables[k]
             found = tuple(
-                c for c in table.children(mother, father) if c.keepable and (not last or self._useful(k, c.pair))
+                c
+                for c in table.children(mother, father, coverable)
+                if c.keepable and (not last or self._useful(k, c.pair))
             )
             self._kept[key] = found
         return found
@@ -244,8 +269,7 @@ class _Search:
         fly = self.fly(child)
         if cause_of_death(fly) is not None or not is_fertile(fly):
             return False
-        couplings = [t.coupling(m, f) for t, m, f in zip(self.tables, mother, father, strict=True)]
-        if chromosomes_are_independent(couplings, self._hidden_by):
+        if self._independent(mother, father):
             return True
         looks = self.observer.signs(fly)
         return all(
@@ -263,29 +287,46 @@ class _Search:
 
     # -- one chromosome alone ------------------------------------------------------------------------------------
 
-    def some_chromosome_forbids(self, most: int) -> bool:
-        """Return whether the wish fails on one chromosome alone, all others left out of account.
+    def some_chromosome_forbids(self) -> bool:
+        """Return whether the wish fails on one chromosome alone, whatever the number of generations.
 
-        On each chromosome every pair that any cross of the pairs so far gives is taken as had, recognisable or
-        not; if even so no last cross within `most` generations gives a wanted pair, no scheme does.
+        Every living pair of homologues of the shelf is taken as had, recognisable or not; if even so no last cross gives a
+        wanted pair, no scheme does.
         """
-        return any(not self._chromosome_allows(k, most) for k in range(len(self.tables)))
+        return any(not self._chromosome_allows(table) for table in self.tables)
 
-    def _chromosome_allows(self, k: int, most: int) -> bool:
-        table = self.tables[k]
-        have = dict.fromkeys(s[k] for s, f in self.found.items() if f.level == 0)
-        for _ in range(most):
-            females = [n for n in have if table.chromosome != "X" or table.sexes[n] == FEMALE]
-            males = [n for n in have if table.chromosome != "X" or table.sexes[n] == MALE]
-            before = len(have)
-            for mother, father in product(females, males):
-                goal = table.goal(mother, father)
-                if goal.strict or goal.white or goal.pigmented:
-                    return True
-                have.update(dict.fromkeys(a.pair for a in table.alternatives(mother, father) if not a.recombinant))
-            if len(have) == before:
-                return False
+    def _chromosome_allows(self, table: ChromosomeTable) -> bool:
+        wanted = {s: copies for s, place, copies in self.wish.components if place == table.chromosome}
+        females, males = self._all_pairs(table)
+        for (mother, of_mother), (father, of_father) in product(females, males):
+            if any((s in of_mother) + (s in of_father) < copies for s, copies in wanted.items()):
+                continue
+            goal = table.goal(mother, father)
+            if goal.strict or goal.white or goal.pigmented:
+                return True
         return False
+
+    def _all_pairs(
+        self, table: ChromosomeTable
+    ) -> tuple[list[tuple[int, frozenset[str]]], list[tuple[int, frozenset[str]]]]:
+        """Return the living pairs of shelf homologues by sex, each with the wanted elements that it carries."""
+        shelf = sorted(table.parental, key=lambda h: h.sort_key)
+        females, males = [], []
+        for i, one in enumerate(shelf):
+            for other in shelf[i:]:
+                pair = make_pair(one, other)
+                is_x = table.chromosome == "X"
+                if is_x and not 1 <= x_dose(pair) <= 2:
+                    continue
+                sex = sex_of(pair) if is_x else FEMALE
+                if not table.is_living(pair, sex):
+                    continue
+                entry = (table.number(pair, sex), self.wish.carried(one) | self.wish.carried(other))
+                if not is_x or sex == FEMALE:
+                    females.append(entry)
+                if not is_x or sex == MALE:
+                    males.append(entry)
+        return females, males
 
     # -- the last cross ------------------------------------------------------------------------------------------
 
@@ -295,9 +336,9 @@ class _Search:
 
         females, males = self.parents(below)
         candidates: list[tuple[float, State, State]] = []
-        for mothers, fathers in self._by_content(females, males):
+        for mothers, fathers, coverable in self._by_content(females, males):
             m, f = np.array(mothers), np.array(fathers)
-            rows, columns = np.nonzero(self._goal_table(m, f))
+            rows, columns = np.nonzero(self._goal_table(m, f, coverable))
             costs = np.array([self.found[s].cost for s in mothers])[rows]
             costs = costs + np.array([self.found[s].cost for s in fathers])[columns]
             for i in np.argsort(costs, kind="stable")[: 50 * self.kept_schemes]:
@@ -312,25 +353,38 @@ class _Search:
         return hits
 
     def _last_cost(self, mother: State, father: State, cost: float) -> float:
-        shares = tuple(t.goal(m, f).share for t, m, f in zip(self.tables, mother, father, strict=True))
+        shares = tuple(g.share for g in self._goals(mother, father))
         return cost + CROSS_MINUTES + SCORE_MINUTES / max(total_share(shares), 1e-9)
+
+    def _goals(self, mother: State, father: State) -> tuple[Goal, ...]:
+        coverable = self.coverable(mother, father)
+        return tuple(t.goal(m, f, coverable) for t, m, f in zip(self.tables, mother, father, strict=True))
+
+    def _independent(self, mother: State, father: State) -> bool:
+        couplings = [t.coupling(m, f) for t, m, f in zip(self.tables, mother, father, strict=True)]
+        return chromosomes_are_independent(couplings, self._hidden_by)
 
     def _by_content(
         self, females: list[State], males: list[State]
-    ) -> Iterator[tuple[list[State], list[State]]]:
-        """Yield groups of mothers and fathers that carry all wanted elements between them."""
+    ) -> Iterator[tuple[list[State], list[State], frozenset[str]]]:
+        """Yield groups of mothers and fathers that carry all wanted elements between them.
+
+        With each group go the genes that its progeny may lack (see `coverable`), the same for the whole group.
+        """
         wanted = frozenset(self.wish.symbols)
-        by_mother: dict[frozenset[str], list[State]] = {}
-        by_father: dict[frozenset[str], list[State]] = {}
+        by_mother: dict[tuple[frozenset[str], frozenset[str]], list[State]] = {}
+        by_father: dict[tuple[frozenset[str], frozenset[str]], list[State]] = {}
         for group, states in ((by_mother, females), (by_father, males)):
             for state in states:
-                group.setdefault(self.content(state), []).append(state)
-        for of_mother, mothers in sorted(by_mother.items(), key=lambda item: sorted(item[0])):
-            for of_father, fathers in sorted(by_father.items(), key=lambda item: sorted(item[0])):
+                group.setdefault((self.content(state), self._mutant(state)), []).append(state)
+        for (of_mother, lack_m), mothers in sorted(by_mother.items(), key=_group_order):
+            for (of_father, lack_f), fathers in sorted(by_father.items(), key=_group_order):
                 if of_mother | of_father == wanted:
-                    yield mothers, fathers
+                    yield mothers, fathers, lack_m & lack_f
 
-    def _goal_table(self, m: NDArray[np.int64], f: NDArray[np.int64]) -> NDArray[np.bool_]:
+    def _goal_table(
+        self, m: NDArray[np.int64], f: NDArray[np.int64], coverable: frozenset[str]
+    ) -> NDArray[np.bool_]:
         """Return for every mother (rows) and father (columns) whether the last cross can give the wish."""
         import numpy as np
 
@@ -338,7 +392,7 @@ class _Search:
         for k, table in enumerate(self.tables):
             of_m, m_index = np.unique(m[:, k], return_inverse=True)
             of_f, f_index = np.unique(f[:, k], return_inverse=True)
-            goals = [[table.goal(int(a), int(b)) for b in of_f] for a in of_m]
+            goals = [[table.goal(int(a), int(b), coverable) for b in of_f] for a in of_m]
             spread = np.ix_(m_index, f_index)
             strict.append(np.array([[g.strict for g in row] for row in goals])[spread])
             plain.append(np.array([[g.strict_plain for g in row] for row in goals])[spread])
@@ -352,9 +406,10 @@ class _Search:
 
     def _gives_wish(self, mother: State, father: State) -> bool:
         """Look at the whole progeny of the last cross: a look whose bearers all satisfy the wish exists."""
-        goals = tuple(t.goal(m, f) for t, m, f in zip(self.tables, mother, father, strict=True))
-        if not reachable_goal(goals):
+        if not reachable_goal(self._goals(mother, father)):
             return False
+        if self._independent(mother, father):
+            return True
         progeny = list(self._progeny(mother, father))
         return bool(accepted_looks(progeny, self.observer, self.accepts, self.wish.sexes()))
 
@@ -372,6 +427,11 @@ class _Search:
             return source
         mother, father = source
         return Node(self._origin(mother), self._origin(father), self.fly(state))
+
+
+def _group_order(group: tuple[tuple[frozenset[str], frozenset[str]], list[State]]) -> tuple[list[str], list[str]]:
+    (content, lacks), _ = group
+    return sorted(content), sorted(lacks)
 
 
 def accepted_looks(
@@ -423,7 +483,7 @@ def find_schemes(
         hits = whole.last_crosses(1)
         if hits:
             return _hit(whole, hits, 2)
-    if max_generations < 3 or whole.some_chromosome_forbids(max_generations):
+    if max_generations < 3 or whole.some_chromosome_forbids():
         return SearchResult(Status.IMPOSSIBLE, searched_to=max_generations, forms=shelf.forms)
     return _deeper(whole, max_generations)
 

@@ -18,14 +18,22 @@ from __future__ import annotations
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
-from crossplan.genetics.appearance import WHITE, WHITE_EYES, Contribution, Observer
+from crossplan.genetics.appearance import (
+    NO_BROWN_PIGMENT,
+    NO_RED_PIGMENT,
+    WHITE,
+    WHITE_EYES,
+    Contribution,
+    Observer,
+)
 from crossplan.genetics.chromosome import FEMALE, Sex
 from crossplan.genetics.fly import Homologue, Pair
 from crossplan.genetics.meiosis import gametes, recombines
 from crossplan.genetics.progeny import zygote_pairs
-from crossplan.genetics.survival import exposed_lethals, restored_genes, sex_of, x_dose
+from crossplan.genetics.survival import NO_GENES, exposed_lethals, restored_genes, sex_of, x_dose
 from crossplan.schemes.wish import Wish
 
+_Key = tuple[int, int, frozenset[str]]
 Look = tuple[frozenset[str], frozenset[tuple[str, str]], frozenset[str]]
 
 
@@ -108,10 +116,10 @@ class ChromosomeTable:
         self.sexes: list[Sex] = []
         self._number: dict[tuple[Pair, Sex], int] = {}
         self.parental: set[Homologue] = set()
-        self._outcomes: dict[tuple[int, int], tuple[_Alternative, ...]] = {}
-        self._children: dict[tuple[int, int], tuple[Child, ...]] = {}
-        self._goals: dict[tuple[int, int], Goal] = {}
-        self._couplings: dict[tuple[int, int], Coupling] = {}
+        self._outcomes: dict[_Key, tuple[_Alternative, ...]] = {}
+        self._children: dict[_Key, tuple[Child, ...]] = {}
+        self._goals: dict[_Key, Goal] = {}
+        self._couplings: dict[_Key, Coupling] = {}
         self._white_usable = self._sign_usable(WHITE_EYES)
 
     def _sign_usable(self, name: str) -> bool:
@@ -144,29 +152,35 @@ class ChromosomeTable:
         restored = restored_genes(pair[0]) | restored_genes(pair[1])
         return not (exposed - restored - self.rescuable)
 
-    def _look(self, part: Contribution) -> Look:
+    def _look(self, part: Contribution, coverable: frozenset[str]) -> Look:
         usable = self.observer.means
         signs = self.observer.catalogue.signs
         dominant = frozenset(s for s in part.dominant if s not in signs or usable.uses(signs[s]))
         exposed = frozenset(
             (gene, sign) for gene, sign in part.exposed if sign and (sign not in signs or usable.uses(signs[sign]))
         )
-        return dominant, exposed, part.restores - {WHITE}
+        return dominant, exposed, part.restores & coverable
 
     def _pigment(self, part: Contribution) -> bool:
         if WHITE in part.restores:
             return True
         return self.chromosome == "X" and (WHITE, "") not in part.exposed
 
-    def alternatives(self, mother: int, father: int) -> tuple[_Alternative, ...]:
-        """Return the living pairs of the cross of two pairs, with shares of the zygotes that live on this chromosome."""
-        key = (mother, father)
+    def alternatives(
+        self, mother: int, father: int, coverable: frozenset[str] = NO_GENES
+    ) -> tuple[_Alternative, ...]:
+        """Return the living pairs of the cross of two pairs, with shares of the zygotes that live on this chromosome.
+
+        `coverable` are the genes that another chromosome may leave without a working copy, so that it may show
+        whether this one brings one.
+        """
+        key = (mother, father, coverable)
         found = self._outcomes.get(key)
         if found is None:
-            found = self._outcomes[key] = self._make_alternatives(self.pairs[mother], self.pairs[father])
+            found = self._outcomes[key] = self._make_alternatives(self.pairs[mother], self.pairs[father], coverable)
         return found
 
-    def _make_alternatives(self, mother: Pair, father: Pair) -> tuple[_Alternative, ...]:
+    def _make_alternatives(self, mother: Pair, father: Pair, coverable: frozenset[str]) -> tuple[_Alternative, ...]:
         new = set()
         if recombines(mother, self.chromosome, FEMALE):
             new = {g.homologue for g in gametes(mother, self.chromosome, FEMALE)} - set(mother)
@@ -182,34 +196,34 @@ class ChromosomeTable:
             recombinant = any(h in new and h not in self.parental for h in pair)
             found.append(
                 _Alternative(
-                    self.number(pair, sex), float(share), sex, self._look(part), self._pigment(part), recombinant
+                    self.number(pair, sex), float(share), sex, self._look(part, coverable), self._pigment(part), recombinant
                 )
             )
         return tuple(
             _Alternative(a.pair, a.share / alive, a.sex, a.look, a.pigment, a.recombinant) for a in found
         )
 
-    def coupling(self, mother: int, father: int) -> Coupling:
+    def coupling(self, mother: int, father: int, coverable: frozenset[str] = NO_GENES) -> Coupling:
         """Return what of this chromosome may act together with others among the progeny of the cross."""
-        key = (mother, father)
+        key = (mother, father, coverable)
         found = self._couplings.get(key)
         if found is None:
-            living = self.alternatives(mother, father)
+            living = self.alternatives(mother, father, coverable)
             looks = [a.look for a in living]
             found = self._couplings[key] = Coupling(
                 frozenset(s for dominant, exposed, _ in looks for s in (*dominant, *(sign for _, sign in exposed))),
-                frozenset(g for _, _, restores in looks for g in restores),
+                frozenset(g for a in living for h in self.pairs[a.pair] for g in restored_genes(h)) - {WHITE},
                 frozenset(g for _, exposed, _ in looks for g, _ in exposed),
                 any(exposed_lethals(self.pairs[a.pair], self.chromosome, a.sex) for a in living),
             )
         return found
 
-    def children(self, mother: int, father: int) -> tuple[Child, ...]:
+    def children(self, mother: int, father: int, coverable: frozenset[str] = NO_GENES) -> tuple[Child, ...]:
         """Return the children of the cross that could be picked, as far as this chromosome goes."""
-        key = (mother, father)
+        key = (mother, father, coverable)
         found = self._children.get(key)
         if found is None:
-            found = self._children[key] = tuple(self._make_children(self.alternatives(mother, father)))
+            found = self._children[key] = tuple(self._make_children(self.alternatives(mother, father, coverable)))
         return found
 
     def _make_children(self, living: tuple[_Alternative, ...]) -> list[Child]:
@@ -224,12 +238,12 @@ class ChromosomeTable:
                 )
         return children
 
-    def goal(self, mother: int, father: int) -> Goal:
+    def goal(self, mother: int, father: int, coverable: frozenset[str] = NO_GENES) -> Goal:
         """Return which looks of this cross satisfy the wish on this chromosome."""
-        key = (mother, father)
+        key = (mother, father, coverable)
         found = self._goals.get(key)
         if found is None:
-            found = self._goals[key] = self._make_goal(self.alternatives(mother, father))
+            found = self._goals[key] = self._make_goal(self.alternatives(mother, father, coverable))
         return found
 
     def _make_goal(self, living: tuple[_Alternative, ...]) -> Goal:
@@ -296,10 +310,13 @@ def chromosomes_are_independent(couplings: Sequence[Coupling], hidden_by: Mappin
     """
     seen: set[str] = set()
     for c in couplings:
-        if c.rescued or c.restores or seen & c.signs:
+        if c.rescued or seen & c.signs:
             return False
         seen |= c.signs
-    if sum(bool(c.exposed) for c in couplings) > 1:
+    exposed = frozenset().union(*(c.exposed for c in couplings))
+    if exposed & frozenset().union(*(c.restores for c in couplings)):
+        return False
+    if exposed & NO_RED_PIGMENT and exposed & NO_BROWN_PIGMENT:
         return False
     return not any(h in seen for s in (*seen, WHITE_EYES) for h in hidden_by.get(s, ()))
 
