@@ -22,7 +22,6 @@ from typing import TYPE_CHECKING, Any
 from crossplan import __version__
 from crossplan.errors import InputError, Problem, Severity
 from crossplan.genetics.appearance import Means, Observer
-from crossplan.genetics.catalogue import Catalogue
 from crossplan.genetics.catalogue_lab import load_catalogue
 from crossplan.genetics.fly import Fly
 from crossplan.genetics.meiosis import MapFunction
@@ -309,8 +308,11 @@ class Planned:
         """Whether a target cannot be made, a date cannot be met, or a row was not understood."""
         late = any("due" in c for t in self.plan.targets for c in t.cautions)
         impossible = any(t.status == "impossible" for t in self.plan.targets)
-        return late or impossible or self.shelf.rows_refused > 0 or any(
-            p.severity == Severity.ERROR for p in self.problems
+        return (
+            late
+            or impossible
+            or self.shelf.rows_refused > 0
+            or any(p.severity == Severity.ERROR for p in self.problems)
         )
 
 
@@ -424,7 +426,9 @@ def load_plan(path: Path) -> Plan:
     try:
         return Plan.model_validate_json(place.read_bytes())
     except FileNotFoundError:
-        raise InputError(f"there is no plan at {place}", "make one: crossplan plan SCREEN --stocks TABLE --out FOLDER") from None
+        raise InputError(
+            f"there is no plan at {place}", "make one: crossplan plan SCREEN --stocks TABLE --out FOLDER"
+        ) from None
     except OSError as error:
         raise InputError(f"cannot read {place}: {error.strerror}") from error
     except ValidationError as error:
@@ -502,7 +506,9 @@ def _write(out: Path, content: bytes) -> int:
         out.parent.mkdir(parents=True, exist_ok=True)
         write_files(out.parent, {out.name: content})
     except OSError as error:
-        raise OutputError(f"cannot write {out}: {error.strerror or error}", "choose another place with --out") from error
+        raise OutputError(
+            f"cannot write {out}: {error.strerror or error}", "choose another place with --out"
+        ) from error
     return len(content)
 
 

@@ -62,9 +62,7 @@ def bench_sheet_pdf(
         raise InputError(f"there is no page size {page!r}", f"Use {', '.join(PAPERS)}.")
     tasks = chosen_tasks(plan, dates, person)
     if not tasks:
-        raise InputError(
-            "there is no bench sheet to print", "The plan has no task on these days for this person."
-        )
+        raise InputError("there is no bench sheet to print", "The plan has no task on these days for this person.")
     title = f"Bench sheets: {plan.screen.name}"
     foot = " · ".join(part for part in (plan.screen.name, plan.screen.lab, person or "") if part)
     with Pages(title, *PAPERS[page], first_day(plan)) as pages:
@@ -93,9 +91,7 @@ def _day_page(paper: Paper, plan: Plan, day: str, tasks: list[TaskRecord], with_
     collected: set[str] = set()
     for _, group in groupby(tasks, key=lambda t: (t.time, WALKING_ORDER.index(t.kind))):
         section = list(group)
-        jobs = [
-            _job(plan, task, steps.get(task.step), with_names, task.step in collected) for task in section
-        ]
+        jobs = [_job(plan, task, steps.get(task.step), with_names, task.step in collected) for task in section]
         collected |= {task.step for task in section if task.kind == "collect"}
         paper.add(Band(f"{section[0].time}  {HEADINGS[section[0].kind]}"), jobs[0])
         for job in jobs[1:]:

@@ -97,9 +97,7 @@ def calendar_ics(
         _event(all_entries[uid], zone, _stamp(plan), known.get(uid), alarm_minutes)
         for uid in sorted(wanted | moved_away, key=lambda u: (all_entries[u].start, natural(u)))
     ]
-    events += [
-        _cancelled(known[uid], _stamp(plan)) for uid in sorted(known, key=natural) if uid not in all_entries
-    ]
+    events += [_cancelled(known[uid], _stamp(plan)) for uid in sorted(known, key=natural) if uid not in all_entries]
     return _calendar(plan, zone, events)
 
 
@@ -140,9 +138,7 @@ def _summary(tasks: list[TaskRecord]) -> str:
     parts = []
     for kind, group in groupby(tasks, key=lambda t: t.kind):
         steps = list(dict.fromkeys(t.step for t in group))
-        parts.append(
-            f"{DOING[kind]} {listed(steps) if len(steps) <= 4 else count(len(steps), 'cross', 'crosses')}"
-        )
+        parts.append(f"{DOING[kind]} {listed(steps) if len(steps) <= 4 else count(len(steps), 'cross', 'crosses')}")
     return f"Flies: {'; '.join(parts)}"
 
 
@@ -161,8 +157,7 @@ def _task_line(task: TaskRecord, step: StepRecord | None) -> str:
     parts = [task.step]
     if step and task.kind == "set up":
         parts.append(
-            f"{parents_text(step.mother, step.father)}, {count(step.vials, 'vial')}, "
-            f"{warm(step.temperature_C)}"
+            f"{parents_text(step.mother, step.father)}, {count(step.vials, 'vial')}, {warm(step.temperature_C)}"
         )
     if step and task.kind == "collect":
         parts.append(keep_rule(step.keep))
@@ -195,9 +190,7 @@ def _stamp(plan: Plan) -> dt.datetime:
     return dt.datetime(day.year, day.month, day.day, tzinfo=dt.UTC)
 
 
-def _previous_events(
-    previous: Plan | bytes | None, dates: Iterable[Day] | None, person: str | None
-) -> dict[str, Any]:
+def _previous_events(previous: Plan | bytes | None, dates: Iterable[Day] | None, person: str | None) -> dict[str, Any]:
     """Return the events that were given out before, by identity."""
     from icalendar import Calendar
 
@@ -212,9 +205,7 @@ def _previous_events(
         events = Calendar.from_ical(previous).walk("VEVENT")
         return {_text(event, "UID"): event for event in events}
     except (ValueError, KeyError, IndexError):
-        raise InputError(
-            "the earlier calendar file cannot be read", "Give the file as crossplan wrote it."
-        ) from None
+        raise InputError("the earlier calendar file cannot be read", "Give the file as crossplan wrote it.") from None
 
 
 def _text(event: Any, name: str) -> str:
@@ -249,9 +240,7 @@ def _alarm(entry: Entry, minutes: int) -> Any:
     from icalendar import Alarm
 
     if minutes < 0:
-        raise InputError(
-            "a reminder cannot come after its entry", "Give minutes before the entry, 0 or more."
-        )
+        raise InputError("a reminder cannot come after its entry", "Give minutes before the entry, 0 or more.")
     alarm = Alarm()
     alarm.add("action", "DISPLAY")
     alarm.add("description", entry.summary)

@@ -34,9 +34,7 @@ def chosen_days(dates: Iterable[Day] | None) -> frozenset[str] | None:
         try:
             days.add(as_date(day).isoformat())
         except ValueError:
-            raise InputError(
-                f"{day!r} is not a date", "Write days as YYYY-MM-DD, such as 2027-01-11."
-            ) from None
+            raise InputError(f"{day!r} is not a date", "Write days as YYYY-MM-DD, such as 2027-01-11.") from None
     return frozenset(days)
 
 
@@ -51,9 +49,7 @@ def first_day(plan: Plan) -> dt.date | None:
 
 def people_of(plan: Plan) -> tuple[str, ...]:
     """Return everybody to whom the plan gives work, in alphabetical order."""
-    return tuple(
-        sorted({t.person for t in plan.tasks if t.person} | {s.person for s in plan.steps if s.person})
-    )
+    return tuple(sorted({t.person for t in plan.tasks if t.person} | {s.person for s in plan.steps if s.person}))
 
 
 def check_person(plan: Plan, person: str | None) -> None:
@@ -64,15 +60,11 @@ def check_person(plan: Plan, person: str | None) -> None:
         raise InputError(f"the plan has no work for {person!r}", known)
 
 
-def chosen_tasks(
-    plan: Plan, dates: Iterable[Day] | None = None, person: str | None = None
-) -> list[TaskRecord]:
+def chosen_tasks(plan: Plan, dates: Iterable[Day] | None = None, person: str | None = None) -> list[TaskRecord]:
     """Return the tasks on these days (None: all) of this person (None: everybody), in walking order."""
     check_person(plan, person)
     days = chosen_days(dates)
-    tasks = [
-        t for t in plan.tasks if (days is None or t.date in days) and (person is None or t.person == person)
-    ]
+    tasks = [t for t in plan.tasks if (days is None or t.date in days) and (person is None or t.person == person)]
     return sorted(tasks, key=walking_key)
 
 
@@ -108,6 +100,4 @@ def chosen_steps(
 
 def _some(plan: Plan, most: int = 12) -> str:
     ids = sorted((s.id for s in plan.steps), key=natural)
-    return (
-        ", ".join(ids[:most]) + (f" and {len(ids) - most} more" if len(ids) > most else "") if ids else "none"
-    )
+    return ", ".join(ids[:most]) + (f" and {len(ids) - most} more" if len(ids) > most else "") if ids else "none"

@@ -70,9 +70,7 @@ def fit(
     return _cut(pages, flowing, width, height, sizes[-1], bold, leading)
 
 
-def _cut(
-    pages: Pages, text: str, width: float, height: float, size: float, bold: bool, leading: float
-) -> Fitted:
+def _cut(pages: Pages, text: str, width: float, height: float, size: float, bold: bool, leading: float) -> Fitted:
     """Keep as many characters as leave room for the mark; the kept part is found by halving."""
     room = max(1, int((height + 1e-6) / line_height(size, leading)))
     takes = pages.width_of(CUT_MARK, size, bold)

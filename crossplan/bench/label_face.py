@@ -122,11 +122,7 @@ class LabelFace:
     def _dates_text(self, weekdays: bool) -> tuple[str, str]:
         dates = self.step.dates
         first, second = dates_phrases(dates, weekdays) if dates else UNDATED
-        return (
-            (first, second)
-            if self.temperature_below
-            else (f"{warm(self.step.temperature_C)} · {first}", second)
-        )
+        return (first, second) if self.temperature_below else (f"{warm(self.step.temperature_C)} · {first}", second)
 
     def _place_middle(self) -> None:
         """Share out what is left: the rule as little as lets it stand whole, the genotype the rest.
@@ -150,10 +146,7 @@ class LabelFace:
         names = [source_text(self.step.mother), source_text(self.step.father)]
         left = [len(name) for name in names]
         while True:
-            shown = [
-                n if k == len(n) else n[:k].rstrip() + SHORT_CUT_MARK
-                for n, k in zip(names, left, strict=True)
-            ]
+            shown = [n if k == len(n) else n[:k].rstrip() + SHORT_CUT_MARK for n, k in zip(names, left, strict=True)]
             text = f"{FEMALE_SIGN}{NO_BREAK}{shown[0]} × {MALE_SIGN}{NO_BREAK}{shown[1]}"
             fitted = self._fit([text], self.text_width, room, self.largest)
             if fitted.whole or max(left) <= 1:
@@ -165,9 +158,7 @@ class LabelFace:
         text = [f"keep {keep_rule(self.step.keep)}"]
         largest = 0.9 * self.largest
         if not self.temperature_below and self.below_code >= ONE_LINE:
-            across = self._fit(
-                text, self.width - 2 * self.edge, min(room, self.below_code), largest, prose=True
-            )
+            across = self._fit(text, self.width - 2 * self.edge, min(room, self.below_code), largest, prose=True)
             if across.whole or room < 2 * ONE_LINE:
                 return across
         return self._fit(text, self.text_width, room, largest, prose=True)
@@ -188,11 +179,7 @@ class LabelFace:
         self._draw_header(vial, left, top)
         self.pages.modules(x + self.code_left, y + self.code_top, pattern(vial.code().text()), self.module)
         if self.temperature_below:
-            wide = (
-                self.code_size
-                * self.module
-                / self.pages.width_of(warm(self.step.temperature_C), 1.0, bold=True)
-            )
+            wide = self.code_size * self.module / self.pages.width_of(warm(self.step.temperature_C), 1.0, bold=True)
             size = min(9.0, self.below_code / line_height(1.0, TIGHT), wide)
             middle = x + self.code_left + self.code_size * self.module / 2
             base = y + self.code_bottom + ASCENT * size * MM_PER_POINT
@@ -205,11 +192,7 @@ class LabelFace:
     def _draw_header(self, vial: Vial, left: float, top: float) -> None:
         base = top + 0.74 * self.id_size * MM_PER_POINT
         self.pages.text(left, base, self.step.id, self.id_size, bold=True)
-        at = (
-            left
-            + self.pages.width_of(self.step.id, self.id_size, bold=True)
-            + 0.12 * self.id_size * MM_PER_POINT
-        )
+        at = left + self.pages.width_of(self.step.id, self.id_size, bold=True) + 0.12 * self.id_size * MM_PER_POINT
         number, size = f"{vial.number}/{vials_of(self.step)}", 0.62 * self.id_size
         self.pages.text(at, base, number, size)
         if self.step.is_control:
@@ -220,9 +203,7 @@ class LabelFace:
         size = max(SMALLEST_TYPE, 0.45 * self.id_size)
         rim = 0.15 * size * MM_PER_POINT
         room = right - left - 4 * rim
-        word = next(
-            (w for w in ("CONTROL", "CTRL", "C") if self.pages.width_of(w, size, bold=True) <= room), "C"
-        )
+        word = next((w for w in ("CONTROL", "CTRL", "C") if self.pages.width_of(w, size, bold=True) <= room), "C")
         width, height = (
             self.pages.width_of(word, size, bold=True) + 2 * rim,
             0.74 * size * MM_PER_POINT + 2 * rim,

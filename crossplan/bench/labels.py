@@ -84,12 +84,8 @@ def shortened_labels(
         return tuple(step for step in chosen if not LabelFace(pages, plan.step(step), *size).is_whole)
 
 
-def _vials(
-    plan: Plan, steps: Iterable[str] | None, dates: Iterable[Day] | None, person: str | None
-) -> list[Vial]:
+def _vials(plan: Plan, steps: Iterable[str] | None, dates: Iterable[Day] | None, person: str | None) -> list[Vial]:
     chosen = chosen_steps(plan, steps, dates, person)
     if not chosen:
-        raise InputError(
-            "there are no labels to print", "No cross of the plan fits these steps, days and person."
-        )
+        raise InputError("there are no labels to print", "No cross of the plan fits these steps, days and person.")
     return [Vial(step, n) for step in chosen for n in range(1, vials_of(step) + 1)]

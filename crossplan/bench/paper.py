@@ -133,9 +133,7 @@ class Band:
     def draw(self, pages: Pages, x: float, y: float, width: float) -> None:
         tall = line_height(self.size) + 0.8
         pages.box(x, y + 1.2, width, tall, black=True)
-        pages.text(
-            x + 1.5, y + 1.6 + ASCENT * self.size * MM_PER_POINT, self.text, self.size, bold=True, white=True
-        )
+        pages.text(x + 1.5, y + 1.6 + ASCENT * self.size * MM_PER_POINT, self.text, self.size, bold=True, white=True)
 
 
 @dataclass(frozen=True, slots=True)
@@ -165,9 +163,7 @@ class Job:
         return self._heading_height(pages, width) + inner + 2.6
 
     def _heading_height(self, pages: Pages, width: float) -> float:
-        return len(pages.wrap(self.heading, self.size, width - self.indent, bold=True)) * line_height(
-            self.size
-        )
+        return len(pages.wrap(self.heading, self.size, width - self.indent, bold=True)) * line_height(self.size)
 
     def draw(self, pages: Pages, x: float, y: float, width: float) -> None:
         pages.box(x + 0.5, y + 0.7, 4.6, 4.6, 0.35)

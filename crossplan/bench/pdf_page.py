@@ -99,11 +99,7 @@ class Pages:
 
     def wrap(self, text: str, size: float, width: float, bold: bool = False) -> list[Line]:
         """Break a text into lines of at most `width` mm: after a space, `/`, `;` or `,`, else anywhere."""
-        chars = [
-            (c, raised)
-            for part, raised in raised_runs(re.sub(r"[ \t\r\n]+", " ", text.strip()))
-            for c in part
-        ]
+        chars = [(c, raised) for part, raised in raised_runs(re.sub(r"[ \t\r\n]+", " ", text.strip())) for c in part]
         lines: list[Line] = []
         start = 0
         while start < len(chars):
@@ -183,9 +179,7 @@ class Pages:
         self._pdf.set_line_width(thick)
         self._pdf.line(x1, y1, x2, y2)
 
-    def box(
-        self, x: float, y: float, width: float, height: float, thick: float = 0.2, black: bool = False
-    ) -> None:
+    def box(self, x: float, y: float, width: float, height: float, thick: float = 0.2, black: bool = False) -> None:
         """Draw a rectangle, empty or black."""
         if black:
             self._pdf.set_fill_color(0)

@@ -25,8 +25,7 @@ class Reminder:
 REMINDERS: Final[tuple[Reminder, ...]] = (
     Reminder(
         "local rules",
-        "Local rules, your safety officer and the licences of your institute come before anything printed "
-        "here.",
+        "Local rules, your safety officer and the licences of your institute come before anything printed here.",
         "common practice, no source",
     ),
     Reminder(
@@ -48,8 +47,7 @@ REMINDERS: Final[tuple[Reminder, ...]] = (
         "Do not use diethyl ether if you can avoid it: its vapour creeps and ignites, and old bottles hold "
         "explosive "
         "peroxides. A chilled plate needs no gas.",
-        "Ratterman 2003, ABLE Proceedings 24 (fire and health hazard, chilled plate); peroxides: common "
-        "practice",
+        "Ratterman 2003, ABLE Proceedings 24 (fire and health hazard, chilled plate); peroxides: common practice",
     ),
     Reminder(
         "allergy",

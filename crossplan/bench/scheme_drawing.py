@@ -68,16 +68,13 @@ def _signature(target: TargetRecord, crosses: tuple[StepRecord, ...]) -> object:
 
     def fly(record: FlyRecord) -> object:
         return tuple(
-            tuple(tuple(component.get(e, e) for e in homologue) for homologue in pair)
-            for _, pair in pairs_of(record)
+            tuple(tuple(component.get(e, e) for e in homologue) for homologue in pair) for _, pair in pairs_of(record)
         )
 
     def parent(record: ParentRecord) -> object:
         return (record.sex, place.get(record.step or "", -1), fly(record.fly))
 
-    return tuple(
-        (s.generation, parent(s.mother), parent(s.father), s.keep.sex, fly(s.keep.fly)) for s in crosses
-    )
+    return tuple((s.generation, parent(s.mother), parent(s.father), s.keep.sex, fly(s.keep.fly)) for s in crosses)
 
 
 # --- one fly ------------------------------------------------------------------------------------------------
@@ -133,9 +130,7 @@ class FlyFigure:
             x += f.width + GAP
 
 
-def fly_figure(
-    pages: Pages, fly: FlyRecord, chromosomes: Sequence[str], room: float, bold: bool = False
-) -> FlyFigure:
+def fly_figure(pages: Pages, fly: FlyRecord, chromosomes: Sequence[str], room: float, bold: bool = False) -> FlyFigure:
     """Return the fly drawn within `room` mm: smaller, then one element a line, then with broken lines."""
     pairs = [(name, pair) for name, pair in pairs_of(fly) if name in chromosomes]
     sizes = [LARGEST - 0.5 * i for i in range(int((LARGEST - SMALLEST) / 0.5) + 1)]
@@ -170,9 +165,7 @@ def _figure(
 
 def shown_chromosomes(flies: Sequence[FlyRecord]) -> list[str]:
     """Return the chromosomes to draw: those not wild type in all of these flies; at least the X."""
-    names = [
-        name for name in ("X", "2", "3", "4") if any(not is_plain(dict(pairs_of(f))[name]) for f in flies)
-    ]
+    names = [name for name in ("X", "2", "3", "4") if any(not is_plain(dict(pairs_of(f))[name]) for f in flies)]
     return names or ["X"]
 
 

@@ -41,9 +41,7 @@ class SheetLayout:
     def __post_init__(self) -> None:
         size = f"{self.label_width:g} x {self.label_height:g} mm"
         if self.label_width < MIN_WIDTH or self.label_height < MIN_HEIGHT:
-            raise InputError(
-                f"a label of {size} is too small", f"Use {MIN_WIDTH:g} x {MIN_HEIGHT:g} mm or more."
-            )
+            raise InputError(f"a label of {size} is too small", f"Use {MIN_WIDTH:g} x {MIN_HEIGHT:g} mm or more.")
         if self.columns < 1 or self.rows < 1:
             raise InputError("a page needs at least one column and one row of labels")
         if min(self.margin_left, self.margin_top) < 0:
@@ -96,9 +94,7 @@ def sheet(
     What is not given follows: labels without gaps, and the block of labels in the middle of the page.
     """
     if isinstance(page, str) and page not in PAPERS:
-        raise InputError(
-            f"there is no page size {page!r}", f"Use {', '.join(PAPERS)}, or width and height in mm."
-        )
+        raise InputError(f"there is no page size {page!r}", f"Use {', '.join(PAPERS)}, or width and height in mm.")
     width, height = PAPERS[page] if isinstance(page, str) else page
     across, down = pitch_x or label_width, pitch_y or label_height
     left = (width - (columns - 1) * across - label_width) / 2 if margin_left is None else margin_left
@@ -148,7 +144,5 @@ LAYOUTS: Final[dict[str, SheetLayout]] = {
 def layout_named(name: str) -> SheetLayout:
     """Return the layout of this name; InputError lists the names there are."""
     if name not in LAYOUTS:
-        raise InputError(
-            f"there is no label layout {name!r}", f"Layouts: {', '.join(LAYOUTS)}; or give sizes."
-        )
+        raise InputError(f"there is no label layout {name!r}", f"Layouts: {', '.join(LAYOUTS)}; or give sizes.")
     return LAYOUTS[name]

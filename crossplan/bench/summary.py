@@ -70,9 +70,7 @@ def glance(plan: Plan) -> list[tuple[str, str]]:
         ("each cross gives enough with probability", f"{screen.probability:g}"),
         ("made by", f"crossplan {screen.crossplan}" if screen.crossplan else ""),
     ]
-    facts += [
-        (words, _total(name, plan.totals[name])) for name, words in TOTALS.items() if name in plan.totals
-    ]
+    facts += [(words, _total(name, plan.totals[name])) for name, words in TOTALS.items() if name in plan.totals]
     return [(words, value) for words, value in facts if value]
 
 
@@ -105,9 +103,7 @@ def generations_words(target: TargetRecord) -> str:
     if target.generations is None:
         return ""
     proof = (
-        "fewest possible, proved"
-        if target.proved_minimal
-        else f"searched to {target.searched_to}, not proved fewest"
+        "fewest possible, proved" if target.proved_minimal else f"searched to {target.searched_to}, not proved fewest"
     )
     return f"{target.generations} ({proof})"
 

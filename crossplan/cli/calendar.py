@@ -18,9 +18,7 @@ def register(app: typer.Typer) -> None:
 def calendar(
     plan: Annotated[Path, typer.Argument(help="plan.json, or the folder that holds it.")],
     out: Annotated[Path, typer.Option("--out", help="iCalendar file to write.")] = Path("calendar.ics"),
-    dates: Annotated[
-        str | None, typer.Option("--dates", help="Only these days: DAY or FROM..TO (YYYY-MM-DD).")
-    ] = None,
+    dates: Annotated[str | None, typer.Option("--dates", help="Only these days: DAY or FROM..TO (YYYY-MM-DD).")] = None,
     person: Annotated[str | None, typer.Option("--person", help="Only this person's work.")] = None,
     alarm: Annotated[int | None, typer.Option("--alarm", help="Remind this many minutes before.")] = None,
     instead_of: Annotated[

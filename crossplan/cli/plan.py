@@ -143,8 +143,7 @@ def _show_dates(plan: Plan) -> None:
     if not plan.steps:
         return
     out.print(
-        f"{totals['steps']} crosses, {totals['vials']} vials, {totals['tasks']} tasks"
-        f" on {totals['working_days']} days"
+        f"{totals['steps']} crosses, {totals['vials']} vials, {totals['tasks']} tasks on {totals['working_days']} days"
     )
     out.print(
         f"First flies ready [bold]{totals['first_ready']}[/bold],"

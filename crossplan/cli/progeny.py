@@ -27,9 +27,7 @@ def progeny(
         bool, typer.Option("--fluorescence", help="There is a fluorescence dissecting scope.")
     ] = False,
     temperature: Annotated[float, typer.Option(help="Rearing temperature of the progeny, degrees C.")] = 25.0,
-    kosambi: Annotated[
-        bool, typer.Option("--kosambi", help="Kosambi's map function instead of Haldane's.")
-    ] = False,
+    kosambi: Annotated[bool, typer.Option("--kosambi", help="Kosambi's map function instead of Haldane's.")] = False,
     lab_file: Annotated[Path | None, typer.Option("--lab", help="The lab's own catalogue entries (TOML).")] = None,
     as_json: Annotated[bool, typer.Option("--json", help="Print one JSON document.")] = False,
 ) -> None:

@@ -93,9 +93,7 @@ class Observer:
 
     def signs(self, fly: Fly) -> frozenset[str]:
         """Return the signs that can be scored on the fly."""
-        return self.combine(
-            self.contribution(pair, name, fly.sex) for name, pair in zip(PAIRS, fly.pairs, strict=True)
-        )
+        return self.combine(self.contribution(pair, name, fly.sex) for name, pair in zip(PAIRS, fly.pairs, strict=True))
 
     def contribution(self, pair: Pair, chromosome: str, sex: Sex) -> Contribution:
         """Return what this pair adds to the looks of a fly of `sex`."""
@@ -169,5 +167,3 @@ def _shown(gene: str, signs_by_homologue: list[set[str]]) -> set[str]:
     """
     signs = set().union(*signs_by_homologue)
     return signs or {""}
-
-

@@ -75,9 +75,7 @@ LIKENESS: Final = 0.66
 SHORTEST_BALANCER_NAME: Final = 3
 
 _SYMBOL = re.compile(r"(?P<gene>.+?)(?:\[(?P<allele>[^\[\]]*)\])?")
-_BAND = re.compile(
-    r"(?P<division>\d{1,3})(?:-?(?P<letter>[A-F])(?P<band>\d{1,2})?)?(?:[-;,].*)?", re.IGNORECASE
-)
+_BAND = re.compile(r"(?P<division>\d{1,3})(?:-?(?P<letter>[A-F])(?P<band>\d{1,2})?)?(?:[-;,].*)?", re.IGNORECASE)
 _VK = re.compile(r"(?:attp)?vk0*(\d{1,5})")
 _LETHAL_NAME = re.compile(r"l\([1-4]\)\S+")
 _FLUORESCENT_MARKER = re.compile(r"(?i)3xP3|GFP|YFP|CFP|RFP|DsRed|tdTom|mCherry")
@@ -314,9 +312,7 @@ class Catalogue:
         return tuple(self._markers.values())
 
     def _wild_type(self, gene: str, allele: str) -> MarkerEntry | None:
-        known = self._markers.get((gene, "")) or next(
-            (m for m in self._markers.values() if m.gene == gene), None
-        )
+        known = self._markers.get((gene, "")) or next((m for m in self._markers.values() if m.gene == gene), None)
         if known is None:
             return None
         return replace(
@@ -600,9 +596,7 @@ def _fluorescence(marker: str) -> str:
 
 def _refuse_twice(name: str, first: str, second: str) -> None:
     if first != second:
-        raise InputError(
-            f"'{name}' is a name of both {first} and {second}", "give one of them another synonym"
-        )
+        raise InputError(f"'{name}' is a name of both {first} and {second}", "give one of them another synonym")
 
 
 def _near_hint(name: str, known: Iterable[str]) -> str:
@@ -621,9 +615,7 @@ def _number(text: str, where: str) -> float | None:
     try:
         return float(text)
     except ValueError:
-        raise InputError(
-            f"{where}: '{text}' is not a number", "write it with a point, such as 12.5"
-        ) from None
+        raise InputError(f"{where}: '{text}' is not a number", "write it with a point, such as 12.5") from None
 
 
 def _yes(text: str, where: str) -> bool:
@@ -695,9 +687,7 @@ def _anchors(rows: Iterable[Row]) -> dict[str, list[tuple[float, float]]]:
         place = _band_place(row["arm"], row["band"])
         cM = _number(row["cM"], f"band {row['band']}")
         if place is None or cM is None:
-            raise InputError(
-                f"band {row['arm']} {row['band']}: not a band with a place in cM", "see bands.csv"
-            )
+            raise InputError(f"band {row['arm']} {row['band']}: not a band with a place in cM", "see bands.csv")
         found.setdefault(row["arm"], []).append((place, cM))
     return {arm: sorted(anchors) for arm, anchors in found.items()}
 

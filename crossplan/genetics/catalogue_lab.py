@@ -82,16 +82,12 @@ def _read(path: Path) -> dict[str, list[dict[str, object]]]:
     try:
         content = tomllib.loads(text)
     except tomllib.TOMLDecodeError as error:
-        raise InputError(
-            f"{path.name} is not TOML: {error}", "text goes in quotes, lists in square brackets"
-        ) from None
+        raise InputError(f"{path.name} is not TOML: {error}", "text goes in quotes, lists in square brackets") from None
     for heading, entries in content.items():
         if heading not in TABLES:
             raise InputError(f"{path.name}: [[{heading}]] is not known", f"write one of {_headings()}")
         if not isinstance(entries, list) or not all(isinstance(e, dict) for e in entries):
-            raise InputError(
-                f"{path.name}: {heading} must be written as [[{heading}]]", "two square brackets"
-            )
+            raise InputError(f"{path.name}: {heading} must be written as [[{heading}]]", "two square brackets")
     return content
 
 

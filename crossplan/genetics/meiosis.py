@@ -93,9 +93,7 @@ def differing_loci(pair: Pair) -> tuple[_Locus, ...]:
     for side, elements in enumerate((only_first, only_second)):
         for element in elements:
             places.setdefault(_place(element), ([], []))[side].append(element)
-    loci = [
-        _Locus((here[0] or here[1])[0].position_cM, tuple(here[0]), tuple(here[1])) for here in places.values()
-    ]
+    loci = [_Locus((here[0] or here[1])[0].position_cM, tuple(here[0]), tuple(here[1])) for here in places.values()]
     loci.sort(key=lambda locus: (locus.position_cM is None, locus.position_cM or 0.0))
     return tuple(_merge_same_position(loci))
 

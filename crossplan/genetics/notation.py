@@ -88,9 +88,7 @@ class _Part:
         return found
 
 
-def read_genotype(
-    text: str, catalogue: Catalogue | None = None, known: Mapping[str, Element] | None = None
-) -> Reading:
+def read_genotype(text: str, catalogue: Catalogue | None = None, known: Mapping[str, Element] | None = None) -> Reading:
     """Return what was understood of a genotype; never raises, whatever the text.
 
     Args:
@@ -114,7 +112,9 @@ class _Reader:
         if self.cleaned.refused:
             return self._refused()
         if self.cleaned.text.strip().lower() in WILD_TYPE_NAMES:
-            self._add("wild-type-stock", Severity.NOTE, f"{self.text.strip()} is read as wild type", 0, len(self.cleaned.text))
+            self._add(
+                "wild-type-stock", Severity.NOTE, f"{self.text.strip()} is read as wild type", 0, len(self.cleaned.text)
+            )
             return self._build({})
         fields, fault = split_genotype(self.cleaned.text)
         if fault is not None:
@@ -343,9 +343,7 @@ class _Reader:
             return by_place
         return self._open(i, part, in_places, parts, speaks)
 
-    def _open(
-        self, i: int, part: _Part, in_places: bool, parts: Sequence[_Part], speaks: Sequence[str]
-    ) -> str | None:
+    def _open(self, i: int, part: _Part, in_places: bool, parts: Sequence[_Part], speaks: Sequence[str]) -> str | None:
         """Place a field that nothing speaks for: by its place in lab shorthand, else ask."""
         words = self.cleaned.text[part.field.start : part.field.end].strip()
         taken = {s for s in speaks if s}

@@ -117,7 +117,9 @@ def _refusal(text: str) -> Problem | None:
                 i, i + 1, "type the genotype again",
             )  # fmt: skip
     if not text.strip(" \t\n\r\u00a0\ufeff\u200b"):
-        return refuse("empty", "nothing is written here; an empty cell is not wild type", 0, len(text), "write + for wild type")
+        return refuse(
+            "empty", "nothing is written here; an empty cell is not wild type", 0, len(text), "write + for wild type"
+        )
     error = _ERROR_VALUE.search(text)
     if error:
         return refuse(
@@ -125,7 +127,9 @@ def _refusal(text: str) -> Problem | None:
             "look the genotype up in an older copy of the list",
         )  # fmt: skip
     if _FORMULA.match(text):
-        return refuse("formula", "this is a spreadsheet formula, not a genotype", 0, len(text), "format the column as text")
+        return refuse(
+            "formula", "this is a spreadsheet formula, not a genotype", 0, len(text), "format the column as text"
+        )
     for pattern, code, was in ((_DATE, "date", "a date"), (_SCIENTIFIC, "number", "a number")):
         found = pattern.search(text)
         if found:
@@ -144,8 +148,13 @@ def _notes(text: str, cleaned: str, removed: bool) -> list[Problem]:
     if foreign is not None:
         notes.append(
             problem(
-                "look-alike-letters", Severity.WARNING, "Cyrillic letters were read as the Latin ones they look like",
-                text, 0, 0, "type the symbol again",
+                "look-alike-letters",
+                Severity.WARNING,
+                "Cyrillic letters were read as the Latin ones they look like",
+                text,
+                0,
+                0,
+                "type the symbol again",
             )  # fmt: skip
         )
     if any("\uff00" <= c <= "\uff5e" for c in text):

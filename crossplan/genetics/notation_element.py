@@ -154,8 +154,12 @@ class WordReader:
         problems = []
         if not markers and component is None:
             problems.append(
-                self._note(item, "assumed-marker", f"{name} is taken to carry mini-white, as most insertions do",
-                           "write the standard form if it does not")  # fmt: skip
+                self._note(
+                    item,
+                    "assumed-marker",
+                    f"{name} is taken to carry mini-white, as most insertions do",
+                    "write the standard form if it does not",
+                )  # fmt: skip
             )
         chromosome, because, weak = "", "", False
         if site is not None:
@@ -164,8 +168,13 @@ class WordReader:
             chromosome, because, weak = ("X" if place[0] == "1" else place[0]), "the number of the insertion", True
         elif place and (near := self.catalogue.near_sites(place)) and "[" not in place:
             problems.append(
-                self._note(item, "unknown-site", f"the catalogue has no landing site '{place}'", f"perhaps {near[0]}",
-                           Severity.WARNING)  # fmt: skip
+                self._note(
+                    item,
+                    "unknown-site",
+                    f"the catalogue has no landing site '{place}'",
+                    f"perhaps {near[0]}",
+                    Severity.WARNING,
+                )  # fmt: skip
             )
         element = Element(
             symbol, Kind.INSERTION, chromosome if site else "", site=site.name if site else "",
@@ -193,7 +202,9 @@ class WordReader:
         if match["kind"] == "Df":
             traits = Traits(lethal=frozenset({item.text}))
             problems.append(
-                self._note(item, "assumed-lethal", f"{item.text} is taken to be lethal over itself, as most deficiencies are")
+                self._note(
+                    item, "assumed-lethal", f"{item.text} is taken to be lethal over itself, as most deficiencies are"
+                )
             )
         element = Element(item.text, Kind.ABERRATION, chromosome, traits=traits)
         evidence = "X" if chromosome == "Y" else chromosome
@@ -240,7 +251,9 @@ class WordReader:
         locus = self.catalogue.locus(gene)
         if locus is not None:
             chromosome = chromosome or locus.chromosome
-        element = Element(symbol, Kind.ALLELE, chromosome, position_cM=locus.cM if locus else None, gene=gene, traits=traits)
+        element = Element(
+            symbol, Kind.ALLELE, chromosome, position_cM=locus.cM if locus else None, gene=gene, traits=traits
+        )
         return Word(element, chromosome, f"the gene {gene}")
 
     def _named(self, item: Item) -> Word:

@@ -51,9 +51,7 @@ def split_genotype(text: str) -> tuple[tuple[Field, ...], Problem | None]:
         return (), depth_fault
     fields: list[Field] = []
     for start, end in _parts(text, 0, len(text), ";"):
-        halves = [
-            Half(tuple(_items(text, a, b)), a, b) for a, b in _parts(text, start, end, "/")
-        ]
+        halves = [Half(tuple(_items(text, a, b)), a, b) for a, b in _parts(text, start, end, "/")]
         if len(halves) > 1 and any(not h.items for h in halves):
             bad = next(h for h in halves if not h.items)
             return (), problem(
@@ -70,7 +68,9 @@ def _brackets(text: str) -> Problem | None:
         if char in "[{(":
             open_at.append(i)
             if len(open_at) > MOST_DEPTH:
-                return problem("too-deep", Severity.ERROR, "brackets are nested deeper than any genotype", text, i, i + 1)
+                return problem(
+                    "too-deep", Severity.ERROR, "brackets are nested deeper than any genotype", text, i, i + 1
+                )
         elif char in _CLOSES:
             if not open_at or text[open_at[-1]] != _CLOSES[char]:
                 return problem(

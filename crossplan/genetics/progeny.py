@@ -88,9 +88,7 @@ def cross(mother: Fly, father: Fly, observer: Observer, map_function: MapFunctio
         observer: who looks at the flies, with which means.
         map_function: how map distance becomes a recombination fraction in the mother.
     """
-    tables = [
-        zygote_pairs(mother.pair(name), father.pair(name), name, map_function) for name in PAIRS
-    ]
+    tables = [zygote_pairs(mother.pair(name), father.pair(name), name, map_function) for name in PAIRS]
     living: dict[Fly, Share] = {}
     dead: list[DeadZygote] = []
     for combination in product(*(t.items() for t in tables)):

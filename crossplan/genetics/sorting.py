@@ -31,9 +31,7 @@ class Test:
         return (self.sign in signs) == self.present
 
 
-def shortest_rule(
-    kept: frozenset[str], others: Sequence[frozenset[str]], catalogue: Catalogue
-) -> tuple[Test, ...]:
+def shortest_rule(kept: frozenset[str], others: Sequence[frozenset[str]], catalogue: Catalogue) -> tuple[Test, ...]:
     """Return the easiest set of tests that the looks `kept` pass and every one of `others` fails.
 
     Args:

@@ -84,9 +84,7 @@ def lives(fly: Fly) -> bool:
 
 
 def _unbalanced_translocation(fly: Fly) -> str | None:
-    parts = {
-        name: sum(any(e.traits.linked_to for e in h.elements) for h in fly.pair(name)) for name in AUTOSOMES
-    }
+    parts = {name: sum(any(e.traits.linked_to for e in h.elements) for h in fly.pair(name)) for name in AUTOSOMES}
     if parts["2"] == parts["3"]:
         return None
     return "one part of a translocation without the other"
@@ -117,9 +115,7 @@ def sterile_because(fly: Fly) -> str | None:
 @cache
 def _sterile_causes(pair: Pair, chromosome: str, sex: Sex) -> frozenset[str]:
     first, second = (
-        NO_GENES.union(
-            *(e.traits.female_sterile if sex == FEMALE else e.traits.male_sterile for e in h.elements)
-        )
+        NO_GENES.union(*(e.traits.female_sterile if sex == FEMALE else e.traits.male_sterile for e in h.elements))
         for h in pair
     )
     if chromosome == "X" and sex == MALE:

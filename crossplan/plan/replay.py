@@ -23,9 +23,7 @@ from crossplan.plan.model import FlyRecord, ParentRecord, Plan, StepRecord, Targ
 SHARE_TOLERANCE = 1e-9
 
 
-def replay(
-    plan: Plan, observer_of: Callable[[float], Observer], known: Mapping[str, Element]
-) -> tuple[Problem, ...]:
+def replay(plan: Plan, observer_of: Callable[[float], Observer], known: Mapping[str, Element]) -> tuple[Problem, ...]:
     """Return every fault of the plan; an empty result means that each step does what the plan says.
 
     Args:
@@ -44,9 +42,7 @@ def replay(
 
 
 class _Replay:
-    def __init__(
-        self, plan: Plan, observer_of: Callable[[float], Observer], known: Mapping[str, Element]
-    ) -> None:
+    def __init__(self, plan: Plan, observer_of: Callable[[float], Observer], known: Mapping[str, Element]) -> None:
         self.plan = plan
         self.observer_of = observer_of
         self.known = known

@@ -12,7 +12,7 @@ from collections.abc import Iterable, Mapping
 from dataclasses import dataclass
 from difflib import get_close_matches
 from pathlib import Path
-from typing import Any
+from typing import Any, Literal
 
 from crossplan.errors import Problem, ScreenError, Severity, StockListError
 from crossplan.plan.screen import ScreenFile, TargetSection
@@ -28,7 +28,7 @@ class WantedTarget:
 
     name: str
     components: tuple[tuple[str, int], ...]
-    sex: str
+    sex: Literal["female", "male"]
     flies: int
     age_days: tuple[int, int]
     due: dt.date | None
@@ -72,7 +72,9 @@ def _load(path: Path) -> dict[str, Any]:
     try:
         return tomllib.loads(path.read_text(encoding="utf-8-sig"))
     except FileNotFoundError:
-        raise ScreenError(f"there is no file {path}", "check the name; `crossplan demo FOLDER` writes an example") from None
+        raise ScreenError(
+            f"there is no file {path}", "check the name; `crossplan demo FOLDER` writes an example"
+        ) from None
     except IsADirectoryError:
         raise ScreenError(f"{path} is a folder, not a screen file", "give the TOML file inside it") from None
     except UnicodeDecodeError:
@@ -114,7 +116,9 @@ def _plain(message: str) -> str:
 def _check_sense(path: Path, screen: ScreenFile) -> None:
     low, high = screen.defaults.age_days
     if not 0 <= low <= high <= 60:
-        raise ScreenError(f"{path}: [defaults] age_days = [{low}, {high}] is no span of days", "write [youngest, oldest]")
+        raise ScreenError(
+            f"{path}: [defaults] age_days = [{low}, {high}] is no span of days", "write [youngest, oldest]"
+        )
     if not screen.calendar.working_days:
         raise ScreenError(f"{path}: [calendar] working_days is empty: nobody ever works", 'write ["Mon", "Tue", ...]')
     for name in ("morning", "afternoon"):
@@ -178,8 +182,13 @@ def _pair(path: str, row: Row, by_lower: Mapping[str, str], problems: list[Probl
         column = str(first["loc"][0]) if first["loc"] else ""
         problems.append(
             Problem(
-                "pair-row", Severity.ERROR, f"target '{cells['target']}': {_plain(first['msg'])}, not '{cells.get(column, '')}'",
-                "correct the cell; the other rows are planned", path, row.number, column,
+                "pair-row",
+                Severity.ERROR,
+                f"target '{cells['target']}': {_plain(first['msg'])}, not '{cells.get(column, '')}'",
+                "correct the cell; the other rows are planned",
+                path,
+                row.number,
+                column,
             )  # fmt: skip
         )
         return None

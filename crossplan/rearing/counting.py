@@ -55,9 +55,7 @@ def parse_share(text: str) -> Fraction:
     else:
         raise RearingError(f"'{text}' is not a share: expected 1/8, 0.125 or 12.5%", _HOW_TO_WRITE_A_SHARE)
     if not 0 < share <= 1:
-        raise RearingError(
-            f"'{text}' is not a share: expected more than 0 and at most 1 (100%)", _HOW_TO_WRITE_A_SHARE
-        )
+        raise RearingError(f"'{text}' is not a share: expected more than 0 and at most 1 (100%)", _HOW_TO_WRITE_A_SHARE)
     return share
 
 
@@ -107,9 +105,7 @@ def flies_to_score(share: Share, need: int, probability: float) -> Score:
         return exact_at_least(need, flies, p) >= asked
 
     guess = sedcole(float(p), need, probability)
-    too_many = (
-        f"share {float(share):g}: more than {MOST_FLIES} flies would have to be looked through for {need}"
-    )
+    too_many = f"share {float(share):g}: more than {MOST_FLIES} flies would have to be looked through for {need}"
     if guess > MOST_FLIES:
         raise RearingError(too_many, "The class is too rare to be picked from one cross.")
     flies = fewest(enough, need, round(guess), MOST_FLIES, too_many)
@@ -131,9 +127,7 @@ def flies_to_score_both(
     check_request(share_female, need_females, probability)
     check_request(share_male, need_males, probability)
     if share_female + share_male > 1 + 1e-12:
-        raise RearingError(
-            f"shares {share_female} and {share_male} add up to more than 1", _HOW_TO_WRITE_A_SHARE
-        )
+        raise RearingError(f"shares {share_female} and {share_male} add up to more than 1", _HOW_TO_WRITE_A_SHARE)
     female, male = float(share_female), float(share_male)
     either = need_females + need_males
 
@@ -183,9 +177,7 @@ def sedcole(share: float, need: int, probability: float) -> float:
     z = NormalDist().inv_cdf(probability)
     miss = 1.0 - share
     a = need - 0.5
-    return max(
-        (2.0 * a + z * z * miss + z * math.sqrt(z * z * miss * miss + 4.0 * miss * a)) / (2.0 * share), need
-    )
+    return max((2.0 * a + z * z * miss + z * math.sqrt(z * z * miss * miss + 4.0 * miss * a)) / (2.0 * share), need)
 
 
 def fewest(enough: Callable[[int], bool], least: int, guess: int, most: int, too_many: str) -> int:

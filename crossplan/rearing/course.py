@@ -204,8 +204,7 @@ def _temperature(text: str, whole: str) -> float:
     found = _TEMPERATURE.fullmatch(text.strip())
     if found is None:
         raise RearingError(
-            f"temperature course '{whole}': '{text.strip()}' is not a temperature"
-            " (expected degrees C, such as 25)",
+            f"temperature course '{whole}': '{text.strip()}' is not a temperature (expected degrees C, such as 25)",
             HOW_TO_WRITE,
         )
     return float(found[1])
@@ -215,8 +214,7 @@ def _hours(text: str, whole: str) -> float:
     found = _DURATION.fullmatch(text.strip())
     if found is None:
         raise RearingError(
-            f"temperature course '{whole}': '{text.strip()}' is not a duration"
-            " (expected days or hours: 5d, 12h)",
+            f"temperature course '{whole}': '{text.strip()}' is not a duration (expected days or hours: 5d, 12h)",
             HOW_TO_WRITE,
         )
     return float(found[1]) * (24.0 if found[2].lower() == "d" else 1.0)

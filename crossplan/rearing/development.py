@@ -146,8 +146,7 @@ def _embryo_rate(temperature: float) -> float:
     check_temperature(temperature)
     if temperature < EMBRYO_COLDEST_C:
         raise RearingError(
-            f"{temperature:g} C is too cold to say when eggs hatch:"
-            f" expected {EMBRYO_COLDEST_C:g} to {WARMEST_C:g} C",
+            f"{temperature:g} C is too cold to say when eggs hatch: expected {EMBRYO_COLDEST_C:g} to {WARMEST_C:g} C",
             "Hatching was not measured colder than 14.95 C (Powsner 1935).",
         )
     return _EMBRYO_K / (1.0 + math.exp(_EMBRYO_A - _EMBRYO_B * temperature))
@@ -291,15 +290,10 @@ class Clock:
             )
         if min(met) < FEW_FIGURES_BELOW_C:
             found.append(
-                f"Reared at {min(met):g} C: below 18 C few development times were measured"
-                " and many genotypes do badly."
+                f"Reared at {min(met):g} C: below 18 C few development times were measured and many genotypes do badly."
             )
         if len(met) > 1 and course.is_cycle:
-            found.append(
-                "Daily cycle: the rest of the development may differ by a further 10 % (own judgement)."
-            )
+            found.append("Daily cycle: the rest of the development may differ by a further 10 % (own judgement).")
         if self.food_factor > 1.0:
-            found.append(
-                "Poor or crowded food: flies come later and more spread out than any temperature law says."
-            )
+            found.append("Poor or crowded food: flies come later and more spread out than any temperature law says.")
         return tuple(found)

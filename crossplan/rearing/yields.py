@@ -68,13 +68,9 @@ class Yield:
         if not 0.0 < self.mean <= 100_000.0:
             raise RearingError(f"{self.mean:g} progeny per vial: expected more than 0, such as 100")
         if not 0.01 <= self.k <= 1e6:
-            raise RearingError(
-                f"k = {self.k:g}: expected 0.01 (very uneven vials) to 1000000 (even); 2 is usual"
-            )
+            raise RearingError(f"k = {self.k:g}: expected 0.01 (very uneven vials) to 1000000 (even); 2 is usual")
         if not 0.0 <= self.fail < 1.0:
-            raise RearingError(
-                f"{self.fail:g} of vials fail: expected 0 or more and less than 1, such as 0.1"
-            )
+            raise RearingError(f"{self.fail:g} of vials fail: expected 0 or more and less than 1, such as 0.1")
 
     def at(self, temperature: float) -> Yield:
         """Return the yield of vials whose parents and offspring live at `temperature` degrees C.
@@ -121,9 +117,7 @@ def viability(temperature: float) -> float:
 DEFAULT_YIELD: Final = Yield()
 
 
-def chance_of_enough(
-    vials: int, share: Share, need: int, yield_: Yield = DEFAULT_YIELD, catch: float = 1.0
-) -> float:
+def chance_of_enough(vials: int, share: Share, need: int, yield_: Yield = DEFAULT_YIELD, catch: float = 1.0) -> float:
     """Return the probability that `vials` vials give at least `need` flies of a class with that share.
 
     `catch` is the share of the class that is really collected (see `virgin_catch`).

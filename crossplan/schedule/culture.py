@@ -115,7 +115,8 @@ def days_of(culture: Culture, set_up: int, biology: Biology, laying_days: int, w
     discard = week.on_or_after(collect[-1])
     if discard is None:
         return None
-    expand, stock_days = None, ()
+    expand: int | None = None
+    stock_days: tuple[int, ...] = ()
     if culture.mother_stock:
         found = _from_stock(set_up, biology, week)
         if found is None:

@@ -50,15 +50,18 @@ def put_on_calendar(
     return write_tasks(placed, assays, schedule, week, person), schedule
 
 
-def _assays(
-    targets: Sequence[TargetRecord], ages: Mapping[str, tuple[int, int]], fed: frozenset[str]
-) -> list[Assay]:
+def _assays(targets: Sequence[TargetRecord], ages: Mapping[str, tuple[int, int]], fed: frozenset[str]) -> list[Assay]:
     feed = math.ceil(retinal_feeding().least_days)
     rest = math.ceil(anaesthesia_gap_days())
     return [
         Assay(
-            t.target, t.scheme[-1], ages[t.target], t.flies, dt.date.fromisoformat(t.due) if t.due else None,
-            feed if t.target in fed else 0, rest,
+            t.target,
+            t.scheme[-1],
+            ages[t.target],
+            t.flies,
+            dt.date.fromisoformat(t.due) if t.due else None,
+            feed if t.target in fed else 0,
+            rest,
         )  # fmt: skip
         for t in targets
         if t.status == "planned" and t.target in ages
@@ -76,7 +79,12 @@ def _cultures(steps: Sequence[StepRecord], assays: Sequence[Assay]) -> list[Cult
         parents = [(p.step, p is step.mother) for p in (step.mother, step.father) if p.step is not None]
         cultures.append(
             Culture(
-                step.id, tuple(parents), step.mother.stock or "", step.temperature_C, step.vials, step.keep.virgin,
+                step.id,
+                tuple(parents),
+                step.mother.stock or "",
+                step.temperature_C,
+                step.vials,
+                step.keep.virgin,
                 max(spans[step.id], 0) if step.id in spans else None,
             )  # fmt: skip
         )

@@ -236,7 +236,7 @@ class _Solver:
         return peak
 
     def _hint(self, solver: Any) -> None:
-        self.model.clear_hints()
+        self.model.clear_hints()  # type: ignore[no-untyped-call]
         for choice in self.choices.values():
             for pick in choice.picks:
                 self.model.add_hint(pick, solver.value(pick))

@@ -34,7 +34,9 @@ def share_out(cultures: Sequence[Culture], schedule: Schedule, people: Sequence[
     for culture in sorted(cultures, key=lambda c: (schedule.days[c.step].set_up, c.step)):
         who = min(people, key=lambda p: (minutes[p], people.index(p)))
         person[culture.step] = who
-        minutes[who] += sum(MINUTES_PER_VIAL[kind] * culture.vials for _, kind in tasks_by_day(schedule.days[culture.step]))
+        minutes[who] += sum(
+            MINUTES_PER_VIAL[kind] * culture.vials for _, kind in tasks_by_day(schedule.days[culture.step])
+        )
     return person
 
 
@@ -66,8 +68,13 @@ def _culture_tasks(culture: Culture, days: Days, week: WorkWeek, person: str) ->
         made.append(
             TaskRecord.model_validate(
                 {
-                    "id": f"{culture.step}-{kind.replace(' ', '-')}{suffix}", "date": week.date(day).isoformat(),
-                    "time": time, "kind": kind, "step": culture.step, "note": note, "person": person,
+                    "id": f"{culture.step}-{kind.replace(' ', '-')}{suffix}",
+                    "date": week.date(day).isoformat(),
+                    "time": time,
+                    "kind": kind,
+                    "step": culture.step,
+                    "note": note,
+                    "person": person,
                     "minutes": round(MINUTES_PER_VIAL[kind] * culture.vials),
                 }
             )  # fmt: skip
@@ -84,7 +91,9 @@ def _culture_tasks(culture: Culture, days: Days, week: WorkWeek, person: str) ->
     add("clear", 0, days.clear, week.morning, "take the parents out")
     for i, day in enumerate(days.collect, start=1):
         if culture.keeps_virgins:
-            note = f"empty the vials at {week.morning}; females that emerge from then on are virgins at {week.afternoon}"
+            note = (
+                f"empty the vials at {week.morning}; females that emerge from then on are virgins at {week.afternoon}"
+            )
             add("collect", i, day, week.afternoon, f"{note} (safe for {hours:.0f} h)")
         else:
             add("collect", i, day, week.morning, "collect the kept class")
@@ -97,8 +106,14 @@ def _assay_tasks(assay: Assay, schedule: Schedule, week: WorkWeek, person: str) 
     name = assay.target.replace(" ", "-")
     tasks = [
         TaskRecord(
-            id=f"{assay.step}-assay-{name}", date=week.date(day).isoformat(), time=week.morning, kind="assay",
-            step=assay.step, target=assay.target, person=person, minutes=round(MINUTES_PER_ASSAY_FLY * assay.flies),
+            id=f"{assay.step}-assay-{name}",
+            date=week.date(day).isoformat(),
+            time=week.morning,
+            kind="assay",
+            step=assay.step,
+            target=assay.target,
+            person=person,
+            minutes=round(MINUTES_PER_ASSAY_FLY * assay.flies),
             note=f"{assay.flies} flies, {_ages(assay, schedule, day)} days old; no anaesthesia since the day before",
         )  # fmt: skip
     ]
@@ -107,8 +122,14 @@ def _assay_tasks(assay: Assay, schedule: Schedule, week: WorkWeek, person: str) 
         feed = max((d for d in week.days if last <= d <= day - assay.feed_days), default=last)
         tasks.append(
             TaskRecord(
-                id=f"{assay.step}-food-{name}", date=week.date(feed).isoformat(), time=week.afternoon, kind="food",
-                step=assay.step, target=assay.target, person=person, minutes=5,
+                id=f"{assay.step}-food-{name}",
+                date=week.date(feed).isoformat(),
+                time=week.afternoon,
+                kind="food",
+                step=assay.step,
+                target=assay.target,
+                person=person,
+                minutes=5,
                 note=f"move the flies to retinal food, in the dark, until {week.date(day).isoformat()}",
             )  # fmt: skip
         )

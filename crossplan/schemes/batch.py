@@ -18,7 +18,7 @@ from crossplan.schemes.forms import Source, reduce_shelf, usable_sources
 from crossplan.schemes.realise import Cross, NotCarriedOut, Realiser
 from crossplan.schemes.search import SearchResult, Status, find_schemes
 from crossplan.schemes.target import Refusal, carried_elements, make_wish, stock_already
-from crossplan.schemes.wish import Wish
+from crossplan.schemes.wish import WantedSex, Wish
 
 ControlKind = Literal["", "empty driver", "no effector"]
 
@@ -74,7 +74,7 @@ class BatchPlanner:
     def answer(self, asked: Asked) -> Answer:
         """Return what becomes of one target."""
         wanted = asked.wanted
-        sex = "both" if wanted.stock else wanted.sex
+        sex: WantedSex = "both" if wanted.stock else wanted.sex
         wish = make_wish(wanted.components, sex, wanted.forbid, wanted.stock, self.shelf)
         if isinstance(wish, Refusal):
             return Answer(asked, "impossible", None, reason=wish.reason, would_unlock=wish.would_unlock)

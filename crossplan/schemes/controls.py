@@ -90,9 +90,7 @@ def controls_for(
     return Controls((*no_effector.values(), *_distinct_names(empty_controls.values())), tuple(remarks))
 
 
-def _control(
-    target: WantedTarget, components: tuple[tuple[str, int], ...], name: str, kind: ControlKind
-) -> Asked:
+def _control(target: WantedTarget, components: tuple[tuple[str, int], ...], name: str, kind: ControlKind) -> Asked:
     of = target.name if kind == "no effector" else "all targets with this effector"
     return Asked(replace(target, name=name, components=components), of, kind)
 

@@ -125,9 +125,7 @@ class Reducer:
 
     def reduced_wish(self) -> Wish:
         """Return the wish in terms of representatives."""
-        forbidden = {
-            new.symbol for old, new in self._reduced.items() if new is not None and self.wish.forbids(old)
-        }
+        forbidden = {new.symbol for old, new in self._reduced.items() if new is not None and self.wish.forbids(old)}
         components = tuple(
             (f"wanted {i + 1}", place, copies) for i, (_, place, copies) in enumerate(self.wish.components)
         )

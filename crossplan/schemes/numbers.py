@@ -19,6 +19,7 @@ from crossplan.schemes.realise import Cross
 #: share of collected adults that live to the assay (common practice, no source)
 SURVIVAL_TO_ASSAY = 0.9
 
+
 @dataclass(frozen=True)
 class Amount:
     """Numbers of one cross: flies of the kept class needed and expected, vials, and flies to look through."""

@@ -12,7 +12,7 @@ from dataclasses import dataclass
 from functools import cached_property
 
 from crossplan.genetics.appearance import Observer
-from crossplan.genetics.chromosome import FEMALE, PAIRS
+from crossplan.genetics.chromosome import FEMALE, PAIRS, Sex
 from crossplan.genetics.fly import Fly
 from crossplan.genetics.progeny import Progeny, ProgenyClass, cross
 from crossplan.genetics.sorting import easily_mistaken, rule_for, words_of
@@ -130,7 +130,7 @@ class Realiser:
         best = max(looks, key=lambda look: min(classes[s, look].share for s in self._sexes()))
         return tuple(classes[sex, best] for sex in self._sexes())
 
-    def _sexes(self) -> tuple[str, ...]:
+    def _sexes(self) -> tuple[Sex, ...]:
         return self.wish.sexes()
 
     def accepts(self, fly: Fly) -> bool:
@@ -168,5 +168,3 @@ def look_alike_words(found: ProgenyClass, progeny: Progeny, observer: Observer) 
 
 def _percent(found: ProgenyClass) -> str:
     return f"{100 * float(found.share):.0f} %"
-
-

@@ -15,8 +15,8 @@ from crossplan.plan.model import FlyRecord, KeepRecord, ParentRecord, StepRecord
 from crossplan.plan.screen import ScreenFile
 from crossplan.schemes.batch import Answer
 from crossplan.schemes.numbers import Amount, Use, amounts
-from crossplan.schemes.screen_plan import ScreenPlanner
 from crossplan.schemes.realise import Cross, StockParent, describe_class, look_alike_words
+from crossplan.schemes.screen_plan import ScreenPlanner
 
 
 @dataclass(frozen=True)
@@ -71,8 +71,7 @@ def write_records(
     numbers = amounts(numbered.crosses, wanted, uses, screen)
     write = _StepWriter(numbered, planner, screen, locations)
     steps = [
-        write.step(cross, numbers[i], uses.get(i, []), serves.get(i, []))
-        for i, cross in enumerate(numbered.crosses)
+        write.step(cross, numbers[i], uses.get(i, []), serves.get(i, [])) for i, cross in enumerate(numbered.crosses)
     ]
     return [_target(a, numbered, planner) for a in answers], steps
 

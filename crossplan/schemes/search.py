@@ -382,9 +382,7 @@ class _Search:
                 if of_mother | of_father == wanted:
                     yield mothers, fathers, lack_m & lack_f
 
-    def _goal_table(
-        self, m: NDArray[np.int64], f: NDArray[np.int64], coverable: frozenset[str]
-    ) -> NDArray[np.bool_]:
+    def _goal_table(self, m: NDArray[np.int64], f: NDArray[np.int64], coverable: frozenset[str]) -> NDArray[np.bool_]:
         """Return for every mother (rows) and father (columns) whether the last cross can give the wish."""
         import numpy as np
 
@@ -435,7 +433,7 @@ def _group_order(group: tuple[tuple[frozenset[str], frozenset[str]], list[State]
 
 
 def accepted_looks(
-    progeny: Iterable[Fly], observer: Observer, wish_accepts: Callable[[Fly], bool], sexes: tuple[str, ...]
+    progeny: Iterable[Fly], observer: Observer, wish_accepts: Callable[[Fly], bool], sexes: tuple[Sex, ...]
 ) -> list[frozenset[str]]:
     """Return the looks that the wish can be picked by: in every wanted sex there are bearers, and all will do.
 
@@ -499,7 +497,6 @@ def _deeper(whole: _Search, max_generations: int) -> SearchResult:
     A small shelf of the handiest helpers is tried first: a hit there is minimal, since everything below was searched on
     the whole shelf. Only if it gives none is the whole shelf bred, as far as the budget allows.
     """
-    forms = whole.shelf.forms
     small = _Search(whole.shelf, whole.observer, whole.kept_schemes, whole.budget, _handiest(whole))
     for search in (small, whole):
         result = _search_levels(search, max_generations)
@@ -547,7 +544,7 @@ def _handiest(search: _Search) -> list[int]:
     by_balance: dict[int, list[int]] = {}
     for _, balanced, i in helpers:
         by_balance.setdefault(balanced, []).append(i)
-    chosen = [i for i in by_balance.get(0, [])[:3]]
+    chosen = list(by_balance.get(0, [])[:3])
     for balanced in sorted(by_balance):
         chosen += [i for i in by_balance[balanced] if i not in chosen][: HANDY_HELPERS - len(chosen)]
     return sorted(wanted + chosen)

@@ -166,9 +166,7 @@ class ChromosomeTable:
             return True
         return self.chromosome == "X" and (WHITE, "") not in part.exposed
 
-    def alternatives(
-        self, mother: int, father: int, coverable: frozenset[str] = NO_GENES
-    ) -> tuple[_Alternative, ...]:
+    def alternatives(self, mother: int, father: int, coverable: frozenset[str] = NO_GENES) -> tuple[_Alternative, ...]:
         """Return the living pairs of the cross of two pairs, with shares of the zygotes that live on this chromosome.
 
         `coverable` are the genes that another chromosome may leave without a working copy, so that it may show
@@ -196,12 +194,15 @@ class ChromosomeTable:
             recombinant = any(h in new and h not in self.parental for h in pair)
             found.append(
                 _Alternative(
-                    self.number(pair, sex), float(share), sex, self._look(part, coverable), self._pigment(part), recombinant
+                    self.number(pair, sex),
+                    float(share),
+                    sex,
+                    self._look(part, coverable),
+                    self._pigment(part),
+                    recombinant,
                 )
             )
-        return tuple(
-            _Alternative(a.pair, a.share / alive, a.sex, a.look, a.pigment, a.recombinant) for a in found
-        )
+        return tuple(_Alternative(a.pair, a.share / alive, a.sex, a.look, a.pigment, a.recombinant) for a in found)
 
     def coupling(self, mother: int, father: int, coverable: frozenset[str] = NO_GENES) -> Coupling:
         """Return what of this chromosome may act together with others among the progeny of the cross."""
@@ -233,9 +234,7 @@ class ChromosomeTable:
             strict = not alike
             loose = strict or (self._white_usable and all(a.pigment != child.pigment for a in alike))
             if loose:
-                children.append(
-                    Child(child.pair, child.share, strict, loose, child.pigment, not child.recombinant)
-                )
+                children.append(Child(child.pair, child.share, strict, loose, child.pigment, not child.recombinant))
         return children
 
     def goal(self, mother: int, father: int, coverable: frozenset[str] = NO_GENES) -> Goal:
@@ -296,8 +295,7 @@ def reachable_goal(goals: tuple[Goal, ...]) -> bool:
     if all(g.strict for g in goals) or all(g.white for g in goals):
         return True
     return any(
-        g.pigmented and all(other.strict_plain for k, other in enumerate(goals) if k != i)
-        for i, g in enumerate(goals)
+        g.pigmented and all(other.strict_plain for k, other in enumerate(goals) if k != i) for i, g in enumerate(goals)
     )
 
 
@@ -327,4 +325,3 @@ def total_share(parts: tuple[float, ...]) -> float:
     for part in parts:
         product *= part
     return product
-

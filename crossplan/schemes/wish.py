@@ -9,7 +9,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import Literal
 
-from crossplan.genetics.chromosome import FEMALE, MALE
+from crossplan.genetics.chromosome import FEMALE, MALE, Sex
 from crossplan.genetics.element import Element, Kind
 from crossplan.genetics.fly import Homologue, Pair
 
@@ -75,9 +75,11 @@ class Wish:
         """Return whether flies of `sex` will do."""
         return self.sex in (sex, "both")
 
-    def sexes(self) -> tuple[str, ...]:
+    def sexes(self) -> tuple[Sex, ...]:
         """Return the sexes of which flies must come out of the last cross."""
-        return (FEMALE, MALE) if self.sex == "both" else (self.sex,)
+        if self.sex == "both":
+            return (FEMALE, MALE)
+        return (self.sex,)
 
     def carried(self, homologue: Homologue) -> frozenset[str]:
         """Return the wanted elements that the homologue carries."""

@@ -304,7 +304,13 @@ def check_places(shelf: Shelf, today: dt.date, catalogue: Catalogue) -> Iterator
     lost = [s for s in shelf.usable() if not s.tray]
     if lost and any(s.tray for s in shelf.stocks):
         names = ", ".join(s.name for s in lost[:6]) + (" ..." if len(lost) > 6 else "")
-        yield _of(lost[0], "no-place", Severity.NOTE, f"{len(lost)} stock(s) have no tray: {names}", "find them, write it down")
+        yield _of(
+            lost[0],
+            "no-place",
+            Severity.NOTE,
+            f"{len(lost)} stock(s) have no tray: {names}",
+            "find them, write it down",
+        )
 
 
 RULES: tuple[Rule, ...] = (

@@ -73,7 +73,9 @@ def _chromosomes(by_lower: Mapping[str, str]) -> dict[str, str]:
 
 def _no_genotype(path: str, headings: Sequence[str]) -> StockListError:
     near = get_close_matches("genotype", [h.lower() for h in headings], n=1, cutoff=0.5)
-    hint = f"'{next(h for h in headings if h.lower() == near[0])}' may be it: rename it 'genotype'" if near else (
-        "name the column that holds the genotypes 'genotype'"
+    hint = (
+        f"'{next(h for h in headings if h.lower() == near[0])}' may be it: rename it 'genotype'"
+        if near
+        else ("name the column that holds the genotypes 'genotype'")
     )
     return StockListError(f"{path} has no column 'genotype'; its columns are {', '.join(headings)}", hint)

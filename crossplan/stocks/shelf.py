@@ -175,7 +175,9 @@ class _ShelfReader:
             )
         name = self._cell(row, "stock") or f"row {row.number}"
         if name in seen:
-            self._problem(row, "stock", "name-twice", f"stock '{name}' stands in row {seen[name]} too", "give it another name")
+            self._problem(
+                row, "stock", "name-twice", f"stock '{name}' stands in row {seen[name]} too", "give it another name"
+            )
             name = f"{name} (row {row.number})"
         seen.setdefault(name, row.number)
         return Stock(
@@ -206,7 +208,9 @@ class _ShelfReader:
         if match:
             return float(match[1].replace(",", "."))
         if text and text.upper() not in ("RT", "ROOM"):
-            self._problem(row, "temperature", "not-a-temperature", f"'{text}' is no temperature", "write degrees C, such as 18")
+            self._problem(
+                row, "temperature", "not-a-temperature", f"'{text}' is no temperature", "write degrees C, such as 18"
+            )
         return 22.0 if text.upper() in ("RT", "ROOM") else None
 
     def _date(self, row: Row, order: object) -> dt.date | None:

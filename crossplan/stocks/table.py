@@ -57,17 +57,22 @@ def read_table(path: Path, needed: Sequence[str] = (), sheet: str | None = None)
         raise StockListError(f"{path} is a folder, not a stock list", "give the file inside it")
     if not path.exists():
         near = _near_files(path)
-        raise StockListError(f"there is no file {path}", f"in that folder there is: {near}" if near else "check the name")
+        raise StockListError(
+            f"there is no file {path}", f"in that folder there is: {near}" if near else "check the name"
+        )
     if path.stat().st_size == 0:
         raise StockListError(f"{path} is empty", "export the list again from the spreadsheet")
+    problems: list[Problem] = []
     try:
         kind = WORKBOOKS.get(path.suffix.lower())
         if kind is not None:
-            grid, problems = _read_workbook(path, kind, sheet), []
+            grid = _read_workbook(path, kind, sheet)
         else:
             grid, problems = _read_text(path)
     except OSError as error:
-        raise StockListError(f"cannot read {path}: {error.strerror or error}", "check your rights to the file") from error
+        raise StockListError(
+            f"cannot read {path}: {error.strerror or error}", "check your rights to the file"
+        ) from error
     return _as_table(path, grid, problems, needed)
 
 
@@ -107,7 +112,9 @@ def _decoded(path: Path) -> tuple[str, list[Problem]]:
     if data.startswith((b"\xff\xfe", b"\xfe\xff")):
         return data.decode("utf-16", errors="replace"), []
     if data.startswith(b"PK"):
-        raise StockListError(f"{path} is a workbook or an archive under a wrong ending", "name it .xlsx or .ods, or export CSV")
+        raise StockListError(
+            f"{path} is a workbook or an archive under a wrong ending", "name it .xlsx or .ods, or export CSV"
+        )
     if b"\x00" in data[:4096]:
         raise StockListError(f"{path} is not a text file", "export the list as CSV, or give the XLSX or ODS file")
     try:
@@ -142,7 +149,9 @@ def _read_workbook(path: Path, kind: str, sheet: str | None) -> list[list[str]]:
     try:
         sheets = _xlsx(path) if kind == "xlsx" else _ods(path)
     except (zipfile.BadZipFile, KeyError, ValueError) as error:
-        raise StockListError(f"{path} is no readable workbook ({error})", "open it and save it again, or export CSV") from error
+        raise StockListError(
+            f"{path} is no readable workbook ({error})", "open it and save it again, or export CSV"
+        ) from error
     if sheet is not None:
         if sheet not in sheets:
             raise StockListError(f"{path} has no sheet '{sheet}'", f"its sheets: {', '.join(sheets)}")
@@ -251,5 +260,9 @@ def read_column(path: Path, column: str) -> list[str]:
 def missing_column(path: Path | str, column: str, headings: Sequence[str]) -> StockListError:
     """Return the error for a column that is not there, with the closest ones."""
     near = get_close_matches(column.lower(), [h.lower() for h in headings], n=1, cutoff=0.6)
-    hint = f"perhaps '{next(h for h in headings if h.lower() == near[0])}' is meant: rename it" if near else "name one of them so"
+    hint = (
+        f"perhaps '{next(h for h in headings if h.lower() == near[0])}' is meant: rename it"
+        if near
+        else "name one of them so"
+    )
     return StockListError(f"{path} has no column '{column}'; its columns are {', '.join(headings)}", hint)

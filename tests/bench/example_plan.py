@@ -193,9 +193,7 @@ def steps() -> list[StepRecord]:
             is_control=True,
             mother=stock("CsChrimson attP18", fly("female", x=X_UAS), "tray 7, vial 1"),
             father=stock("empty split", empty_male, "tray 2, vial 30"),
-            keep=KeepRecord(
-                sex="female", fly=s05_fly, members=[s05_fly], share=0.5, exact="1/2", rule="all females"
-            ),
+            keep=KeepRecord(sex="female", fly=s05_fly, members=[s05_fly], share=0.5, exact="1/2", rule="all females"),
             serves=["empty > CsChrimson"],
             vials=2,
             mothers_per_vial=5,
@@ -359,9 +357,7 @@ def long_plan() -> Plan:
     """Return the plan with one cross whose kept fly has a genotype of far more than 200 characters."""
     plan = example_plan()
     step = plan.steps[3]
-    long = fly(
-        "female", [LONG_SYMBOLS[:3], ["CyO", "P{invented-twi-2xEGFP}AH2.3"]], [LONG_SYMBOLS[3:], ["TM6B"]]
-    )
+    long = fly("female", [LONG_SYMBOLS[:3], ["CyO", "P{invented-twi-2xEGFP}AH2.3"]], [LONG_SYMBOLS[3:], ["TM6B"]])
     keep = step.keep.model_copy(update={"fly": long, "members": [long]})
     plan.steps[3] = step.model_copy(update={"keep": keep})
     return plan

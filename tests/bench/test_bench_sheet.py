@@ -34,8 +34,7 @@ def test_collecting_says_what_to_keep_what_to_leave_and_how_many() -> None:
         "KEEP virgin females: curly wings, extra humeral bristles",
         "LEAVE straight wings or large halteres",
         "BEWARE curly wings, large halteres: carries TM2, not TM6B",
-        "need 20 · expect 46 in all from 4 vials · 1/8 of all progeny (12.5 %) · look through about 230 "
-        "flies",
+        "need 20 · expect 46 in all from 4 vials · 1/8 of all progeny (12.5 %) · look through about 230 flies",
         "looked through",
         "for S03",
     ):
@@ -134,9 +133,7 @@ def test_cautions_and_safety_close_the_sheets() -> None:
 
 def test_a_task_of_an_unknown_step_is_still_printed() -> None:
     plan = example_plan()
-    plan.tasks[0] = plan.tasks[0].model_copy(
-        update={"step": "stock K12-AD", "kind": "expand", "note": "one bottle"}
-    )
+    plan.tasks[0] = plan.tasks[0].model_copy(update={"step": "stock K12-AD", "kind": "expand", "note": "one bottle"})
     words = " ".join(texts(bench_sheet_pdf(plan, dates=["2027-02-22"])))
     assert "stock K12-AD" in words
     assert "one bottle" in words

@@ -187,9 +187,7 @@ def test_an_entry_that_moves_keeps_its_identity_and_counts_up() -> None:
 
 def test_an_earlier_plan_does_as_well_as_its_file() -> None:
     plan = without(moved(example_plan(), "S03-discard-1", "2027-03-29"), "S01-discard-1")
-    assert calendar_ics(plan, previous=example_plan()) == calendar_ics(
-        plan, previous=calendar_ics(example_plan())
-    )
+    assert calendar_ics(plan, previous=example_plan()) == calendar_ics(plan, previous=calendar_ics(example_plan()))
 
 
 def test_an_entry_that_is_gone_is_cancelled_once() -> None:
@@ -217,9 +215,7 @@ def test_work_given_to_somebody_else_is_cancelled_in_the_first_calendar() -> Non
 
 def test_an_entry_that_moves_out_of_the_days_asked_for_is_moved_not_cancelled() -> None:
     plan = moved(example_plan(), "S03-discard-1", "2027-03-30")
-    week = calendar_ics(
-        plan, dates=["2027-03-26"], previous=calendar_ics(example_plan(), dates=["2027-03-26"])
-    )
+    week = calendar_ics(plan, dates=["2027-03-26"], previous=calendar_ics(example_plan(), dates=["2027-03-26"]))
     assert b"STATUS:CANCELLED" not in week
     assert events(week)["S03-discard-1@red-light-batch-1.crossplan"].begin.date() == dt.date(2027, 3, 30)
 

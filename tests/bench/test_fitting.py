@@ -48,9 +48,7 @@ def test_at_last_cut_with_a_mark(pages: Pages) -> None:
     width=st.floats(8, 60),
     height=st.floats(2, 25),
 )
-def test_it_always_fits_and_loses_nothing_unseen(
-    pages: Pages, texts: list[str], width: float, height: float
-) -> None:
+def test_it_always_fits_and_loses_nothing_unseen(pages: Pages, texts: list[str], width: float, height: float) -> None:
     fitted = fit(pages, texts, width, height, 9, 4)
     assert fitted.height <= height + 1e-6
     assert all(pages.width_of(line, fitted.size) <= width + 1e-6 for line in fitted.lines)

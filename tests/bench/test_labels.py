@@ -136,9 +136,7 @@ def test_nothing_runs_over_the_edge(name: str) -> None:
     for picture in pictures(labels_pdf(long_plan(), wide), 300):
         dots = 300 / 25.4
         inside = np.zeros_like(picture, dtype=bool)
-        inside[
-            int(20 * dots) : int((20 + height) * dots) + 1, int(20 * dots) : int((20 + width) * dots) + 1
-        ] = True
+        inside[int(20 * dots) : int((20 + height) * dots) + 1, int(20 * dots) : int((20 + width) * dots) + 1] = True
         assert (picture[inside] == 0).any()
         assert not (picture[~inside] == 0).any()
 
@@ -162,9 +160,7 @@ def test_a_character_that_the_font_lacks_is_a_box() -> None:
 
 def test_labels_come_in_the_order_of_setting_up() -> None:
     found = codes(labels_pdf(example_plan(), SMALLEST), 203)
-    assert [c.split()[1] for c in found] == ["S01"] * 4 + ["S02"] * 2 + ["S03"] * 4 + ["S05"] * 2 + [
-        "S04"
-    ] * 6
+    assert [c.split()[1] for c in found] == ["S01"] * 4 + ["S02"] * 2 + ["S03"] * 4 + ["S05"] * 2 + ["S04"] * 6
 
 
 def test_choice_by_step_day_and_person() -> None:

@@ -64,9 +64,7 @@ def test_nothing_is_fetched_from_anywhere() -> None:
             assert name not in attributes
         if "href" in attributes:
             assert (attributes["href"] or "").startswith("#")
-    assert not re.search(
-        r"https?:|//|@import|url\(", re.sub(r"<!--.*?-->", "", html).replace("default-src", "")
-    )
+    assert not re.search(r"https?:|//|@import|url\(", re.sub(r"<!--.*?-->", "", html).replace("default-src", ""))
     assert "default-src 'none'" in html
 
 

@@ -15,9 +15,7 @@ def test_labels_of_a_layout_lie_apart_on_the_page(layout: SheetLayout) -> None:
         assert 0 <= y <= layout.page_height - layout.label_height + 0.01
         boxes.append((x, y))
     w, h = layout.label_width - 0.01, layout.label_height - 0.01
-    assert not [
-        1 for i, (x, y) in enumerate(boxes) for a, b in boxes[:i] if abs(x - a) < w and abs(y - b) < h
-    ]
+    assert not [1 for i, (x, y) in enumerate(boxes) for a, b in boxes[:i] if abs(x - a) < w and abs(y - b) < h]
 
 
 def test_places_count_row_by_row() -> None:

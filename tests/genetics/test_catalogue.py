@@ -207,9 +207,7 @@ def test_marker_by_name_synonym_or_allele(catalogue: Catalogue, gene: str, allel
     assert marker.symbol == symbol
 
 
-@pytest.mark.parametrize(
-    ("gene", "allele"), [("cy", ""), ("wg", "l-8"), ("Kr", ""), ("w", "zz9"), ("nonesuch", "")]
-)
+@pytest.mark.parametrize(("gene", "allele"), [("cy", ""), ("wg", "l-8"), ("Kr", ""), ("w", "zz9"), ("nonesuch", "")])
 def test_what_is_no_marker(catalogue: Catalogue, gene: str, allele: str) -> None:
     assert catalogue.marker(gene, allele) is None
 
@@ -244,18 +242,14 @@ def test_coloured_white_alleles_are_no_nulls(catalogue: Catalogue, allele: str) 
     assert white.traits.recessive == (("w", "orange eyes"),)
 
 
-@pytest.mark.parametrize(
-    ("gene", "allele"), [("w", "+"), ("Tb", "+"), ("Sb", "+"), ("y", "+t7.7"), ("Antp", "+")]
-)
+@pytest.mark.parametrize(("gene", "allele"), [("w", "+"), ("Tb", "+"), ("Sb", "+"), ("y", "+t7.7"), ("Antp", "+")])
 def test_wild_type_alleles_do_nothing(catalogue: Catalogue, gene: str, allele: str) -> None:
     marker = catalogue.marker(gene, allele)
     assert marker is not None
     assert marker.traits == PLAIN
 
 
-@pytest.mark.parametrize(
-    ("name", "lethal"), [("l(2)c14", True), ("l(3)DTS4", True), ("lt", False), ("l(9)x", False)]
-)
+@pytest.mark.parametrize(("name", "lethal"), [("l(2)c14", True), ("l(3)DTS4", True), ("lt", False), ("l(9)x", False)])
 def test_lethal_by_name(catalogue: Catalogue, name: str, lethal: bool) -> None:
     assert catalogue.lethal_by_name(name) is lethal
 
@@ -470,9 +464,7 @@ def test_bands_run_along_the_arm(catalogue: Catalogue) -> None:
     assert catalogue.band_to_cM("1", "6C12") == catalogue.band_to_cM("X", "6C12")
 
 
-@pytest.mark.parametrize(
-    ("arm", "band"), [("2L", "68A4"), ("3L", "201A"), ("5", "1A"), ("2L", "here"), ("2L", "")]
-)
+@pytest.mark.parametrize(("arm", "band"), [("2L", "68A4"), ("3L", "201A"), ("5", "1A"), ("2L", "here"), ("2L", "")])
 def test_what_is_no_band(catalogue: Catalogue, arm: str, band: str) -> None:
     assert catalogue.band_to_cM(arm, band) is None
 
@@ -556,9 +548,7 @@ def test_a_new_band_moves_a_known_site(tmp_path: Path) -> None:
         ('[[marker]]\ngene = "Sb"\nsign = { a = 1 }\n', "sign", "list"),
     ],
 )
-def test_faults_in_the_labs_file_say_what_and_where(
-    tmp_path: Path, text: str, message: str, hint: str
-) -> None:
+def test_faults_in_the_labs_file_say_what_and_where(tmp_path: Path, text: str, message: str, hint: str) -> None:
     with pytest.raises(InputError) as caught:
         lab(tmp_path, text)
     assert "lab.toml" in caught.value.message

@@ -17,7 +17,9 @@ LOST = Element("UAS-lost", Kind.INSERTION, "2")
 CYO = Element("CyO", Kind.BALANCER, "2", traits=Traits(cover=(Cover(8.0, 100.0),)))
 
 
-def shares(pair: tuple[Homologue, Homologue], sex: str = "female", chromosome: str = "2") -> dict[tuple[str, ...], float]:
+def shares(
+    pair: tuple[Homologue, Homologue], sex: str = "female", chromosome: str = "2"
+) -> dict[tuple[str, ...], float]:
     return {g.homologue.symbols: float(g.share) for g in gametes(pair, chromosome, sex)}
 
 
@@ -68,9 +70,7 @@ class TestGametes:
         assert shares(pair, "male", "X") == {(): 0.5, ("Y",): 0.5}
 
     def test_three_loci_follow_the_map(self) -> None:
-        loci = [
-            Element(n, Kind.ALLELE, "X", gene=n, position_cM=p) for n, p in (("sc", 0.0), ("v", 33.0), ("s", 43.0))
-        ]
+        loci = [Element(n, Kind.ALLELE, "X", gene=n, position_cM=p) for n, p in (("sc", 0.0), ("v", 33.0), ("s", 43.0))]
         pair = make_pair(Homologue.of(*loci), WILD_TYPE)
         double = haldane(33.0) * haldane(10.0) / 2
         assert shares(pair, chromosome="X")[("v",)] == pytest.approx(double)

@@ -68,9 +68,7 @@ def test_between_the_coldest_and_the_warmest(clock: Clock, course: Course) -> No
 
 @settings(deadline=None)
 @given(clocks, st.lists(spans, min_size=1, max_size=4), temperatures, st.floats(0.3, 0.7))
-def test_cutting_a_stretch_in_two_changes_nothing(
-    clock: Clock, lead: list[Span], end: float, cut: float
-) -> None:
+def test_cutting_a_stretch_in_two_changes_nothing(clock: Clock, lead: list[Span], end: float, cut: float) -> None:
     whole = Course(tuple(lead), (Span(24.0, end),))
     halves = [Span(s.hours * f, s.temperature) for s in lead for f in (cut, 1.0 - cut)]
     if all(s.hours >= 0.15 for s in halves):

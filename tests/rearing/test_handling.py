@@ -55,9 +55,7 @@ def test_stop_collecting(temperature: float, day: int) -> None:
     assert int(handling.stop_collecting_hours(temperature, CLOCK) / 24) == day
 
 
-@pytest.mark.parametrize(
-    ("temperature", "days"), [(18, 28), (21, 21), (22, 21), (25, 14), (15, 28), (28, 11)]
-)
+@pytest.mark.parametrize(("temperature", "days"), [(18, 28), (21, 21), (22, 21), (25, 14), (15, 28), (28, 11)])
 def test_flip_interval(temperature: float, days: int) -> None:
     assert handling.flip_interval_days(temperature) == days
 

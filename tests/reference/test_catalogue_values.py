@@ -166,9 +166,7 @@ def test_chromosomes_with_stubble_are_lethal_over_each_other(catalogue: Catalogu
     assert "Sb" in entry.traits_assumed.lethal
 
 
-@pytest.mark.parametrize(
-    ("one", "other"), [("TM3", "TM6B"), ("TM2", "TM6B"), ("MKRS", "TM6B"), ("CyO", "In(2LR)Gla")]
-)
+@pytest.mark.parametrize(("one", "other"), [("TM3", "TM6B"), ("TM2", "TM6B"), ("MKRS", "TM6B"), ("CyO", "In(2LR)Gla")])
 def test_usual_double_balancers_live(catalogue: Catalogue, one: str, other: str) -> None:
     """Stocks of these pairs are kept everywhere (common practice, no source)."""
     first, second = catalogue.balancer(one), catalogue.balancer(other)

@@ -32,9 +32,7 @@ def puparium_to_adult(temperature: float) -> float:
 
 
 def egg_to_puparium(temperature: float) -> float:
-    return next(
-        s.ends_at_hours for s in Clock().stages(Course.constant(temperature)) if s.stage == "third instar"
-    )
+    return next(s.ends_at_hours for s in Clock().stages(Course.constant(temperature)) if s.stage == "third instar")
 
 
 # -- the twelve check values -----------------------------------------------------------------------

@@ -48,9 +48,7 @@ def test_worked_values(share: str, need: int, probability: float, flies: int, re
     assert score.expected == pytest.approx(flies * float(Fraction(share)))
 
 
-@pytest.mark.parametrize(
-    "share", [Fraction(1, 2), Fraction(3, 16), Fraction(1, 8), Fraction(1, 64), Fraction(1, 500)]
-)
+@pytest.mark.parametrize("share", [Fraction(1, 2), Fraction(3, 16), Fraction(1, 8), Fraction(1, 64), Fraction(1, 500)])
 @pytest.mark.parametrize("probability", [0.5, 0.9, 0.99])
 def test_one_fly_is_the_logarithm_formula(share: Fraction, probability: float) -> None:
     """n = ceil(ln(1 - g) / ln(1 - p)) for one fly; at a tie logarithms may round up, counting does not."""
@@ -85,9 +83,7 @@ def test_large_numbers_against_scipy(need: int, share: Fraction) -> None:
         (10, 1 / 4, 0.95, 60.1, 60),
     ],
 )
-def test_sedcole_comes_out_high(
-    need: int, share: float, probability: float, closed: float, exact: int
-) -> None:
+def test_sedcole_comes_out_high(need: int, share: float, probability: float, closed: float, exact: int) -> None:
     """Sedcole 1977, Crop Sci. 17:667 (formula from memory)."""
     assert sedcole(share, need, probability) == pytest.approx(closed, abs=0.05)
     assert flies_to_score(share, need, probability).score == exact
@@ -149,9 +145,7 @@ def test_steps_over_working_vials_change_nothing() -> None:
     """2000 vials: the sum over every number of working vials, by SciPy, against the sum in steps."""
     vials, yield_, need = 2000, Yield(mean=3.0, k=2.0, fail=0.1), 5300
     working = range(1, vials + 1)
-    whole = math.fsum(
-        stats.binom.pmf(w, vials, 0.9) * stats.nbinom.sf(need - 1, w * 2.0, 2.0 / 5.0) for w in working
-    )
+    whole = math.fsum(stats.binom.pmf(w, vials, 0.9) * stats.nbinom.sf(need - 1, w * 2.0, 2.0 / 5.0) for w in working)
     assert 0.1 < whole < 0.9999
     assert chance_of_enough(vials, 1.0, need, yield_) == pytest.approx(whole, abs=1e-10)
 

@@ -27,7 +27,14 @@ WILD: Chromosome = frozenset()
 Y: Chromosome = frozenset({"Y"})
 
 #: what one copy shows; what is lethal with another copy of the same group; whether exchange is stopped; pigment
-SHOWS = {"CyO": "curly", "Sco": "few scutellars", "TM3": "stubble", "TM6B": "humerals", "Dr": "tiny eyes", "If": "small eyes"}
+SHOWS = {
+    "CyO": "curly",
+    "Sco": "few scutellars",
+    "TM3": "stubble",
+    "TM6B": "humerals",
+    "Dr": "tiny eyes",
+    "If": "small eyes",
+}
 LETHAL = {"CyO": "CyO", "Sco": "Sco", "TM3": "TM3", "TM6B": "TM6B", "Dr": "Dr", "l2": "l2", "l3": "l3"}
 BALANCERS = {"CyO", "TM3", "TM6B"}
 MARKERS = {"Sco", "Dr", "If"}
@@ -140,9 +147,7 @@ def fewest_generations(stocks: list[Fly], wanted: dict[str, int], sex: str, most
                 for members in classes(children(mother, father)).values():
                     if all(will_do(f, wanted, sex) for f in members):
                         return generation
-                    if len(members) == 1 and all(
-                        h in shelf[k - 1] for k in (1, 2, 3) for h in members[0][k]
-                    ):
+                    if len(members) == 1 and all(h in shelf[k - 1] for k in (1, 2, 3) for h in members[0][k]):
                         new[members[0]] = None
         have.update(new)
     return None
