@@ -34,6 +34,7 @@ from crossplan.plan.model import ParentRecord, Plan, StepRecord, TaskRecord
 
 HEADINGS = {
     "clear": "CLEAR: take all adult flies out",
+    "virgins": "VIRGINS: females from stocks",
     "collect": "COLLECT: sort and keep",
     "shift": "SHIFT: move to another temperature",
     "food": "FOOD: special food",
@@ -109,6 +110,8 @@ def _job(plan: Plan, task: TaskRecord, step: StepRecord | None, with_names: bool
         return Job(heading, (*_collect(step, again), *note, Gap(0.8), _count_cells(step)))
     if task.kind == "set up":
         return Job(heading, (*_set_up(step), *note))
+    if task.kind == "virgins":
+        return Job(heading, (_parent(step.mother, "♀", step.mothers_per_vial, step.vials), *note))
     if task.kind == "assay":
         return Job(heading, (*_assay(plan, task, step), *note))
     target = [Words(task.target, "for")] if task.target else []

@@ -36,6 +36,7 @@ DOING = {
     "shift": "move to another temperature:",
     "food": "special food for",
     "expand": "expand stock for",
+    "virgins": "virgins from stock for",
     "set up": "set up",
     "assay": "assay",
     "discard": "discard",

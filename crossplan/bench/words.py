@@ -17,7 +17,7 @@ MONTHS = ("Jan", "Feb", "Mar", "Apr", "May", "Jun", "Jul", "Aug", "Sep", "Oct", 
 #: The kinds of task in the order in which a round through the fly room does them: what cannot wait comes
 #: first (flies that eclosed since clearing are virgins for hours only), what makes dirt comes last. Common
 #: practice, no source.
-WALKING_ORDER = ("clear", "collect", "shift", "food", "expand", "set up", "assay", "discard")
+WALKING_ORDER = ("clear", "virgins", "collect", "shift", "food", "expand", "set up", "assay", "discard")
 
 #: A stretch of text and whether it is printed raised (the superscript of an allele).
 Run = tuple[str, bool]

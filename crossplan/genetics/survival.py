@@ -14,7 +14,7 @@ from __future__ import annotations
 
 from functools import cache
 
-from crossplan.genetics.chromosome import AUTOSOMES, FEMALE, MALE, PAIRS, Sex
+from crossplan.genetics.chromosome import FEMALE, MALE, PAIRS, Sex
 from crossplan.genetics.fly import Fly, Homologue, Pair
 
 NO_GENES: frozenset[str] = frozenset()
@@ -67,9 +67,9 @@ def cause_of_death(fly: Fly) -> str | None:
     unbalanced = _unbalanced_translocation(fly)
     if unbalanced:
         return unbalanced
-    exposed = NO_GENES.union(
-        *(exposed_lethals(pair, name, fly.sex) for name, pair in zip(PAIRS, fly.pairs, strict=True))
-    )
+    exposed = NO_GENES
+    for name, pair in zip(PAIRS, fly.pairs, strict=True):
+        exposed |= exposed_lethals(pair, name, fly.sex)
     if exposed:
         exposed -= NO_GENES.union(*(restored_genes(h) for _, h in fly.homologues()))
     if exposed:
@@ -84,8 +84,8 @@ def lives(fly: Fly) -> bool:
 
 
 def _unbalanced_translocation(fly: Fly) -> str | None:
-    parts = {name: sum(any(e.traits.linked_to for e in h.elements) for h in fly.pair(name)) for name in AUTOSOMES}
-    if parts["2"] == parts["3"]:
+    _, second, third, _ = fly.pairs
+    if linked_part(second[0]) + linked_part(second[1]) == linked_part(third[0]) + linked_part(third[1]):
         return None
     return "one part of a translocation without the other"
 

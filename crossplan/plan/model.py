@@ -133,7 +133,7 @@ class TaskRecord(Record):
     date: str
     #: local time of day, HH:MM
     time: str
-    kind: Literal["set up", "clear", "collect", "assay", "discard", "food", "shift", "expand"]
+    kind: Literal["set up", "clear", "collect", "virgins", "assay", "discard", "food", "shift", "expand"]
     #: step id; for an assay or special food the step that makes the flies
     step: str
     target: str | None = None

@@ -19,9 +19,9 @@ from crossplan.schedule.culture import Biology, Culture, Days, days_of, fits
 from crossplan.schedule.week import WorkWeek
 
 #: deterministic effort for each objective, in the solver's own units (about seconds on a usual machine)
-EFFORT = (6.0, 4.0)
+EFFORT = (2.0, 1.5)
 #: minutes of work: our own estimates, common practice, no source
-MINUTES_PER_VIAL = {"set up": 4, "clear": 1, "collect": 5, "discard": 0.5, "expand": 3}
+MINUTES_PER_VIAL = {"set up": 4, "clear": 1, "collect": 5, "virgins": 4, "discard": 0.5, "expand": 3}
 MINUTES_PER_ASSAY_FLY = 0.5
 
 
@@ -268,7 +268,7 @@ class _Solver:
 def tasks_by_day(days: Days) -> list[tuple[int, str]]:
     """Return the days of a culture with the kind of work on each."""
     found = [(days.set_up, "set up"), (days.clear, "clear"), (days.discard, "discard")]
-    found += [(d, "collect") for d in (*days.collect, *days.stock_collect)]
+    found += [(d, "collect") for d in days.collect] + [(d, "virgins") for d in days.stock_collect]
     if days.expand is not None:
         found.append((days.expand, "expand"))
     return found

@@ -84,8 +84,8 @@ def _culture_tasks(culture: Culture, days: Days, week: WorkWeek, person: str) ->
         add("expand", 0, days.expand, week.morning,
             f"put stock {culture.mother_stock} on fresh food, {culture.vials} vials, for virgins of {culture.step}")  # fmt: skip
     for i, day in enumerate(days.stock_collect, start=1):
-        add("collect", i + len(days.collect), day, week.afternoon,
-            f"virgins from stock {culture.mother_stock}: empty its vials at {week.morning}, collect at {week.afternoon};"
+        add("virgins", i, day, week.afternoon,
+            f"from stock {culture.mother_stock}: empty its vials at {week.morning}, collect at {week.afternoon};"
             f" safe for {hours:.0f} h")  # fmt: skip
     add("set up", 0, days.set_up, week.morning, f"set up {culture.vials} vials at {culture.temperature_C:g} C")
     add("clear", 0, days.clear, week.morning, "take the parents out")

@@ -74,7 +74,8 @@ def controls_for(
         if not drivers or not effectors:
             remarks[f"{target.name}: no controls, its driver and effector parts could not be told apart"] = None
             continue
-        alone = _control(target, drivers, f"{target.name}, no effector", "no effector")
+        without = replace(target, forbid=(*target.forbid, *(n for n, _ in effectors)))
+        alone = _control(without, drivers, f"{target.name}, no effector", "no effector")
         no_effector.setdefault((frozenset(drivers), target.sex), alone)
         replaced, other_site = _with_empty(drivers, shelf, classes, empties)
         if other_site:
@@ -82,7 +83,8 @@ def controls_for(
         if replaced is None:
             remarks["no empty driver on this shelf: the effector-alone control was left out"] = None
             continue
-        label = "empty driver, " + " + ".join(base_name(n) for n, _ in effectors)
+        places = " and ".join(n.partition("@")[2] or n for n, _ in replaced)
+        label = f"empty driver at {places}, {' + '.join(base_name(n) for n, _ in effectors)}, {target.sex}s"
         key = (frozenset(replaced + effectors), target.sex)
         known = empty_controls.get(key)
         if known is None or known.wanted.flies < target.flies:

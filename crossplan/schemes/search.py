@@ -2,8 +2,10 @@
 
 Level 0 holds the flies of the shelf; level k + 1 adds every fly that a cross of flies of the levels before gives as a
 pure class of one genotype. A target takes n generations when its last cross joins flies of level n - 1 and no cross
-of earlier levels will do. Levels are searched in order and completely, so the first hit is minimal; the work of
-a scheme (sum over its crosses) decides among the hits of one level, ties by the order of the forms.
+of earlier levels will do. Levels are searched in order, and each completely before a deeper one is believed, so the
+number of generations is minimal. From two generations on a shelf of the wanted stocks and the handiest helpers is
+tried first: a hit there is as good a proof, since everything below was searched on the whole shelf. The work of a scheme
+(sum over its crosses) decides among the hits of one level, ties by the order of the forms.
 
 What is searched: all crosses between stocks and kept classes, with balancers and markers. What is not: classes of
 recombinants are never kept as parents (they are counted as strangers wherever they occur), and stocks that tie
@@ -338,7 +340,7 @@ class _Search:
         candidates: list[tuple[float, State, State]] = []
         for mothers, fathers, coverable in self._by_content(females, males):
             m, f = np.array(mothers), np.array(fathers)
-            rows, columns = np.nonzero(self._goal_table(m, f, coverable))
+            rows, columns = self._goal_hits(m, f, coverable)
             costs = np.array([self.found[s].cost for s in mothers])[rows]
             costs = costs + np.array([self.found[s].cost for s in fathers])[columns]
             for i in np.argsort(costs, kind="stable")[: 50 * self.kept_schemes]:
@@ -382,25 +384,52 @@ class _Search:
                 if of_mother | of_father == wanted:
                     yield mothers, fathers, lack_m & lack_f
 
-    def _goal_table(self, m: NDArray[np.int64], f: NDArray[np.int64], coverable: frozenset[str]) -> NDArray[np.bool_]:
-        """Return for every mother (rows) and father (columns) whether the last cross can give the wish."""
+    def _goal_hits(
+        self, m: NDArray[np.int64], f: NDArray[np.int64], coverable: frozenset[str]
+    ) -> tuple[NDArray[np.int64], NDArray[np.int64]]:
+        """Return the places in `m` and `f` of the mothers and fathers whose cross can give the wish.
+
+        Chromosomes with wanted elements are looked at first; parents that have no partner left are dropped at once.
+        """
         import numpy as np
 
-        strict, plain, white, pigmented = [], [], [], []
-        for k, table in enumerate(self.tables):
-            of_m, m_index = np.unique(m[:, k], return_inverse=True)
-            of_f, f_index = np.unique(f[:, k], return_inverse=True)
-            goals = [[table.goal(int(a), int(b), coverable) for b in of_f] for a in of_m]
-            spread = np.ix_(m_index, f_index)
-            strict.append(np.array([[g.strict for g in row] for row in goals])[spread])
-            plain.append(np.array([[g.strict_plain for g in row] for row in goals])[spread])
-            white.append(np.array([[g.white for g in row] for row in goals])[spread])
-            pigmented.append(np.array([[g.pigmented for g in row] for row in goals])[spread])
-        good = np.logical_and.reduce(strict) | np.logical_and.reduce(white)
-        for k in range(len(self.tables)):
-            others = [p for j, p in enumerate(plain) if j != k]
-            good |= pigmented[k] & np.logical_and.reduce(others)
-        return np.asarray(good, dtype=np.bool_)
+        rows, columns = np.arange(len(m)), np.arange(len(f))
+        busy = {place for _, place, _ in self.wish.components}
+        order = sorted(range(len(self.tables)), key=lambda k: self.tables[k].chromosome not in busy)
+        flags: dict[int, NDArray[np.bool_]] = {}
+        for k in order:
+            here = self._goal_flags(k, m[rows, k], f[columns, k], coverable)
+            some = here[0] | here[2] | here[3]
+            keep_rows, keep_columns = some.any(axis=1), some.any(axis=0)
+            rows, columns = rows[keep_rows], columns[keep_columns]
+            flags = {j: x[:, keep_rows][:, :, keep_columns] for j, x in flags.items()}
+            flags[k] = here[:, keep_rows][:, :, keep_columns]
+            if not rows.size or not columns.size:
+                return rows, columns
+        good = np.logical_and.reduce([x[0] for x in flags.values()]) | np.logical_and.reduce(
+            [x[2] for x in flags.values()]
+        )
+        for k in flags:
+            others = [x[1] for j, x in flags.items() if j != k]
+            good |= flags[k][3] & np.logical_and.reduce(others)
+        i, j = np.nonzero(good)
+        return rows[i], columns[j]
+
+    def _goal_flags(
+        self, k: int, m: NDArray[np.int64], f: NDArray[np.int64], coverable: frozenset[str]
+    ) -> NDArray[np.bool_]:
+        """Return the four flags of `Goal` (first axis) for every mother and father, on one chromosome."""
+        import numpy as np
+
+        table = self.tables[k]
+        of_m, m_index = np.unique(m, return_inverse=True)
+        of_f, f_index = np.unique(f, return_inverse=True)
+        small = np.zeros((4, len(of_m), len(of_f)), dtype=bool)
+        for i, a in enumerate(of_m.tolist()):
+            for j, b in enumerate(of_f.tolist()):
+                g = table.goal(a, b, coverable)
+                small[:, i, j] = g.strict, g.strict_plain, g.white, g.pigmented
+        return np.asarray(small[:, m_index][:, :, f_index], dtype=np.bool_)
 
     def _gives_wish(self, mother: State, father: State) -> bool:
         """Look at the whole progeny of the last cross: a look whose bearers all satisfy the wish exists."""
@@ -475,12 +504,14 @@ def find_schemes(
         return _hit(whole, hits, 1)
     if max_generations == 1:
         return SearchResult(Status.IMPOSSIBLE, searched_to=1, forms=shelf.forms)
-    for done in whole.breed_last(1):
-        if not done:
-            return SearchResult(Status.LIMIT, searched_to=1, forms=shelf.forms)
-        hits = whole.last_crosses(1)
-        if hits:
-            return _hit(whole, hits, 2)
+    handy = _Search(shelf, observer, kept_schemes, budget, _handiest(whole, HANDY_HELPERS[2]))
+    for search in (handy, whole):
+        for done in search.breed_last(1):
+            if not done:
+                return SearchResult(Status.LIMIT, searched_to=1, forms=shelf.forms)
+            hits = search.last_crosses(1)
+            if hits:
+                return _hit(search, hits, 2)
     if max_generations < 3 or whole.some_chromosome_forbids():
         return SearchResult(Status.IMPOSSIBLE, searched_to=max_generations, forms=shelf.forms)
     return _deeper(whole, max_generations)
@@ -497,7 +528,7 @@ def _deeper(whole: _Search, max_generations: int) -> SearchResult:
     A small shelf of the handiest helpers is tried first: a hit there is minimal, since everything below was searched on
     the whole shelf. Only if it gives none is the whole shelf bred, as far as the budget allows.
     """
-    small = _Search(whole.shelf, whole.observer, whole.kept_schemes, whole.budget, _handiest(whole))
+    small = _Search(whole.shelf, whole.observer, whole.kept_schemes, whole.budget, _handiest(whole, HANDY_HELPERS[3]))
     for search in (small, whole):
         result = _search_levels(search, max_generations)
         if result.schemes and (search is whole or result.generations == FIRST_DEEP_LEVEL):
@@ -524,11 +555,11 @@ def _search_levels(search: _Search, max_generations: int) -> SearchResult:
     return SearchResult(Status.IMPOSSIBLE, searched_to=max_generations, forms=forms)
 
 
-#: helper stocks that the first look beyond two generations makes do with
-HANDY_HELPERS = 10
+#: helper stocks that the first look at so many generations makes do with
+HANDY_HELPERS = {2: 14, 3: 7}
 
 
-def _handiest(search: _Search) -> list[int]:
+def _handiest(search: _Search, most: int) -> list[int]:
     """Return the numbers of the forms with wanted elements, and of the helpers with most balancers and least else."""
     wanted, helpers = [], []
     for i, form in enumerate(search.shelf.forms):
@@ -546,7 +577,7 @@ def _handiest(search: _Search) -> list[int]:
         by_balance.setdefault(balanced, []).append(i)
     chosen = list(by_balance.get(0, [])[:3])
     for balanced in sorted(by_balance):
-        chosen += [i for i in by_balance[balanced] if i not in chosen][: HANDY_HELPERS - len(chosen)]
+        chosen += [i for i in by_balance[balanced] if i not in chosen][: most - len(chosen)]
     return sorted(wanted + chosen)
 
 
