@@ -23,6 +23,7 @@ from crossplan import __version__
 from crossplan.errors import InputError, Problem, Severity
 from crossplan.genetics.appearance import Means, Observer
 from crossplan.genetics.catalogue_lab import load_catalogue
+from crossplan.genetics.element import Element, Kind
 from crossplan.genetics.fly import Fly
 from crossplan.genetics.meiosis import MapFunction
 from crossplan.genetics.notation import Reading as Reading
@@ -90,10 +91,15 @@ def reading_rows(reading: Reading) -> list[tuple[str, str, str, str, str]]:
                 rows.append((chromosome, which, "+", "wild type", ""))
             for element in homologue.elements:
                 kind = str(element.kind) + (f", {element.component}" if element.component else "")
-                place = f"{element.position_cM:.1f} cM" if element.position_cM is not None else "place unknown"
-                words = kind if element.kind == "Y" else f"{kind}; {place}"
+                words = "; ".join(p for p in (kind, _place_words(element)) if p)
                 rows.append((chromosome, which, element.symbol, words, catalogue.provenance(element.symbol)))
     return rows
+
+
+def _place_words(element: Element) -> str:
+    if element.kind in (Kind.BALANCER, Kind.Y):
+        return ""
+    return "map position unknown" if element.position_cM is None else f"at {element.position_cM:.1f} cM"
 
 
 # -- one cross ---------------------------------------------------------------------------------------------------

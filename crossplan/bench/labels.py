@@ -85,7 +85,8 @@ def shortened_labels(
 
 
 def _vials(plan: Plan, steps: Iterable[str] | None, dates: Iterable[Day] | None, person: str | None) -> list[Vial]:
-    chosen = chosen_steps(plan, steps, dates, person)
+    # a step that shares the vials of another has no labels of its own
+    chosen = [s for s in chosen_steps(plan, steps, dates, person) if not s.same_vials_as]
     if not chosen:
         raise InputError("there are no labels to print", "No cross of the plan fits these steps, days and person.")
     return [Vial(step, n) for step in chosen for n in range(1, vials_of(step) + 1)]

@@ -5,6 +5,7 @@ Every command lives in a file of its own and imports the library inside its body
 
 from __future__ import annotations
 
+import os
 import sys
 from typing import Annotated
 
@@ -13,7 +14,7 @@ import typer
 from crossplan import __version__
 from crossplan.cli import audit, calendar, count, demo, labels, plan, progeny, read, rear
 from crossplan.cli.render import report_error
-from crossplan.errors import CrossplanError
+from crossplan.errors import CrossplanError, PlanCheckError
 
 app = typer.Typer(
     name="crossplan",
@@ -60,3 +61,11 @@ def main() -> None:
     except BrokenPipeError:
         sys.stderr.close()
         sys.exit(0)
+    except Exception as error:
+        if os.environ.get("CROSSPLAN_DEBUG"):
+            raise
+        typer.echo(f"crossplan stopped on a fault of its own ({type(error).__name__}: {error}).", err=True)
+        typer.echo(
+            "  -> Nothing was half written. Please report it, with CROSSPLAN_DEBUG=1 set for the details.", err=True
+        )
+        sys.exit(PlanCheckError.exit_status)

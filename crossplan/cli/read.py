@@ -73,11 +73,14 @@ def _chromosomes(reading: Reading) -> None:
     from crossplan import api
 
     table = Table(box=None, pad_edge=True, header_style="bold", padding=(0, 2, 0, 2))
-    for heading in ("chromosome", "homologue", "carries", "what it is", "where the facts come from"):
+    for heading in ("chromosome", "homologue", "carries", "what it is"):
         table.add_column(heading, overflow="fold")
-    for row in api.reading_rows(reading):
-        table.add_row(*row)
+    rows = api.reading_rows(reading)
+    for row in rows:
+        table.add_row(*row[:4])
     console().print(table)
+    for symbol, source in dict.fromkeys((row[2], row[4]) for row in rows if row[4]):
+        console().print(f"  {symbol}: {source}", style="dim", markup=False)
 
 
 def _summary(readings: list[Reading]) -> None:

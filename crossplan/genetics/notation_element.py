@@ -1,300 +1,562 @@
-"""One word of a genotype: which element it is, and which chromosome it speaks for.
+"""One symbol of a genotype: which element it is, and which chromosome it speaks for.
 
-The kinds of word, in the order in which they are tried: wild type, Y, balancer, transposon in braces, insertion with a
-site in shorthand, aberration, allele in brackets or run on, lethal by its name, transgene by its component class, and at
-last a symbol that nobody knows, which is kept as itself.
+The kinds of symbol, in the order in which they are tried: wild type, Y, an insertion that the stock list knows, genes
+run together (`yw`), balancer, transposon in braces, insertion with a site in shorthand, aberration, allele in brackets or
+run on, FRT, balancer with something hung on it, transgene by its component class, gene; and at last a symbol that nobody
+knows, which is kept as itself, with a note.
 """
 
 from __future__ import annotations
 
 import re
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
+from enum import IntEnum
+from typing import Final
 
 from crossplan.errors import Problem, Severity
-from crossplan.genetics.catalogue import Catalogue
+from crossplan.genetics.catalogue import BalancerEntry, Catalogue, MarkerEntry, restored_gene
 from crossplan.genetics.element import PLAIN, Element, Kind, Traits
 from crossplan.genetics.fly import Y_ELEMENT
 from crossplan.genetics.notation_clean import problem
+from crossplan.genetics.notation_insertion import (
+    OLD_BRACKETS,
+    TRANSPOSON,
+    Place,
+    empty_site,
+    frt,
+    insertion,
+    is_nested,
+    markers_and_name,
+)
 from crossplan.genetics.notation_split import Item
 
-_TRANSPOSON = re.compile(r"(?P<letter>P\+PBac|PBac|P|Mi|M|H|TI)\{(?P<content>.*)\}(?P<place>[^{}]*)", re.DOTALL)
-_AT = re.compile(r"(?P<name>[^@]+)@(?P<place>.+)")
-_IN_PARENTHESES = re.compile(r"(?P<name>[^()]+(?:\([^()]*\)[^()]+)*)\((?P<place>[^()]*(?:\([^()]*\)[^()]*)?)\)")
-_ABERRATION = re.compile(r"(?P<kind>Df|Dp|In|T|Tp|R|C)\((?P<where>[^)]*)\)(?P<name>\S*)")
-_ALLELE = re.compile(r"(?P<gene>[^\[\]{}@]+)\[(?P<allele>[^\[\]]*)\](?P<rest>.*)", re.DOTALL)
-_RUN_ON = re.compile(r"(?P<gene>[A-Za-z]+?)(?P<allele>\d\w*|\*|-|\+)")
-_LABEL = re.compile(r"[(\[]?(?:chr(?:omosome)?\.?\s*)?(?P<name>X|1|2|3|4|I|II|III|IV|V)[)\]]?", re.IGNORECASE)
-_CHROMOSOME_LABEL = {"x": "X", "1": "X", "i": "X", "2": "2", "ii": "2", "3": "3", "iii": "3", "4": "4", "iv": "4"}
-_ROMAN = re.compile(r"\((X|I|II|III|IV)\)|\[(X|I|II|III|IV)\]")
-_JOINED_GENES = {"yw": ("y", "w"), "yv": ("y", "v"), "ywf": ("y", "w", "f")}
+_LABEL = re.compile(r"(?P<base>.+)\((?:chr(?:omosome)?\.? ?)?(?P<name>X|[1-5](?:L|R|LR)?|I|II|III|IV|V)\)", re.IGNORECASE)
+_CHROMOSOME_OF_LABEL: Final = {"x": "X", "1": "X", "i": "X", "2": "2", "ii": "2", "3": "3", "iii": "3", "4": "4", "iv": "4"}
+_AT = re.compile(r"(?P<name>[^@]+)@(?P<place>[^@]+)")
+_IN_PARENTHESES = re.compile(r"(?P<name>.*[^(])\((?P<place>(?:[^()]|\([^()]*\))*)\)")
+_ABERRATION = re.compile(r"(?P<kind>Df|Dp|In|T|Tp|R|C|Ab)\((?P<where>[^()]*)\)(?P<name>.+)")
+_ARM = re.compile(r"(?P<chromosome>[1-4XY])(?:L|R|LR|h)?")
+_ALLELE = re.compile(r"(?P<gene>[^\[\]{}@]+?)\[(?P<allele>[^\[\]]*(?:\[[^\[\]]*\][^\[\]]*)*)\]")
+_IN_ROUND = re.compile(r"(?P<gene>[A-Za-z]{1,5})\((?P<allele>\d{1,4}|\*)\)")
+_RUN_ON = re.compile(r"(?P<gene>[A-Za-z]+?)(?P<allele>\d{1,4}(?:[a-z]{1,2}\d{0,2})?|\*|-|\+)")
+_LINE_CODE = re.compile(r"[A-Z]\d{2}[A-H]\d{2}")
+_YELLOW_WHITE = re.compile(r"(?P<y>y\d{0,2}\*?)(?P<w>w(?:\d{1,4}(?:[a-z]\d{1,2})?|\*|-)?)(?P<v>[vf]\d{0,2})?")
+_Y_FORMS = re.compile(r"(?:(?P<left>[A-Za-z]+\[[^\[\]]+\])?Y(?P<right>[A-Za-z]+\[[^\[\]]+\])?|Dp\(\d;Y\)(?P<dp>\S*))")
+_MARKED_BALANCER = re.compile(r"(?P<balancer>CyO|SM5|SM6a|TM1|TM2|TM3|TM6B|TM6C|TM6)(?P<marker>Sb|Ser|Tb|Hu|Ubx|Cy|Roi|e)1?")
+_BALANCER_START = re.compile(r"(?i)(?:C[YO0]|TM\d|FM\d|SM\d|MKR|MRK)")
+_LONGEST_BALANCER: Final = 8
+_CARRIED: Final = re.compile(r"(?i)gfp|yfp|rfp|cherry|tom|gal4|lacz|flp|uas|dsred")
+_STOCK_NUMBER = re.compile(r"(?:BDSC|DGRC|VDRC|DGGR)[:_# ]?\d{3,}")
+_GLUED_CROSS = re.compile(r"(?i)(?:dbd|ad|gal4)x(?:\d*x?uas|uas)")
+_MOST_UNDERSCORES: Final = 2
+_LETHAL_WORD = re.compile(r"(?i)lethal\w*|\[?l(?:ethal)?\]")
 
 
-@dataclass(frozen=True)
+class Rank(IntEnum):
+    """How strongly a piece of evidence speaks for a chromosome; a lower one gives way to a higher."""
+
+    HINT = 1
+    OTHER_ROWS = 2
+    STRONG = 3
+
+
+@dataclass(frozen=True, slots=True)
+class Evidence:
+    """A chromosome, what says so, and how strongly."""
+
+    chromosome: str
+    because: str
+    rank: Rank = Rank.STRONG
+
+
+@dataclass(frozen=True, slots=True)
 class Word:
-    """What one word of a genotype was read as.
-
-    `evidence` is the chromosome that the word itself speaks for, `because` names the kind of evidence;
-    `weak` evidence (the number of an insertion) gives way to any other.
-    """
+    """What one symbol was read as; no element for wild type, and where `problems` has an error."""
 
     element: Element | None
-    evidence: str = ""
-    because: str = ""
-    weak: bool = False
+    evidence: tuple[Evidence, ...] = ()
     problems: tuple[Problem, ...] = ()
-    floats: bool = False
+    plus: bool = False
+
+    @property
+    def kind(self) -> Kind | None:
+        return self.element.kind if self.element is not None else None
 
 
 class WordReader:
-    """Reads words with a catalogue and the elements that a stock list is known to hold."""
+    """Reads symbols with a catalogue and the elements that a stock list is known to hold."""
 
     def __init__(self, catalogue: Catalogue, known: Mapping[str, Element], text: str) -> None:
         self.catalogue = catalogue
         self.known = known
         self.text = text
 
-    def read(self, item: Item, after_balancer: bool) -> list[Word]:
-        """Return the word or words (`yw` is two) that an item is."""
+    def read(self, item: Item, balancer: Element | None = None) -> list[Word]:
+        """Return the word or words (`yw` is two) that an item is.
+
+        Args:
+            item: the symbol as written.
+            balancer: the balancer that stands before it on the homologue.
+        """
         text = item.text
-        if text == "+" or (text.startswith("+[") and text.endswith("]")):
-            return [Word(None)]
-        if text == "Y":
-            return [Word(Y_ELEMENT, "X", "the Y")]
-        if text in _JOINED_GENES:
-            return [self._allele(gene, "", item, text) for gene in _JOINED_GENES[text]]
-        for read in (self._balancer, self._transposon, self._sited, self._aberration, self._bracketed, self._run_on):
-            word = read(item, after_balancer)
+        if text == "+" or (text[0] == "+" and len(text) > 1 and text[1] in "[(" and text[-1] in "])"):
+            return [Word(None, plus=True)]
+        if text[0] == "Y" or "Y" in text:
+            y = self._y(text)
+            if y is not None:
+                return [y]
+        known = self.known.get(text)
+        if known is not None and not known.gene and known.kind in (Kind.INSERTION, Kind.UNKNOWN):
+            return [_known_word(known)]
+        several = self._run_together(item)
+        if several is not None:
+            return several
+        if balancer is not None:
+            carried = self._carried_by(item, balancer)
+            if carried is not None:
+                return [carried]
+        for read in (self._balancer, self._labelled, self._transposon, self._sited, self._aberration):
+            word = read(item)
             if word is not None:
                 return [word]
-        return [self._named(item)]
+        return self._alleles(item) or self._hung_on(item) or [self._typo(item, balancer) or self._named(item)]
 
-    def _note(self, item: Item, code: str, message: str, hint: str = "", severity: Severity = Severity.NOTE) -> Problem:
+    # -- what is said of a word ----------------------------------------------------------------------------------
+
+    def _say(self, item: Item, code: str, message: str, hint: str = "", severity: Severity = Severity.NOTE) -> Problem:
         return problem(code, severity, message, self.text, item.start, item.end, hint)
+
+    def _fault(self, item: Item, code: str, message: str, hint: str) -> Word:
+        return Word(None, problems=(self._say(item, code, message, hint, Severity.ERROR),))
+
+    # -- Y -------------------------------------------------------------------------------------------------------
+
+    def _y(self, text: str) -> Word | None:
+        """Return the Y, plain or with a marker on it (`Dp(1;Y)y[+]`, `B[S]Yy[+]`)."""
+        evidence = (Evidence("X", "the Y"),)
+        if text == "Y":
+            return Word(Y_ELEMENT, evidence)
+        match = _Y_FORMS.fullmatch(text)
+        if match is None:
+            return None
+        marks = [m for m in (match["left"], match["right"], match["dp"]) if m]
+        traits = PLAIN
+        for mark in marks:
+            restored = restored_gene(mark)
+            marker = self._marker_of(mark)
+            if restored:
+                traits = replace(traits, restores=traits.restores | {restored})
+            elif marker is not None:
+                traits = replace(traits, dominant=(*traits.dominant, *marker.traits.dominant))
+        return Word(Element(text, Kind.Y, "Y", traits=traits), evidence)
+
+    def _marker_of(self, symbol: str) -> MarkerEntry | None:
+        match = _ALLELE.fullmatch(symbol)
+        return self.catalogue.marker(match["gene"], match["allele"]) if match else None
 
     # -- balancers -----------------------------------------------------------------------------------------------
 
-    def _balancer(self, item: Item, after_balancer: bool) -> Word | None:
+    def _balancer(self, item: Item) -> Word | None:
         entry = self.catalogue.balancer(item.text)
-        if entry is None:
-            return self._balancer_typo(item, after_balancer)
-        problems = []
-        if item.text != entry.name and item.text.lower() == entry.name.lower():
-            problems.append(self._note(item, "spelling", f"{item.text} is read as {entry.name}"))
-        element = Element(entry.name, Kind.BALANCER, entry.chromosome, traits=entry.traits)
-        return Word(element, entry.chromosome, f"the balancer {entry.name}", problems=tuple(problems))
+        return None if entry is None else self._balancer_word(entry, item)
 
-    def _balancer_typo(self, item: Item, after_balancer: bool) -> Word | None:
-        if after_balancer or item.text in self.known or len(item.text) > 8:
+    def _balancer_word(self, entry: BalancerEntry, item: Item) -> Word:
+        notes = ()
+        if item.text != entry.name:
+            notes = (self._say(item, "spelling", f"{item.text} is read as {entry.name}"),)
+        element = Element(entry.name, Kind.BALANCER, entry.chromosome, traits=entry.traits)
+        return Word(element, (Evidence(entry.chromosome, f"the balancer {entry.name}"),), notes)
+
+    def _carried_by(self, item: Item, balancer: Element) -> Word | None:
+        """Return the transgene of a balancer that the catalogue knows as one thing: the `Kr-GFP` of `CyO, Kr-GFP`."""
+        if not _CARRIED.search(item.text) or "{" in item.text:
             return None
-        if not re.match(r"(?i)(?:C[YO0]|TM\d|FM\d|SM\d|MKR|MRK)", item.text):
+        entry = self.catalogue.balancer(f"{balancer.symbol},{item.text}")
+        if entry is None or entry.chromosome != balancer.chromosome or entry.name == balancer.symbol:
             return None
-        if self._marker(item.text) is not None:
+        dominant = tuple(s for s in entry.traits.dominant if s not in balancer.traits.dominant)
+        masks = entry.traits.masks - balancer.traits.masks
+        restores = entry.traits.restores - balancer.traits.restores
+        traits = Traits(dominant=dominant, restores=restores, masks=masks)
+        return Word(Element(item.text, Kind.INSERTION, balancer.chromosome, traits=traits))
+
+    def _hung_on(self, item: Item) -> list[Word] | None:
+        """Read a balancer with a marker or a transgene hung on its name: `TM3-Sb`, `TM6BTb`, `CyO-wgGFP`."""
+        text = item.text
+        run_on = _MARKED_BALANCER.fullmatch(text)
+        if run_on is not None:
+            return self._balancer_with(item, run_on.end("balancer"), run_on.end("balancer"))
+        for i, char in enumerate(text[: _LONGEST_BALANCER + 1]):
+            if char in "-.:_" and i >= 2 and self.catalogue.balancer(text[:i]) is not None:
+                return self._balancer_with(item, i, i + 1)
+        return None
+
+    def _balancer_with(self, item: Item, end: int, begin: int) -> list[Word] | None:
+        entry = self.catalogue.balancer(item.text[:end])
+        rest = item.text[begin:].strip("-.:_")
+        if entry is None or not rest:
             return None
-        near = self.catalogue.is_balancer_like(item.text)
-        if near is None:
+        fused = self.catalogue.balancer(f"{entry.name},{rest}")
+        if fused is not None:
+            return [self._balancer_word(fused, item)]
+        first = self._balancer_word(entry, Item(item.text[:end], item.start, item.start + end))
+        second = Item(rest, item.end - len(rest), item.end)
+        if self.catalogue.balancer(rest) is not None:
+            return [self._fault(item, "two-balancers", f"'{item.text}' names two balancers",
+                                "put a semicolon or a slash between them")]  # fmt: skip
+        carried = self._carried_by(second, first.element) if first.element is not None else None
+        if carried is not None:
+            return [first, carried]
+        if self.catalogue.marker(rest) is not None or _CARRIED.search(rest):
+            return [first, *self.read(second, first.element)]
+        variant = Element(item.text, Kind.BALANCER, entry.chromosome, traits=entry.traits)
+        note = self._say(item, "balancer-variant", f"{item.text} is taken for a form of {entry.name} that shows the same",
+                         f"write {entry.name} and what it carries, if it shows more", Severity.WARNING)  # fmt: skip
+        return [Word(variant, first.evidence, (note,))]
+
+    def _typo(self, item: Item, balancer: Element | None) -> Word | None:
+        text = item.text
+        inside = self._balancer_inside(text)
+        if inside:
+            return self._fault(item, "balancer-inside", f"'{text}' holds the name of the balancer {inside}, but not as a"
+                               " symbol by itself", "put a semicolon, a slash or a comma where it belongs")  # fmt: skip
+        if balancer is not None or text in self.known or len(text) > _LONGEST_BALANCER:
             return None
-        fault = self._note(
-            item, "balancer-typo", f"'{item.text}' is no balancer that the catalogue knows",
-            f"perhaps {near}; correct the stock list, or add the balancer to the lab's catalogue", Severity.ERROR,
-        )  # fmt: skip
-        return Word(None, problems=(fault,))
+        near = self.catalogue.is_balancer_like(text) if _BALANCER_START.match(text) else None
+        if near is None or self.catalogue.marker(text) is not None:
+            return None
+        return self._fault(item, "balancer-typo", f"'{text}' is no balancer that the catalogue knows",
+                           f"perhaps {near}; correct it, or add the balancer to the lab's catalogue")  # fmt: skip
+
+    def _balancer_inside(self, text: str) -> str:
+        """Return the balancer that stands inside a longer symbol, divided from the rest by a sign."""
+        if text.isalnum() or "{" in text:
+            return ""
+        for token in re.split(r"[^A-Za-z0-9]+", text):
+            if len(token) >= 3 and token != text and re.match(r"(?i)cyo|[tsf]m\d", token):
+                entry = self.catalogue.balancer(token)
+                if entry is not None:
+                    return entry.name
+        return ""
 
     def with_assumed_marker(self, element: Element, item: Item) -> tuple[Element, Problem | None]:
-        """Return a balancer written without a marker with the one that it usually carries, and the note that says so."""
+        """Return a balancer written without a marker with the one that it usually carries, and what to say of it."""
         entry = self.catalogue.balancer(element.symbol)
         if entry is None or not entry.assumed or entry.traits == entry.traits_assumed:
             return element, None
         markers = ", ".join(entry.assumed)
-        note = self._note(
+        note = self._say(
             item, "assumed-marker", f"{entry.name} is written without a marker and taken to carry {markers}"
             f" ({entry.assumed_reason})", f"write {entry.name}, {markers} if it does", Severity.WARNING,
         )  # fmt: skip
-        assumed = Element(element.symbol, Kind.BALANCER, element.chromosome, traits=entry.traits_assumed)
-        return assumed, note
+        return replace(element, traits=entry.traits_assumed), note
 
     # -- insertions ----------------------------------------------------------------------------------------------
 
-    def _transposon(self, item: Item, after_balancer: bool) -> Word | None:
-        match = _TRANSPOSON.fullmatch(item.text)
+    def _labelled(self, item: Item) -> Word | None:
+        """Read a symbol with its chromosome behind it in parentheses: `ppk-GAL4(II)`."""
+        match = _LABEL.fullmatch(item.text)
+        if match is None or match["base"] in ("Df", "Dp", "In", "T", "Tp", "R", "C", "Ab", "l", "L", "M", "su"):
+            return None
+        base, name = match["base"], match["name"]
+        if name.isdigit() and self.catalogue.marker(base) is not None:
+            return None
+        inner = self.read(Item(base, item.start, item.start + len(base)))
+        chromosome = _CHROMOSOME_OF_LABEL.get(name.lower().rstrip("lr") or name.lower())
+        if chromosome is None:
+            return self._fault(item, "no-such-chromosome", f"({name}) names no chromosome of this fly",
+                               "chromosomes are X (I), II, III and IV")  # fmt: skip
+        if len(inner) != 1:
+            return None
+        said = Evidence(chromosome, f"{base} ({name})")
+        kept = tuple(e for e in inner[0].evidence if e.rank is Rank.STRONG)
+        return replace(inner[0], evidence=(said, *kept))
+
+    def _transposon(self, item: Item) -> Word | None:
+        text = item.text
+        match = TRANSPOSON.fullmatch(text)
+        notes: tuple[Problem, ...] = ()
+        if match is None:
+            match, notes = self._old_brackets(item)
+        if match is None:
+            return self._stray_braces(item)
+        groups = match.groupdict()
+        content = groups.get("content") or groups.get("square") or groups.get("round") or ""
+        if not content.strip():
+            return self._fault(item, "empty-construct", "the braces are empty: which construct is it?",
+                               "write its name between the braces")  # fmt: skip
+        if is_nested(content):
+            return self._fault(item, "nested-braces", "braces stand directly inside braces",
+                               "write one pair, such as P{UAS-GFP}attP2")  # fmt: skip
+        markers, name = markers_and_name(content)
+        place = groups["place"].strip().lstrip("@")
+        if not name:
+            return self._fault(item, "empty-construct", "no name stands behind the = in the braces",
+                               "write the name of the construct")  # fmt: skip
+        standard = "" if notes else text
+        return self._insertion(name, place, item, markers, standard, notes)
+
+    def _old_brackets(self, item: Item) -> tuple[re.Match[str] | None, tuple[Problem, ...]]:
+        match = OLD_BRACKETS.fullmatch(item.text)
+        if match is None or (match["round"] and "+" not in match["round"] and "=" not in match["round"]):
+            return None, ()
+        note = self._say(item, "old-brackets", f"the brackets of {item.text} are read as braces",
+                         f"write {match['letter']}{{...}}", Severity.WARNING)  # fmt: skip
+        return match, (note,)
+
+    def _stray_braces(self, item: Item) -> Word | None:
+        text = item.text
+        if "{" not in text or _ABERRATION.match(text):
+            return None
+        return self._fault(item, "braces", f"'{text}' has braces without the letter of a transposon before them",
+                           f"perhaps P{text[text.index('{'):]}")  # fmt: skip
+
+    def _sited(self, item: Item) -> Word | None:
+        match = _AT.fullmatch(item.text)
+        if match is None:
+            match = _IN_PARENTHESES.fullmatch(item.text) if item.text[-1] == ")" else None
+            if match is None or self.catalogue.site(match["place"]) is None:
+                return self._bare_site(item)
+        name, place = match["name"], match["place"]
+        joined = re.match(r"(?P<site>[^_]+)_(?P<rest>.+)", place)
+        if joined and self.catalogue.site(place) is None and self.catalogue.site(joined["site"]) is not None:
+            return self._fault(item, "underscore", f"an underscore joins {name}@{joined['site']} to the next symbol",
+                               "write a comma there")  # fmt: skip
+        return self._insertion(name, place, item, (), "")
+
+    def _bare_site(self, item: Item) -> Word | None:
+        """Read the name of a landing site by itself as the empty site; a plain band (`51D`) is not one."""
+        if "att" not in item.text.lower() or item.text[:1].isdigit():
+            return None
+        site = self.catalogue.site(item.text)
+        if site is None:
+            return None
+        note = self._say(item, "empty-site", f"{item.text} by itself is read as the empty landing site")
+        return Word(empty_site(site, self.catalogue), (Evidence(site.chromosome, f"the site {site.name}"),), (note,))
+
+    def _insertion(
+        self,
+        name: str,
+        place: str,
+        item: Item,
+        markers: tuple[str, ...],
+        standard: str,
+        notes: tuple[Problem, ...] = (),
+    ) -> Word:
+        element, where = insertion(name, place, markers, standard, self.catalogue)
+        known = self.known.get(element.symbol)
+        if known is not None and not markers:
+            return replace(_known_word(known), problems=notes)
+        problems = list(notes)
+        if not markers and not element.component and element.traits.restores:
+            problems.append(
+                self._say(item, "assumed-marker", f"{name} is taken to carry mini-white, as most insertions do",
+                          "write the standard form if it does not")  # fmt: skip
+            )
+        if place and not where.because and "[" not in place:
+            near = self.catalogue.near_sites(place)
+            if near:
+                problems.append(
+                    self._say(item, "unknown-site", f"the catalogue has no landing site '{place}'",
+                              f"perhaps {near[0]}", Severity.WARNING)  # fmt: skip
+                )
+        return Word(element, _evidence_of(where), tuple(problems))
+
+    # -- aberrations ---------------------------------------------------------------------------------------------
+
+    def _aberration(self, item: Item) -> Word | None:
+        match = _ABERRATION.fullmatch(item.text)
         if match is None:
             return None
-        content, place = match["content"], match["place"].strip()
-        if not content.strip():
-            fault = self._note(item, "empty-construct", "the braces are empty: which construct is it?",
-                               "write its name between the braces", Severity.ERROR)  # fmt: skip
-            return Word(None, problems=(fault,))
-        markers, name = _markers_and_name(content)
-        return self._insertion(name, place, item, markers, item.text)
+        if match["kind"] == "In":
+            entry = self.catalogue.balancer(match["name"])
+            if entry is not None:
+                return self._balancer_word(entry, item)
+        arms = [_ARM.fullmatch(part.strip()) for part in re.split(r"[;,]", match["where"])]
+        names = [("X" if a["chromosome"] == "1" else a["chromosome"]) for a in arms if a is not None]
+        if len(names) < len(arms) and match["where"] != "1;f":
+            return self._fault(item, "no-such-chromosome", f"'{match['where']}' names no chromosome of this fly",
+                               "chromosomes are X (1), Y, 2, 3 and 4")  # fmt: skip
+        return self._aberration_word(item, match["kind"], names)
 
-    def _sited(self, item: Item, after_balancer: bool) -> Word | None:
-        match = _AT.fullmatch(item.text)
-        if match is not None:
-            return self._insertion(match["name"], match["place"], item, (), "")
-        match = _IN_PARENTHESES.fullmatch(item.text)
-        if match is None or match["name"] in ("Df", "Dp", "In", "T", "Tp", "R", "C", "l", "su", "M"):
+    def _aberration_word(self, item: Item, kind: str, names: list[str]) -> Word:
+        text = item.text
+        autosomes = [n for n in names if n not in ("X", "Y")]
+        if kind == "C" and autosomes:
+            return self._fault(item, "compound-autosome", f"{text}: compound autosomes are not handled",
+                               "leave this stock out of the list that you plan with")  # fmt: skip
+        if kind == "C":
+            compound = Element(text, Kind.BALANCER, "X", traits=Traits(compound=True))
+            return Word(compound, (Evidence("X", f"the attached-X {text}"),))
+        # in T(2;3) both chromosomes carry a part; it is kept where the lower one stands
+        place = names[0] if kind in ("T", "Ab") else names[-1]
+        if place == "Y" and kind in ("T", "Ab"):
+            place = names[-1]
+        if kind == "T":
+            note = self._say(item, "translocation", f"{text} ties chromosomes {' and '.join(names)}; it is read as standing"
+                             " on one of them, and unbalanced gametes are not foreseen", severity=Severity.WARNING)  # fmt: skip
+            return Word(Element(text, Kind.ABERRATION, place), (Evidence(place, text),), (note,))
+        if kind != "Df":
+            return Word(Element(text, Kind.ABERRATION, place), (Evidence("X" if place == "Y" else place, text),))
+        note = self._say(item, "assumed-lethal", f"{text} is taken to be lethal over itself, as most deficiencies are")
+        element = Element(text, Kind.ABERRATION, place, traits=Traits(lethal=frozenset({text})))
+        return Word(element, (Evidence(place, text),), (note,))
+
+    # -- alleles -------------------------------------------------------------------------------------------------
+
+    def _run_together(self, item: Item) -> list[Word] | None:
+        """Read `yw`, `y1w67c23`, `y1w*` as the genes that they are."""
+        if item.text[0] != "y" or "w" not in item.text:
             return None
-        label = _CHROMOSOME_LABEL.get(match["place"].lower())
-        if label is not None:
-            word = self._named(Item(match["name"], item.start, item.start + len(match["name"])))
-            return Word(word.element, label, f"the label ({match['place']})", problems=word.problems)
-        if self.catalogue.site(match["place"]) is not None:
-            return self._insertion(match["name"], match["place"], item, (), "")
+        match = _YELLOW_WHITE.fullmatch(item.text)
+        if match is None:
+            return self._yw122(item) if item.text == "yw122" else None
+        words: list[Word] = []
+        for name in ("y", "w", "v"):
+            if match[name]:
+                words += self._alleles(Item(match[name], item.start, item.end)) or []
+        return words
+
+    def _yw122(self, item: Item) -> list[Word]:
+        note = self._say(item, "spelling", "yw122 is read as y w hsFLP122 (common practice)", "write y w hsFLP122",
+                         Severity.WARNING)  # fmt: skip
+        flp = replace(self._named(Item("hsFLP122", item.start, item.end)), problems=(note,))
+        return [*(self._run_together(Item("yw", item.start, item.end)) or ()), flp]
+
+    def _alleles(self, item: Item) -> list[Word] | None:
+        """Read alleles in brackets, run on to the gene, or a known gene by itself."""
+        text = item.text
+        if text[-1] == "]":
+            return self._bracketed(item)
+        if "[" not in text and self.catalogue.marker(text) is not None:
+            return [self._allele(text, "", item, text)]
+        round_one = _IN_ROUND.fullmatch(text)
+        if round_one is not None and self.catalogue.marker(round_one["gene"]) is not None:
+            return [self._spelt_allele(round_one["gene"], round_one["allele"], item)]
+        match = _RUN_ON.fullmatch(text)
+        if match is None or _LINE_CODE.fullmatch(text) or self.catalogue.marker(match["gene"]) is None:
+            return self._known_allele(item)
+        return [self._spelt_allele(match["gene"], match["allele"], item)]
+
+    def _spelt_allele(self, gene: str, allele: str, item: Item) -> Word:
+        return self._allele(gene, allele, item, f"{gene}[{allele}]")
+
+    def _known_allele(self, item: Item) -> list[Word] | None:
+        """Read an allele whose superscript was lost, if the catalogue has just that one: `wa`, `snX2`."""
+        for cut in range(1, min(len(item.text), 5)):
+            gene, allele = item.text[:cut], item.text[cut:]
+            entry = self.catalogue.marker(gene, allele)
+            if entry is not None and entry.source and (gene, allele) in _exact_alleles(self.catalogue):
+                return [self._spelt_allele(gene, allele, item)]
         return None
 
-    def _insertion(self, name: str, place: str, item: Item, markers: tuple[str, ...], standard: str) -> Word:
-        site = self.catalogue.site(place) if place else None
-        component = self.catalogue.component(name)
-        symbol = f"{name}@{site.name}" if site else f"{name}@{place}" if place else name
-        known = self.known.get(symbol)
-        if known is not None and not markers:
-            return Word(known, known.chromosome if known.site else "", f"the site {known.site}" if known.site else "")
-        written = (*markers, *(site.carries if site and not markers else ()))
-        traits = self.catalogue.insertion_traits(written if markers else (*_usual(component), *written), component)
-        problems = []
-        if not markers and component is None:
-            problems.append(
-                self._note(
-                    item,
-                    "assumed-marker",
-                    f"{name} is taken to carry mini-white, as most insertions do",
-                    "write the standard form if it does not",
-                )  # fmt: skip
-            )
-        chromosome, because, weak = "", "", False
-        if site is not None:
-            chromosome, because = site.chromosome, f"the site {site.name}"
-        elif place[:1].isdigit() and place[:1] in "1234":
-            chromosome, because, weak = ("X" if place[0] == "1" else place[0]), "the number of the insertion", True
-        elif place and (near := self.catalogue.near_sites(place)) and "[" not in place:
-            problems.append(
-                self._note(
-                    item,
-                    "unknown-site",
-                    f"the catalogue has no landing site '{place}'",
-                    f"perhaps {near[0]}",
-                    Severity.WARNING,
-                )  # fmt: skip
-            )
-        element = Element(
-            symbol, Kind.INSERTION, chromosome if site else "", site=site.name if site else "",
-            position_cM=site.map_cM if site else None, component=component.cls if component else "",
-            standard=standard, traits=traits,
-        )  # fmt: skip
-        return Word(element, chromosome, because, weak, tuple(problems))
-
-    # -- aberrations and alleles ---------------------------------------------------------------------------------
-
-    def _aberration(self, item: Item, after_balancer: bool) -> Word | None:
-        match = _ABERRATION.fullmatch(item.text)
-        if match is None or not match["name"]:
+    def _bracketed(self, item: Item) -> list[Word] | None:
+        text = item.text
+        matches = list(_ALLELE.finditer(text))
+        if not matches or "".join(m.group() for m in matches) != text:
             return None
-        where = match["where"]
-        places = [p.strip()[:1] for p in re.split(r"[;,]", where) if p.strip()]
-        place = places[-1] if places else ""
-        chromosome = {"1": "X", "X": "X", "2": "2", "3": "3", "4": "4", "Y": "Y"}.get(place, "")
-        if not chromosome:
-            fault = self._note(item, "no-such-chromosome", f"'{where}' names no chromosome of this fly",
-                               "chromosomes are X (1), Y, 2, 3 and 4", Severity.ERROR)  # fmt: skip
-            return Word(None, problems=(fault,))
-        problems = []
-        traits = PLAIN
-        if match["kind"] == "Df":
-            traits = Traits(lethal=frozenset({item.text}))
-            problems.append(
-                self._note(
-                    item, "assumed-lethal", f"{item.text} is taken to be lethal over itself, as most deficiencies are"
-                )
-            )
-        element = Element(item.text, Kind.ABERRATION, chromosome, traits=traits)
-        evidence = "X" if chromosome == "Y" else chromosome
-        return Word(element, evidence, f"the aberration {item.text}", problems=tuple(problems))
-
-    def _bracketed(self, item: Item, after_balancer: bool) -> Word | None:
-        match = _ALLELE.fullmatch(item.text)
-        if match is None or match["rest"]:
+        if len(matches) == 1 and self._is_transgene(matches[0]["gene"], matches[0]["allele"], text):
             return None
-        if not match["allele"].strip():
-            fault = self._note(item, "empty-allele", "the brackets are empty: which allele is it?",
-                               f"write {match['gene']}[*] for an allele that is not known", Severity.ERROR)  # fmt: skip
-            return Word(None, problems=(fault,))
-        return self._allele(match["gene"], match["allele"], item, item.text)
+        words = []
+        for match in matches:
+            part = Item(match.group(), item.start + match.start(), item.start + match.end())
+            if not match["allele"].strip():
+                words.append(self._fault(part, "empty-allele", "the brackets are empty: which allele is it?",
+                                         f"write {match['gene']}[*] for an allele that is not known"))  # fmt: skip
+            else:
+                words.append(self._allele(match["gene"], match["allele"], part, match.group()))
+        return words
 
-    def _run_on(self, item: Item, after_balancer: bool) -> Word | None:
-        if item.text in self.known or self.catalogue.component(item.text) is not None:
-            return None
-        match = _RUN_ON.fullmatch(item.text)
-        if match is None or self.catalogue.marker(match["gene"]) is None:
-            return None
-        symbol = f"{match['gene']}[{match['allele']}]"
-        return self._allele(match["gene"], match["allele"], item, symbol)
-
-    def _marker(self, text: str) -> object | None:
-        return self.catalogue.marker(text)
+    def _is_transgene(self, gene: str, allele: str, text: str) -> bool:
+        """Tell `tub-GAL80[ts]`, a construct, from an allele of a gene."""
+        if self.catalogue.marker(gene, allele) is not None or self.catalogue.locus(gene) is not None:
+            return False
+        return "\\" not in gene and self.catalogue.component(text) is not None
 
     def _allele(self, gene: str, allele: str, item: Item, symbol: str) -> Word:
-        if symbol in _JOINED_GENES:
-            symbol = gene
-        if allele == "-":
-            allele = "*"
-        marker = self.catalogue.marker(gene, allele)
+        marker = self.catalogue.marker(gene, "*" if allele == "-" else allele)
         if marker is not None:
             element = Element(symbol, Kind.ALLELE, marker.chromosome, position_cM=marker.map_cM, gene=marker.gene,
                               traits=marker.traits)  # fmt: skip
-            return Word(element, marker.chromosome, f"the marker {gene}")
+            return Word(element, _said(marker.chromosome, f"the marker {symbol}"))
+        locus = self.catalogue.locus(gene)
         traits = PLAIN
-        chromosome = ""
+        chromosome = locus.chromosome if locus else ""
+        problems: tuple[Problem, ...] = ()
         if self.catalogue.lethal_by_name(gene) or allele.lower() in ("l", "lethal"):
             traits = Traits(lethal=frozenset({gene}))
-            arm = re.match(r"l\((\w+)\)", gene)
-            chromosome = {"1": "X", "X": "X"}.get(arm[1][:1], arm[1][:1]) if arm else ""
-        locus = self.catalogue.locus(gene)
-        if locus is not None:
-            chromosome = chromosome or locus.chromosome
-        element = Element(
-            symbol, Kind.ALLELE, chromosome, position_cM=locus.cM if locus else None, gene=gene, traits=traits
-        )
-        return Word(element, chromosome, f"the gene {gene}")
+            numbered = re.match(r"l\(([1-4X])\)", gene)
+            if numbered:
+                chromosome = "X" if numbered[1] == "1" else numbered[1]
+        else:
+            problems = (self._unknown(item, symbol),)
+        element = Element(symbol, Kind.ALLELE, chromosome, position_cM=locus.cM if locus else None, gene=gene, traits=traits)
+        return Word(element, _said(chromosome, f"the gene {gene}"), problems)
+
+    def _unknown(self, item: Item, symbol: str) -> Problem:
+        return self._say(item, "unknown-symbol", f"{symbol} is not in the catalogue; it is kept as itself",
+                         "add it to the lab's catalogue if it shows, kills or covers something")  # fmt: skip
+
+    # -- names ---------------------------------------------------------------------------------------------------
 
     def _named(self, item: Item) -> Word:
         text = item.text
-        known = self.known.get(text)
-        if known is not None:
-            return Word(known, known.chromosome, f"other rows with {text}")
-        marker = self.catalogue.marker(text)
-        if marker is not None or self.catalogue.lethal_by_name(text) or self.catalogue.locus(text) is not None:
+        if self.catalogue.lethal_by_name(text) or self.catalogue.locus(text) is not None:
             return self._allele(text, "", item, text)
-        label = _ROMAN.search(text)
-        if label and label.end() == len(text) and label.start() > 0:
-            name = label[1] or label[2]
-            inner = self._named(Item(text[: label.start()], item.start, item.start + label.start()))
-            return Word(inner.element, _CHROMOSOME_LABEL[name.lower()], f"the label ({name})", problems=inner.problems)
+        flp_target = frt(text, self.catalogue)
+        if flp_target is not None:
+            element, where = flp_target
+            return Word(element, _evidence_of(where))
+        if _LETHAL_WORD.fullmatch(text):
+            note = self._say(item, "unnamed-lethal", f"'{text}' is read as one recessive lethal, the same wherever it is"
+                             " written so", "give it a name, such as l(2)A12", Severity.WARNING)  # fmt: skip
+            return Word(Element(text, Kind.ALLELE, traits=Traits(lethal=frozenset({text.lower()}))), problems=(note,))
+        fault = self._no_name(item)
+        if fault is not None:
+            return fault
         component = self.catalogue.component(text)
         if component is not None:
             traits = self.catalogue.insertion_traits((), component)
             return Word(Element(text, Kind.INSERTION, component=component.cls, traits=traits))
-        if not re.search(r"\w", text):
-            fault = self._note(item, "no-symbol", f"'{text}' is no symbol", "take it out, or write what it stands for",
-                               Severity.ERROR)  # fmt: skip
-            return Word(None, problems=(fault,))
-        note = self._note(item, "unknown-symbol", f"{text} is not in the catalogue; it is kept as itself",
-                          "add it to the lab's catalogue if it shows, kills or covers something")  # fmt: skip
-        return Word(Element(text, Kind.UNKNOWN), problems=(note,))
+        return Word(Element(text, Kind.UNKNOWN), problems=(self._unknown(item, text),))
+
+    def _no_name(self, item: Item) -> Word | None:
+        """Return why a text cannot be the name of anything."""
+        text = item.text
+        if not re.search(r"[^\W_]", text):
+            return self._fault(item, "no-symbol", f"'{text}' is no symbol", "take it out, or write what it stands for")
+        if "__" in text or text.count("_") > _MOST_UNDERSCORES:
+            return self._fault(item, "underscores", f"'{text}' looks like the name of a file, not of an element",
+                               "write the genotype with ; / and commas")  # fmt: skip
+        number = _STOCK_NUMBER.search(text)
+        if number is not None and number.start() > 0:
+            return self._fault(item, "stock-number", f"the stock number {number.group()} is glued to {text[: number.start()]}",
+                               "take the number out")  # fmt: skip
+        if _GLUED_CROSS.search(text):
+            return self._fault(item, "cross", f"'{text}' looks like a cross of two genotypes",
+                               "write the two genotypes by themselves")  # fmt: skip
+        return None
 
 
-def _usual(component: object) -> tuple[str, ...]:
-    carries = getattr(component, "carries", ("w+",))
-    return tuple(carries)
+def _known_word(known: Element) -> Word:
+    if not known.chromosome:
+        return Word(known)
+    if known.site:
+        return Word(known, (Evidence(known.chromosome, f"the site {known.site}"),))
+    return Word(known, (Evidence(known.chromosome, f"{known.symbol} in other rows", Rank.OTHER_ROWS),))
 
 
-def _markers_and_name(content: str) -> tuple[tuple[str, ...], str]:
-    """Return the markers and the name of a construct: of `y[+t7.7] w[+mC]=AD-K12` the two and `AD-K12`."""
-    depth = 0
-    cut = -1
-    for i, char in enumerate(content):
-        depth += (char in "[{(") - (char in "]})")
-        if char == "=" and depth == 0:
-            cut = i
-    name = content[cut + 1 :].strip()
-    before = content[:cut] if cut >= 0 else ""
-    return tuple(before.replace(",", " ").split()), re.sub(r"\s+", "", name)
+def _evidence_of(where: Place) -> tuple[Evidence, ...]:
+    if not where.chromosome:
+        return ()
+    rank = Rank.HINT if where.hint_only else Rank.STRONG
+    return (Evidence("X" if where.chromosome == "Y" else where.chromosome, where.because, rank),)
+
+
+def _said(chromosome: str, because: str) -> tuple[Evidence, ...]:
+    return (Evidence(chromosome, because),) if chromosome else ()
+
+
+def _exact_alleles(catalogue: Catalogue) -> frozenset[tuple[str, str]]:
+    return frozenset((m.gene, m.allele) for m in catalogue.markers() if m.allele)

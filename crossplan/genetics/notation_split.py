@@ -1,16 +1,26 @@
 """The skeleton of a genotype: fields by semicolon, homologues by slash, items by comma or blank.
 
-A sign inside brackets belongs to a symbol and divides nothing. One pass, no recursion, so the time grows with the length.
+A sign inside brackets belongs to a symbol and divides nothing. One pass without recursion, so the time grows with the
+length; depth and number of parts are limited.
 """
 
 from __future__ import annotations
 
+import re
 from dataclasses import dataclass
+from typing import Final
 
 from crossplan.errors import Problem, Severity
-from crossplan.genetics.notation_clean import MOST_DEPTH, problem
+from crossplan.genetics.notation_clean import problem
 
-_CLOSES = {"]": "[", "}": "{", ")": "("}
+#: deepest nesting of brackets that is read, most fields and most homologues in one (real ones: 4, 4 and 3)
+MOST_DEPTH: Final = 12
+MOST_FIELDS: Final = 12
+MOST_HOMOLOGUES: Final = 12
+
+_CLOSES: Final = {"]": "[", "}": "{", ")": "("}
+_CLOSING: Final = {"[": "]", "{": "}", "(": ")"}
+_SIGN = re.compile(r"[\[\]{}();/, ]")
 
 
 @dataclass(frozen=True, slots=True)
@@ -33,7 +43,7 @@ class Half:
 
 @dataclass(frozen=True, slots=True)
 class Field:
-    """What stands between two semicolons: one homologue, or two."""
+    """What stands between two semicolons: one homologue, or more with slashes between them."""
 
     halves: tuple[Half, ...]
     start: int
@@ -46,90 +56,107 @@ class Field:
 
 def split_genotype(text: str) -> tuple[tuple[Field, ...], Problem | None]:
     """Return the fields of a cleaned genotype, or the first fault of its brackets or slashes."""
-    depth_fault = _brackets(text)
-    if depth_fault is not None:
-        return (), depth_fault
-    fields: list[Field] = []
-    for start, end in _parts(text, 0, len(text), ";"):
-        halves = [Half(tuple(_items(text, a, b)), a, b) for a, b in _parts(text, start, end, "/")]
-        if len(halves) > 1 and any(not h.items for h in halves):
-            bad = next(h for h in halves if not h.items)
-            return (), problem(
-                "empty-homologue", Severity.ERROR, "a homologue is missing beside the slash", text, bad.start,
-                max(bad.end, bad.start + 1), "write + for a wild-type homologue",
+    splitter = _Splitter(text)
+    fault = splitter.run()
+    return (() if fault else tuple(splitter.fields)), fault
+
+
+class _Splitter:
+    def __init__(self, text: str) -> None:
+        self.text = text
+        self.fields: list[Field] = []
+        self.halves: list[Half] = []
+        self.items: list[Item] = []
+        self.open_at: list[int] = []
+        self.field_start = self.half_start = self.item_start = 0
+
+    def run(self) -> Problem | None:
+        for match in _SIGN.finditer(self.text):
+            i, sign = match.start(), match.group()
+            fault = self._bracket(sign, i) if sign in "[]{}()" else self._divide(sign, i)
+            if fault is not None:
+                return fault
+        if self.open_at:
+            return self._unclosed()
+        end = len(self.text)
+        self._end_field(end)
+        return self._bare_slash()
+
+    def _divide(self, sign: str, i: int) -> Problem | None:
+        if self.open_at:
+            return None
+        if sign == ";":
+            self._end_field(i)
+        elif sign == "/":
+            self._end_half(i)
+        else:
+            self._end_item(i)
+        if len(self.fields) > MOST_FIELDS or len(self.halves) > MOST_HOMOLOGUES:
+            return self._error("five-fields", "more parts than any fly has chromosomes", i, i + 1)
+        return None
+
+    def _end_item(self, i: int) -> None:
+        if i > self.item_start:
+            self.items.append(Item(self.text[self.item_start : i], self.item_start, i))
+        self.item_start = i + 1
+
+    def _end_half(self, i: int) -> None:
+        self._end_item(i)
+        self.halves.append(Half(tuple(self.items), self.half_start, i))
+        self.items = []
+        self.half_start = i + 1
+
+    def _end_field(self, i: int) -> None:
+        self._end_half(i)
+        start = self.halves[0].items[0].start if self.halves[0].items else self.field_start
+        end = self.halves[-1].items[-1].end if self.halves[-1].items else i
+        self.fields.append(Field(tuple(self.halves), start, end))
+        self.halves = []
+        self.field_start = i + 1
+
+    def _bracket(self, sign: str, i: int) -> Problem | None:
+        if sign in "[{(":
+            self.open_at.append(i)
+            if len(self.open_at) > MOST_DEPTH:
+                return self._error("too-deep", "brackets are nested deeper than in any genotype", i, i + 1)
+            return None
+        if not self.open_at:
+            return self._error(
+                "bracket", f"'{sign}' closes no bracket that was opened before it", i, i + 1,
+                f"take it out, or write the '{_CLOSES[sign]}' that is missing",
             )  # fmt: skip
-        fields.append(Field(tuple(halves), start, end))
-    return tuple(fields), None
-
-
-def _brackets(text: str) -> Problem | None:
-    open_at: list[int] = []
-    for i, char in enumerate(text):
-        if char in "[{(":
-            open_at.append(i)
-            if len(open_at) > MOST_DEPTH:
-                return problem(
-                    "too-deep", Severity.ERROR, "brackets are nested deeper than any genotype", text, i, i + 1
-                )
-        elif char in _CLOSES:
-            if not open_at or text[open_at[-1]] != _CLOSES[char]:
-                return problem(
-                    "bracket", Severity.ERROR, f"'{char}' closes no bracket that was opened before it", text, i, i + 1,
-                    _repair(text, open_at, char),
-                )  # fmt: skip
-            open_at.pop()
-    if open_at:
-        i = open_at[-1]
-        return problem(
-            "bracket", Severity.ERROR, f"'{text[i]}' is never closed, so where the symbol ends is unknown", text, i, i + 1,
-            f"close it; perhaps {text[i:].split(' ')[0]}{_closing(text[i])}",
+        opened = self.open_at.pop()
+        if self.text[opened] == _CLOSES[sign]:
+            return None
+        right = _CLOSING[self.text[opened]]
+        return self._error(
+            "bracket", f"'{self.text[opened]}' is closed by '{sign}'", opened, i + 1,
+            f"perhaps {_short(self.text[opened:i] + right)}, or a '{right}' is missing before the '{sign}'",
         )  # fmt: skip
-    return None
+
+    def _unclosed(self) -> Problem:
+        i = self.open_at[-1]
+        word = re.match(r"[^ ;/,]*", self.text[i:])
+        written = word.group() if word else self.text[i]
+        return self._error(
+            "bracket", f"'{self.text[i]}' is never closed, so where the symbol ends is unknown", i, i + 1,
+            f"close it; perhaps {_short(written)}{_CLOSING[self.text[i]]}",
+        )  # fmt: skip
+
+    def _bare_slash(self) -> Problem | None:
+        for field in self.fields:
+            for half in field.halves:
+                if len(field.halves) > 1 and not half.items:
+                    start = max(min(half.start, len(self.text) - 1) - (half.start == half.end), 0)
+                    return self._error(
+                        "empty-homologue", "a homologue is missing beside the slash", start, start + 1,
+                        "write + for a wild-type homologue",
+                    )  # fmt: skip
+        return None
+
+    def _error(self, code: str, message: str, start: int, end: int, hint: str = "") -> Problem:
+        return problem(code, Severity.ERROR, message, self.text, start, end, hint)
 
 
-def _closing(bracket: str) -> str:
-    return {"[": "]", "{": "}", "(": ")"}[bracket]
-
-
-def _repair(text: str, open_at: list[int], char: str) -> str:
-    if open_at:
-        return f"the last open bracket is '{text[open_at[-1]]}'; perhaps it should close with '{_closing(text[open_at[-1]])}'"
-    return f"take the '{char}' out, or write the bracket that it closes"
-
-
-def _parts(text: str, start: int, end: int, divider: str) -> list[tuple[int, int]]:
-    parts = []
-    depth = 0
-    begin = start
-    for i in range(start, end):
-        char = text[i]
-        if char in "[{(":
-            depth += 1
-        elif char in "]})":
-            depth -= 1
-        elif char == divider and depth == 0:
-            parts.append((begin, i))
-            begin = i + 1
-    parts.append((begin, end))
-    return parts
-
-
-def _items(text: str, start: int, end: int) -> list[Item]:
-    items: list[Item] = []
-    depth = 0
-    begin: int | None = None
-    for i in range(start, end):
-        char = text[i]
-        if char in "[{(":
-            depth += 1
-        elif char in "]})":
-            depth -= 1
-        if depth == 0 and char in ", " and char not in "]})":
-            if begin is not None:
-                items.append(Item(text[begin:i], begin, i))
-            begin = None
-        elif begin is None:
-            begin = i
-    if begin is not None:
-        items.append(Item(text[begin:end], begin, end))
-    return items
+def _short(text: str) -> str:
+    return text if len(text) <= 40 else f"{text[:18]}...{text[-18:]}"

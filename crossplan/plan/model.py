@@ -96,6 +96,8 @@ class StepRecord(Record):
     dates: StepDates | None = None
     person: str = ""
     is_control: bool = False
+    #: another step with the same parents, from whose vials these flies are taken too; `vials` is 0 then
+    same_vials_as: str = ""
     cautions: list[str] = []
 
 

@@ -19,6 +19,8 @@ from crossplan.plan.screen import ScreenFile, TargetSection
 from crossplan.stocks.table import Row, read_table
 
 FORBID_WORDS = ("balancers", "markers", "other insertions")
+#: flies of either sex that found a stock when the screen does not say (common practice, no source)
+FOUNDERS = 6
 _COPIES = re.compile(r"(?P<n>\d+)\s*[x×]\s+(?P<symbol>\S.*)")
 
 
@@ -218,7 +220,7 @@ def _wanted(screen: ScreenFile, section: TargetSection, name: str, effector: str
     components = [_component(c) for c in (*section.components, *((effector,) if effector else ()))]
     usual = () if section.stock else defaults.forbid
     return WantedTarget(
-        name, tuple(components), section.sex or defaults.sex, section.flies or defaults.flies,
+        name, tuple(components), section.sex or defaults.sex, section.flies or (FOUNDERS if section.stock else defaults.flies),
         section.age_days or defaults.age_days, section.due or defaults.due,
         section.forbid if section.forbid is not None else usual, section.stock, effector,
     )  # fmt: skip

@@ -39,6 +39,7 @@ class Culture:
         temperature_C: rearing temperature.
         vials: how many.
         keeps_virgins: whether the kept flies are mothers of a later cross.
+        also: steps that keep another class from the same vials.
         age_span: for flies that go to an assay the days between the youngest and the oldest age; else None.
     """
 
@@ -49,6 +50,7 @@ class Culture:
     vials: int
     keeps_virgins: bool
     age_span: int | None = None
+    also: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True)

@@ -5,6 +5,7 @@ from __future__ import annotations
 import datetime as dt
 import math
 from collections.abc import Mapping, Sequence
+from dataclasses import replace
 
 from crossplan.plan.model import StepRecord, TargetRecord, TaskRecord
 from crossplan.plan.screen import ScreenFile
@@ -36,17 +37,20 @@ def put_on_calendar(
     """
     week = WorkWeek.of(screen.calendar, start)
     clock = Clock() if screen.rearing.hours_at_25 is None else Clock(screen.rearing.hours_at_25)
+    in_vials_of = {s.id: s.same_vials_as or s.id for s in steps}
     assays = _assays(targets, ages, fed)
     cultures = _cultures(steps, assays)
+    assays = [replace(a, culture=in_vials_of[a.step]) for a in assays]
     biologies = {c.step: Biology.at(c.temperature_C, clock) for c in cultures}
     schedule = solve(cultures, assays, biologies, screen.rearing.laying_days, week)
     placed = [c for c in cultures if c.step in schedule.days]
     person = share_out(placed, schedule, screen.calendar.people)
     for step in steps:
-        if step.id in schedule.days:
-            step.dates = step_dates(schedule.days[step.id], week)
-            step.person = person.get(step.id, "")
-    _fill_targets(targets, schedule, week)
+        culture = in_vials_of[step.id]
+        if culture in schedule.days:
+            step.dates = step_dates(schedule.days[culture], week)
+            step.person = person.get(culture, "")
+    _fill_targets(targets, schedule, week, in_vials_of)
     return write_tasks(placed, assays, schedule, week, person), schedule
 
 
@@ -74,27 +78,39 @@ def _cultures(steps: Sequence[StepRecord], assays: Sequence[Assay]) -> list[Cult
         low, high = assay.age_days
         span = high - max(low, assay.feed_days, assay.rest_days)
         spans[assay.step] = min(span, spans.get(assay.step, span))
-    cultures = []
+    in_vials_of = {s.id: s.same_vials_as or s.id for s in steps}
+    cultures: list[Culture] = []
     for step in steps:
-        parents = [(p.step, p is step.mother) for p in (step.mother, step.father) if p.step is not None]
+        if step.same_vials_as:
+            continue
+        parents = [(in_vials_of[p.step], p is step.mother) for p in (step.mother, step.father) if p.step is not None]
+        here = [s for s in steps if in_vials_of[s.id] == step.id]
+        age_spans = [max(spans[s.id], 0) for s in here if s.id in spans]
         cultures.append(
             Culture(
                 step.id,
                 tuple(parents),
                 step.mother.stock or "",
-                step.temperature_C,
+                min(s.temperature_C for s in here),
                 step.vials,
-                step.keep.virgin,
-                max(spans[step.id], 0) if step.id in spans else None,
-            )  # fmt: skip
+                any(s.keep.virgin for s in here),
+                min(age_spans, default=None),
+                tuple(s.id for s in here if s is not step),
+            )
         )
     return cultures
 
 
-def _fill_targets(targets: Sequence[TargetRecord], schedule: Schedule, week: WorkWeek) -> None:
+def _fill_targets(
+    targets: Sequence[TargetRecord], schedule: Schedule, week: WorkWeek, in_vials_of: Mapping[str, str]
+) -> None:
     late = {item.target: item for item in schedule.late}
     for target in targets:
-        if target.status == "planned" and target.scheme and set(target.scheme) & set(schedule.unplaced):
+        if (
+            target.status == "planned"
+            and target.scheme
+            and {in_vials_of[s] for s in target.scheme} & set(schedule.unplaced)
+        ):
             target.cautions.append("no days could be found for its crosses within the calendar's horizon")
         if target.target not in schedule.assay:
             continue

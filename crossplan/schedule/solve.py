@@ -40,6 +40,13 @@ class Assay:
     feed_days: int = 0
     #: no anaesthesia so many days before
     rest_days: int = 1
+    #: the culture in whose vials these flies grow; the step itself unless it shares them
+    culture: str = ""
+
+    @property
+    def vials_of(self) -> str:
+        """Return the step whose culture makes the flies."""
+        return self.culture or self.step
 
 
 @dataclass(frozen=True)
@@ -151,7 +158,7 @@ class _Solver:
             self._add_load(choice)
         lateness, finishes = [], []
         for assay in self.assays:
-            if assay.step in self.choices:
+            if assay.vials_of in self.choices:
                 late, finish = self._add_assay(assay)
                 finishes.append(finish)
                 lateness += late
@@ -196,7 +203,7 @@ class _Solver:
                 self.load.setdefault(day, []).append(round(MINUTES_PER_VIAL[kind] * vials) * pick)
 
     def _add_assay(self, assay: Assay) -> tuple[list[Any], Any]:
-        choice = self.choices[assay.step]
+        choice = self.choices[assay.vials_of]
         low, high = assay.age_days
         picks: dict[int, Any] = {}
         for option, pick in zip(choice.options, choice.picks, strict=True):
@@ -253,11 +260,11 @@ class _Solver:
         windows: dict[str, tuple[int, int]] = {}
         late = []
         for assay in self.assays:
-            if assay.step not in days:
+            if assay.vials_of not in days:
                 continue
             day = next(d for d, p in self.assay_picks[assay.target] if solver.value(p))
             low, high = assay.age_days
-            made = days[assay.step]
+            made = days[assay.vials_of]
             assay_days[assay.target] = day
             windows[assay.target] = (made.last + max(low, assay.feed_days, assay.rest_days), made.first + high)
             if assay.due is not None and self.week.date(day) > assay.due:

@@ -55,7 +55,7 @@ def write_tasks(
             tasks += _culture_tasks(culture, days, week, person.get(culture.step, ""))
     for assay in assays:
         if assay.target in schedule.assay:
-            tasks += _assay_tasks(assay, schedule, week, person.get(assay.step, ""))
+            tasks += _assay_tasks(assay, schedule, week, person.get(assay.vials_of, ""))
     return sorted(tasks, key=lambda t: (t.date, t.time, t.step, t.id))
 
 
@@ -63,19 +63,19 @@ def _culture_tasks(culture: Culture, days: Days, week: WorkWeek, person: str) ->
     hours = virgin_hours(culture.temperature_C)
     made: list[TaskRecord] = []
 
-    def add(kind: str, number: int, day: int, time: str, note: str) -> None:
+    def add(kind: str, number: int, day: int, time: str, note: str, step: str = culture.step) -> None:
         suffix = f"-{number}" if number else ""
         made.append(
             TaskRecord.model_validate(
                 {
-                    "id": f"{culture.step}-{kind.replace(' ', '-')}{suffix}",
+                    "id": f"{step}-{kind.replace(' ', '-')}{suffix}",
                     "date": week.date(day).isoformat(),
                     "time": time,
                     "kind": kind,
-                    "step": culture.step,
+                    "step": step,
                     "note": note,
                     "person": person,
-                    "minutes": round(MINUTES_PER_VIAL[kind] * culture.vials),
+                    "minutes": round(MINUTES_PER_VIAL[kind] * culture.vials) if step == culture.step else 0,
                 }
             )  # fmt: skip
         )
@@ -89,14 +89,13 @@ def _culture_tasks(culture: Culture, days: Days, week: WorkWeek, person: str) ->
             f" safe for {hours:.0f} h")  # fmt: skip
     add("set up", 0, days.set_up, week.morning, f"set up {culture.vials} vials at {culture.temperature_C:g} C")
     add("clear", 0, days.clear, week.morning, "take the parents out")
-    for i, day in enumerate(days.collect, start=1):
-        if culture.keeps_virgins:
-            note = (
-                f"empty the vials at {week.morning}; females that emerge from then on are virgins at {week.afternoon}"
-            )
-            add("collect", i, day, week.afternoon, f"{note} (safe for {hours:.0f} h)")
-        else:
-            add("collect", i, day, week.morning, "collect the kept class")
+    for step in (culture.step, *culture.also):
+        for i, day in enumerate(days.collect, start=1):
+            if culture.keeps_virgins:
+                note = f"empty the vials at {week.morning}; females that emerge from then on are virgins at {week.afternoon}"
+                add("collect", i, day, week.afternoon, f"{note} (safe for {hours:.0f} h)", step)
+            else:
+                add("collect", i, day, week.morning, "collect the kept class", step)
     add("discard", 0, days.discard, week.afternoon, "last collection done: kill and discard the culture")
     return made
 
@@ -118,7 +117,7 @@ def _assay_tasks(assay: Assay, schedule: Schedule, week: WorkWeek, person: str) 
         )  # fmt: skip
     ]
     if assay.feed_days:
-        last = schedule.days[assay.step].last
+        last = schedule.days[assay.vials_of].last
         feed = max((d for d in week.days if last <= d <= day - assay.feed_days), default=last)
         tasks.append(
             TaskRecord(
@@ -137,6 +136,6 @@ def _assay_tasks(assay: Assay, schedule: Schedule, week: WorkWeek, person: str) 
 
 
 def _ages(assay: Assay, schedule: Schedule, day: int) -> str:
-    made = schedule.days[assay.step]
+    made = schedule.days[assay.vials_of]
     youngest, oldest = day - made.last, day - made.first
     return str(youngest) if youngest == oldest else f"{youngest}-{oldest}"

@@ -8,12 +8,12 @@ from __future__ import annotations
 
 import math
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from crossplan.genetics.chromosome import FEMALE
 from crossplan.plan.screen import ScreenFile
 from crossplan.rearing.counting import flies_to_score
-from crossplan.rearing.yields import Yield, vials_needed, virgin_catch
+from crossplan.rearing.yields import Yield, chance_of_enough, vials_needed, virgin_catch
 from crossplan.schemes.realise import Cross
 
 #: share of collected adults that live to the assay (common practice, no source)
@@ -43,6 +43,7 @@ def amounts(
     crosses: Sequence[Cross],
     wanted: Mapping[int, int],
     uses: Mapping[int, Sequence[Use]],
+    shared: Sequence[int],
     screen: ScreenFile,
 ) -> tuple[Amount, ...]:
     """Return the numbers of every cross.
@@ -51,18 +52,39 @@ def amounts(
         crosses: all crosses of the plan, parents before children.
         wanted: flies that targets ask of a cross, by its position in `crosses`.
         uses: where its kept flies are parents, by position.
+        shared: for each cross the position of the first one with the same parents: they share their vials, and the
+            largest need among them decides how many.
         screen: parents to a vial, progeny of a vial, hours of collection, the probability asked for.
     """
-    found: dict[int, Amount] = {}
     rearing = screen.rearing
+    found: dict[int, Amount] = {}
+    vials: dict[int, int] = {}
     for i in reversed(range(len(crosses))):
         need = math.ceil(wanted.get(i, 0) / SURVIVAL_TO_ASSAY)
-        for use in uses.get(i, ()):
-            each = rearing.mothers_per_vial if use.as_mother else rearing.fathers_per_vial
-            need += found[use.by].vials * each
+        for by, as_mother in {(shared[use.by], use.as_mother) for use in uses.get(i, ())}:
+            need += vials[by] * (rearing.mothers_per_vial if as_mother else rearing.fathers_per_vial)
         virgins = any(use.as_mother for use in uses.get(i, ()))
         found[i] = _amount(crosses[i], max(need, 1), virgins, screen)
-    return tuple(found[i] for i in range(len(crosses)))
+        vials[shared[i]] = max(vials.get(shared[i], 0), found[i].vials)
+    return tuple(
+        _with_vials(crosses[i], found[i], vials[shared[i]], shared[i] == i, screen) for i in range(len(crosses))
+    )
+
+
+def _with_vials(cross: Cross, amount: Amount, vials: int, has_vials: bool, screen: ScreenFile) -> Amount:
+    """Return the amount with what the vials that are really set up give."""
+    if vials == amount.vials and has_vials:
+        return amount
+    share = float(min(c.share for c in cross.kept))
+    vial = Yield(mean=screen.rearing.progeny_per_vial)
+    caught = amount.flies_expected / (amount.vials * share * vial.mean * (1 - vial.fail)) if amount.vials else 1.0
+    reached = chance_of_enough(vials, share, amount.flies_needed, vial, min(caught, 1.0))
+    return replace(
+        amount,
+        vials=vials if has_vials else 0,
+        flies_expected=amount.flies_expected * vials / max(amount.vials, 1),
+        probability=reached,
+    )
 
 
 def _amount(cross: Cross, need: int, virgins: bool, screen: ScreenFile) -> Amount:

@@ -68,12 +68,20 @@ def write_records(
             wanted[last] = wanted.get(last, 0) + answer.asked.wanted.flies
             for cross in answer.last.crosses():
                 serves.setdefault(position[cross.key], []).append(answer)
-    numbers = amounts(numbered.crosses, wanted, uses, screen)
+    shared = _same_parents(numbered.crosses)
+    numbers = amounts(numbered.crosses, wanted, uses, shared, screen)
     write = _StepWriter(numbered, planner, screen, locations)
     steps = [
-        write.step(cross, numbers[i], uses.get(i, []), serves.get(i, [])) for i, cross in enumerate(numbered.crosses)
+        write.step(cross, numbers[i], uses.get(i, []), serves.get(i, []), numbered.crosses[shared[i]])
+        for i, cross in enumerate(numbered.crosses)
     ]
     return [_target(a, numbered, planner) for a in answers], steps
+
+
+def _same_parents(crosses: Sequence[Cross]) -> list[int]:
+    """Return for each cross the position of the first one with the same parents (itself, mostly)."""
+    first: dict[tuple[object, ...], int] = {}
+    return [first.setdefault((c.mother.key, c.father.key), i) for i, c in enumerate(crosses)]
 
 
 class _StepWriter:
@@ -85,7 +93,9 @@ class _StepWriter:
         self.screen = screen
         self.locations = locations
 
-    def step(self, cross: Cross, amount: Amount, uses: Sequence[Use], serves: Sequence[Answer]) -> StepRecord:
+    def step(
+        self, cross: Cross, amount: Amount, uses: Sequence[Use], serves: Sequence[Answer], vials_of: Cross
+    ) -> StepRecord:
         rearing = self.screen.rearing
         # what serves several targets is reared as the coolest of them asks
         warm = min((self.planner.temperature_of(a.asked) for a in serves), default=rearing.temperature)
@@ -107,6 +117,7 @@ class _StepWriter:
             probability=round(amount.probability, 4),
             flies_to_score=amount.flies_to_score,
             temperature_C=warm,
+            same_vials_as="" if vials_of is cross else self.numbered.id_of(vials_of),
             is_control=bool(serves) and all(a.asked.control_kind for a in serves),
             cautions=_cautions(cross),
         )
