@@ -138,7 +138,7 @@ class CrossResult:
         ]
         if self.progeny.unplaced:
             names = ", ".join(dict.fromkeys(self.progeny.unplaced))
-            remarks.append(f"map position unknown: {names}; taken to be unlinked")
+            remarks.append(f"map position unknown: {names}; recombination with it is not counted")
         return remarks
 
 

@@ -98,11 +98,13 @@ def _show_reading(planned: Planned) -> None:
         f"{shelf.path}: {shelf.rows_read} rows read, {shelf.rows_refused} not understood,"
         f" {planned.rows_assumed} with an assumption"
     )
-    shown = [p for p in planned.problems if p.severity != "note"]
-    for problem in shown[:SHOWN_PROBLEMS]:
+    errors = [p for p in planned.problems if p.severity == "error"]
+    for problem in errors[:SHOWN_PROBLEMS]:
         report_problem(problem)
-    if len(shown) > SHOWN_PROBLEMS:
-        out.print(f"  ... and {len(shown) - SHOWN_PROBLEMS} more: crossplan audit --stocks {shelf.path}")
+    if len(errors) > SHOWN_PROBLEMS:
+        out.print(f"  ... and {len(errors) - SHOWN_PROBLEMS} more")
+    if planned.rows_assumed or errors:
+        out.print(f"  more on the list: crossplan audit --stocks {shelf.path}", style="dim")
 
 
 def _show_targets(plan: Plan) -> None:
@@ -146,7 +148,12 @@ def _show_dates(plan: Plan) -> None:
         f"{totals['steps']} crosses, {totals['vials']} vials, {totals['tasks']} tasks on {totals['working_days']} days"
     )
     out.print(
-        f"First flies ready [bold]{totals['first_ready']}[/bold],"
-        f" last [bold]{totals['last_ready']}[/bold];"
-        f" fullest day {totals['busiest_day']} ({totals['busiest_day_minutes']} minutes of work)"
+        f"First flies ready [bold]{_day(totals['first_ready'])}[/bold],"
+        f" last [bold]{_day(totals['last_ready'])}[/bold];"
+        f" fullest day {_day(totals['busiest_day'])} ({totals['busiest_day_minutes']} minutes of work)"
     )
+
+
+def _day(text: str | None) -> str:
+    """Return an ISO date as `Wed 10 Feb 2027`."""
+    return f"{dt.date.fromisoformat(text):%a %-d %b %Y}" if text else "never"

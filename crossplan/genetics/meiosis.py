@@ -9,8 +9,9 @@ Rules, each once:
   the tip of an arm uncovered, an element there can leave its homologue: `leaks` says which and how often at most.
 * X and Y do not recombine. An attached-X is one homologue and moves as one.
 * Elements at one place (same landing site, same gene, same map position) are alleles: never on one gamete together.
-* An element whose place nobody knows is taken to be unlinked to all others (a stated assumption, the worst case
-  for purity; `unplaced` lists them).
+* An element whose place nobody knows has no map distance to anything: it is taken to stay on its homologue as written,
+  with the nearest element whose place is known (a stated assumption; `unplaced` lists such elements, so that plans
+  carry the caution).
 
 Shares are `Fraction` as long as no map distance enters, `float` otherwise.
 """
@@ -116,7 +117,7 @@ def recombines(pair: Pair, chromosome: str, sex: str) -> bool:
         return False
     if any(h.balancer is not None or h.is_y or h.is_compound for h in pair):
         return False
-    return len(differing_loci(pair)) > 1
+    return sum(locus.position_cM is not None for locus in differing_loci(pair)) > 1
 
 
 @cache
@@ -138,7 +139,7 @@ def gametes(pair: Pair, chromosome: str, sex: str, map_function: MapFunction = "
 
 
 def _recombinant_gametes(pair: Pair, to_fraction: Callable[[float], float]) -> tuple[Gamete, ...]:
-    loci = differing_loci(pair)
+    loci = _placed(differing_loci(pair))
     shared = [e for e in pair[0].elements if e in pair[1].elements]
     fractions = [_between(a, b, to_fraction) for a, b in zip(loci, loci[1:], strict=False)]
     # walk along the chromosome: for each locus, the gametes so far that end on the first or the second homologue
@@ -158,19 +159,33 @@ def _recombinant_gametes(pair: Pair, to_fraction: Callable[[float], float]) -> t
     return tuple(Gamete(homologue, share) for homologue, share in ordered if share)
 
 
+def _placed(loci: tuple[_Locus, ...]) -> tuple[_Locus, ...]:
+    """Return the loci of known place; what has none goes with the first of them."""
+    known = [locus for locus in loci if locus.position_cM is not None]
+    lost = [locus for locus in loci if locus.position_cM is None]
+    first = known[0]
+    with_lost = _Locus(
+        first.position_cM,
+        first.first + tuple(e for locus in lost for e in locus.first),
+        first.second + tuple(e for locus in lost for e in locus.second),
+    )
+    return (with_lost, *known[1:])
+
+
 def _between(a: _Locus, b: _Locus, to_fraction: Callable[[float], float]) -> Share:
-    if a.position_cM is None or b.position_cM is None:
-        return HALF
+    assert a.position_cM is not None
+    assert b.position_cM is not None
     return to_fraction(abs(b.position_cM - a.position_cM))
 
 
 def unplaced(pair: Pair, chromosome: str, sex: str) -> tuple[str, ...]:
-    """Return the symbols of elements that recombine here and whose place on the map is not known."""
-    if not recombines(pair, chromosome, sex):
+    """Return the symbols of elements of unknown place that might recombine here, were their place known."""
+    if sex != FEMALE or chromosome == "4" or any(h.balancer is not None or h.is_y or h.is_compound for h in pair):
         return ()
-    return tuple(
-        e.symbol for locus in differing_loci(pair) if locus.position_cM is None for e in locus.first + locus.second
-    )
+    loci = differing_loci(pair)
+    if len(loci) < 2:
+        return ()
+    return tuple(e.symbol for locus in loci if locus.position_cM is None for e in locus.first + locus.second)
 
 
 def leaks(pair: Pair, chromosome: str, sex: str) -> tuple[Leak, ...]:

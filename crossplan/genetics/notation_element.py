@@ -12,6 +12,7 @@ import re
 from collections.abc import Mapping
 from dataclasses import dataclass, replace
 from enum import IntEnum
+from functools import lru_cache
 from typing import Final
 
 from crossplan.errors import Problem, Severity
@@ -23,6 +24,7 @@ from crossplan.genetics.notation_insertion import (
     OLD_BRACKETS,
     TRANSPOSON,
     Place,
+    component_of,
     empty_site,
     frt,
     insertion,
@@ -162,7 +164,7 @@ class WordReader:
         return None if entry is None else self._balancer_word(entry, item)
 
     def _balancer_word(self, entry: BalancerEntry, item: Item) -> Word:
-        notes = ()
+        notes: tuple[Problem, ...] = ()
         if item.text != entry.name:
             notes = (self._say(item, "spelling", f"{item.text} is read as {entry.name}"),)
         element = Element(entry.name, Kind.BALANCER, entry.chromosome, traits=entry.traits)
@@ -294,7 +296,7 @@ class WordReader:
         if not name:
             return self._fault(item, "empty-construct", "no name stands behind the = in the braces",
                                "write the name of the construct")  # fmt: skip
-        standard = "" if notes else text
+        standard = f"{groups['letter']}{{{content}}}{place}"
         return self._insertion(name, place, item, markers, standard, notes)
 
     def _old_brackets(self, item: Item) -> tuple[re.Match[str] | None, tuple[Problem, ...]]:
@@ -429,15 +431,16 @@ class WordReader:
         text = item.text
         if text[-1] == "]":
             return self._bracketed(item)
-        if "[" not in text and self.catalogue.marker(text) is not None:
-            return [self._allele(text, "", item, text)]
         round_one = _IN_ROUND.fullmatch(text)
         if round_one is not None and self.catalogue.marker(round_one["gene"]) is not None:
             return [self._spelt_allele(round_one["gene"], round_one["allele"], item)]
         match = _RUN_ON.fullmatch(text)
-        if match is None or _LINE_CODE.fullmatch(text) or self.catalogue.marker(match["gene"]) is None:
-            return self._known_allele(item)
-        return [self._spelt_allele(match["gene"], match["allele"], item)]
+        if match is not None and not _LINE_CODE.fullmatch(text) and self.catalogue.marker(match["gene"]) is not None:
+            return [self._spelt_allele(match["gene"], match["allele"], item)]
+        exact = self._known_allele(item)
+        if exact is None and self.catalogue.marker(text) is not None:
+            return [self._allele(text, "", item, text)]
+        return exact
 
     def _spelt_allele(self, gene: str, allele: str, item: Item) -> Word:
         return self._allele(gene, allele, item, f"{gene}[{allele}]")
@@ -446,8 +449,7 @@ class WordReader:
         """Read an allele whose superscript was lost, if the catalogue has just that one: `wa`, `snX2`."""
         for cut in range(1, min(len(item.text), 5)):
             gene, allele = item.text[:cut], item.text[cut:]
-            entry = self.catalogue.marker(gene, allele)
-            if entry is not None and entry.source and (gene, allele) in _exact_alleles(self.catalogue):
+            if (gene, allele) in _exact_alleles(self.catalogue):
                 return [self._spelt_allele(gene, allele, item)]
         return None
 
@@ -472,7 +474,7 @@ class WordReader:
         """Tell `tub-GAL80[ts]`, a construct, from an allele of a gene."""
         if self.catalogue.marker(gene, allele) is not None or self.catalogue.locus(gene) is not None:
             return False
-        return "\\" not in gene and self.catalogue.component(text) is not None
+        return "\\" not in gene and component_of(self.catalogue, text) is not None
 
     def _allele(self, gene: str, allele: str, item: Item, symbol: str) -> Word:
         marker = self.catalogue.marker(gene, "*" if allele == "-" else allele)
@@ -515,7 +517,7 @@ class WordReader:
         fault = self._no_name(item)
         if fault is not None:
             return fault
-        component = self.catalogue.component(text)
+        component = component_of(self.catalogue, text)
         if component is not None:
             traits = self.catalogue.insertion_traits((), component)
             return Word(Element(text, Kind.INSERTION, component=component.cls, traits=traits))
@@ -558,5 +560,6 @@ def _said(chromosome: str, because: str) -> tuple[Evidence, ...]:
     return (Evidence(chromosome, because),) if chromosome else ()
 
 
+@lru_cache(maxsize=8)
 def _exact_alleles(catalogue: Catalogue) -> frozenset[tuple[str, str]]:
     return frozenset((m.gene, m.allele) for m in catalogue.markers() if m.allele)

@@ -11,6 +11,7 @@ from __future__ import annotations
 import re
 from collections.abc import Sequence
 from dataclasses import dataclass
+from functools import lru_cache
 from typing import Final
 
 from crossplan.genetics.catalogue import DIVISIONS, USUAL_INSERTION_MARKER, Catalogue, ComponentEntry, SiteEntry
@@ -50,6 +51,12 @@ class Place:
     hint_only: bool = False
 
 
+@lru_cache(maxsize=8192)
+def component_of(catalogue: Catalogue, name: str) -> ComponentEntry | None:
+    """Return the class of a transgene by its short name; names recur all through a stock list."""
+    return catalogue.component(name)
+
+
 def markers_and_name(content: str) -> tuple[tuple[str, ...], str]:
     """Return the markers and the name of a construct: of `y[+t7.7] w[+mC]=AD-K12` the two and `AD-K12`."""
     depth = 0
@@ -84,7 +91,7 @@ def insertion(
         catalogue: for sites, component classes and the map.
     """
     site = catalogue.site(place) if place else None
-    component = catalogue.component(name)
+    component = component_of(catalogue, name)
     where = place_of(place, site, catalogue)
     symbol = f"{name}@{site.name if site else place}" if place else name
     element = Element(
@@ -146,7 +153,7 @@ def frt(text: str, catalogue: Catalogue) -> tuple[Element, Place] | None:
     arm, band = FRT_PLACES[match["name"].upper()]
     chromosome = CHROMOSOME_OF_ARM[arm]
     cM = catalogue.band_to_cM(arm, band)
-    component = catalogue.component(text)
+    component = component_of(catalogue, text)
     traits = catalogue.insertion_traits((), component) if component is not None else Traits()
     element = Element(text, Kind.INSERTION, chromosome, position_cM=cM, component=component.cls if component else "",
                       traits=traits)  # fmt: skip

@@ -103,6 +103,8 @@ class _Joiner:
 
     def _belongs(self, item: Item, before: Item) -> bool:
         """Join the item to the symbol before it if it is a part of that."""
+        if "," in self.text[before.end : item.start]:
+            return False
         if self._is_site_of(before, item):
             self._extend(before, f"@{item.text}", item)
         elif before.text[-1] == "-" and not _NULL_ALLELE.fullmatch(before.text) and item.text[0].isalnum():

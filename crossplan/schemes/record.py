@@ -175,7 +175,7 @@ def _cautions(cross: Cross) -> list[str]:
     ]
     if cross.progeny.unplaced:
         names = ", ".join(dict.fromkeys(cross.progeny.unplaced))
-        found.append(f"the map position of {names} is not known; shares assume that it is unlinked")
+        found.append(f"the map position of {names} is not known; recombination with it is not counted")
     for parent in (cross.mother, cross.father):
         if isinstance(parent, StockParent) and not parent.pick_is_pure:
             found.append(

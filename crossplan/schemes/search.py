@@ -27,6 +27,7 @@ from typing import TYPE_CHECKING
 from crossplan.genetics.appearance import WHITE, Observer
 from crossplan.genetics.chromosome import FEMALE, MALE, PAIRS, Sex
 from crossplan.genetics.fly import Fly, Homologue, make_pair
+from crossplan.genetics.meiosis import gametes
 from crossplan.genetics.survival import NO_GENES, cause_of_death, is_fertile, sex_of, x_dose
 from crossplan.schemes.forms import Form, ReducedShelf
 from crossplan.schemes.segregation import (
@@ -204,7 +205,7 @@ class _Search:
         """Add every fly of `level` to what was found; return False when the budget does not allow it.
 
         With `last`, the flies are bred to be parents of the last cross only, and those that no last cross can
-        use are left out: a parent must have, on each chromosome, a homologue that the wanted flies may carry.
+        use are left out: a parent must give, on each chromosome, a gamete that the wanted flies may carry.
         With `carriers`, only crosses of which a parent carries something wanted are made.
         """
         mothers, fathers = self.parents(level - 1)
@@ -259,7 +260,8 @@ class _Search:
     def _useful(self, k: int, number: int) -> bool:
         """Return whether a parent with this pair can give a gamete that the wanted flies may carry."""
         table = self.tables[k]
-        return any(may_be_given(self.wish, table.chromosome, h) for h in table.pairs[number])
+        made = gametes(table.pairs[number], table.chromosome, FEMALE)
+        return any(may_be_given(self.wish, table.chromosome, g.homologue) for g in made)
 
     def _keep_cost(self, child: State, parts: tuple[Child, ...]) -> float:
         share = total_share(tuple(c.share for c in parts))

@@ -11,6 +11,7 @@ from collections.abc import Callable, Iterable, Iterator
 from dataclasses import dataclass
 
 from crossplan.errors import Severity
+from crossplan.genetics.appearance import Means, Observer
 from crossplan.genetics.catalogue import Catalogue, default_catalogue
 from crossplan.genetics.chromosome import PAIRS
 from crossplan.genetics.element import Element
@@ -244,12 +245,13 @@ def check_duplicates(shelf: Shelf, today: dt.date, catalogue: Catalogue) -> Iter
 
 def check_neighbours(shelf: Shelf, today: dt.date, catalogue: Catalogue) -> Iterator[Finding]:
     """Two balancer stocks in one tray that differ in genotype and show the same dominant signs: a swap goes unseen."""
+    observer = Observer(catalogue, Means(pupae=True))
     trays: dict[tuple[str, frozenset[str]], list[tuple[Stock, Fly]]] = {}
     for stock, fly in _flies(shelf):
         balanced = sum(any(h.balancer is not None for h in pair) for pair in fly.pairs)
         if stock.tray and balanced > 1:
             dominant = frozenset(sign for e in fly.elements() for sign in e.traits.dominant)
-            trays.setdefault((stock.tray, dominant), []).append((stock, fly))
+            trays.setdefault((stock.tray, observer.signs(fly) & dominant), []).append((stock, fly))
     for (tray, _), stocks in trays.items():
         (first, fly), *others = stocks
         for other, other_fly in others:

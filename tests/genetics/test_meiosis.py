@@ -56,10 +56,11 @@ class TestGametes:
         pair = make_pair(Homologue.of(AD), Homologue.of(OTHER))
         assert set(shares(pair)) == {("AD@attP40",), ("UAS@attP40",)}
 
-    def test_an_element_of_unknown_place_is_taken_to_be_unlinked_and_named(self) -> None:
+    def test_an_element_of_unknown_place_stays_where_it_is_written_and_is_named(self) -> None:
         pair = make_pair(Homologue.of(AD), Homologue.of(LOST))
-        assert all(g.share == Fraction(1, 4) for g in gametes(pair, "2", "female"))
+        assert [g.share for g in gametes(pair, "2", "female")] == [Fraction(1, 2)] * 2
         assert unplaced(pair, "2", "female") == ("UAS-lost",)
+        assert unplaced(pair, "2", "male") == ()
 
     def test_shared_elements_stay(self) -> None:
         pair = make_pair(Homologue.of(UAS, AD), Homologue.of(UAS))

@@ -40,6 +40,8 @@ BALANCERS = {"CyO", "TM3", "TM6B"}
 MARKERS = {"Sco", "Dr", "If"}
 #: insertions with mini-white, and the place of each; two at one place are never on one homologue
 PLACE = {"A": "attP40", "B": "attP40", "C": "VK37", "D": "attP2", "E": "attP2", "U": "attP18"}
+#: elements whose place on the map nobody knows: they stay on their homologue
+UNPLACED = frozenset({"l2", "l3"})
 #: signs that hide eye pigment on the fly that shows them
 HIDES_PIGMENT = {"tiny eyes"}
 
@@ -58,6 +60,8 @@ def eggs_or_sperm(two: PairOf, female: bool) -> frozenset[Chromosome]:
     if not female or (a | b) & BALANCERS:
         return frozenset(two)
     same = a & b
+    if len({PLACE.get(e, e) for e in (a | b) - same - UNPLACED}) < 2:
+        return frozenset(two)
     loose = sorted((a | b) - same)
     made = set()
     for taken in product((False, True), repeat=len(loose)):
