@@ -14,7 +14,7 @@ Functions that write do so whole or not at all. Nothing here prints or reads the
 from __future__ import annotations
 
 import datetime as dt
-from collections.abc import Callable, Iterable, Sequence
+from collections.abc import Callable, Iterable, Mapping, Sequence
 from dataclasses import dataclass
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
@@ -390,22 +390,26 @@ def _assemble(
     targets, steps = write_records(answers, screen, planner, {s.name: s.location for s in shelf.stocks})
     tasks: list[TaskRecord] = []
     status = ""
+    ages: dict[str, tuple[int, int]] = {}
     if with_calendar and steps:
         ages = {a.asked.wanted.name: a.asked.wanted.age_days for a in answers if not a.asked.wanted.stock}
         fed = frozenset(a.asked.wanted.name for a in answers if planner.needs(a.asked).retinal)
         tasks, schedule = put_on_calendar(steps, targets, ages, fed, screen, start)
         status = f"{schedule.status}, gap {100 * schedule.gap:.1f} %" if schedule.gap else schedule.status
     plan = plan_of(request, shelf, targets, steps, tasks, remarks, start, status, __version__)
-    _check(plan, planner, shelf)
+    _check(plan, planner, shelf, ages)
     return plan
 
 
-def _check(plan: Plan, planner: ScreenPlanner, shelf: Shelf) -> None:
-    """Replay the plan by genetics alone before it is handed out."""
+def _check(plan: Plan, planner: ScreenPlanner, shelf: Shelf, ages: Mapping[str, tuple[int, int]]) -> None:
+    """Replay the plan by genetics alone, and check its days by the rules of the trade, before it is handed out."""
     from crossplan.errors import PlanCheckError
     from crossplan.plan.replay import replay
+    from crossplan.schedule.check import check_schedule
 
     faults = replay(plan, planner.observer_of, shelf.elements())
+    if plan.tasks:
+        faults += check_schedule(plan, planner.screen, ages)
     if faults:
         raise PlanCheckError(
             f"crossplan's own check refuted the plan: {faults[0].message}",

@@ -80,9 +80,7 @@ class Reading:
         return {sex: fly for sex, fly in both.items() if fly is not None}
 
 
-def read_genotype(
-    text: str, catalogue: Catalogue | None = None, known: Mapping[str, Element] | None = None
-) -> Reading:
+def read_genotype(text: str, catalogue: Catalogue | None = None, known: Mapping[str, Element] | None = None) -> Reading:
     """Return what was understood of a genotype; never raises, whatever the text.
 
     Args:
@@ -125,8 +123,14 @@ class _Reader:
     def _wild_type(self, name: str) -> Reading:
         if name != "+":
             self.problems.append(
-                problem("wild-type-stock", Severity.NOTE, f"{name} is read as wild type", self.cleaned.text, 0,
-                        len(self.cleaned.text))  # fmt: skip
+                problem(
+                    "wild-type-stock",
+                    Severity.NOTE,
+                    f"{name} is read as wild type",
+                    self.cleaned.text,
+                    0,
+                    len(self.cleaned.text),
+                )  # fmt: skip
             )
         return self._flies({})
 
@@ -153,9 +157,7 @@ class _Reader:
         return tuple(dict.fromkeys(moved))
 
     def _error(self, code: str, message: str, half: Half, hint: str) -> None:
-        self.problems.append(
-            problem(code, Severity.ERROR, message, self.cleaned.text, half.start, half.end, hint)
-        )
+        self.problems.append(problem(code, Severity.ERROR, message, self.cleaned.text, half.start, half.end, hint))
 
     # -- fields and homologues -----------------------------------------------------------------------------------
 
@@ -165,9 +167,13 @@ class _Reader:
             symbols = join_items(half.items, self.catalogue, self.cleaned.text)
             self.problems += symbols.problems
             halves.append(self._half(half, symbols, index, len(field.halves) == 1))
-            if symbols.floating is not None and len(field.halves) == 1:
-                balancer = Half((symbols.floating,), symbols.floating.start, symbols.floating.end)
-                halves.append(self._half(balancer, Symbols([symbols.floating]), index, False))
+            if half.items and not symbols.items and not symbols.or_y:
+                self._error(
+                    "remark-only", "nothing but a remark stands here", half, "write + for a wild-type chromosome"
+                )
+            if symbols.floating and len(field.halves) == 1:
+                across = Half(symbols.floating, symbols.floating[0].start, symbols.floating[-1].end)
+                halves.append(self._half(across, Symbols(list(symbols.floating)), index, False))
         return ReadField(field, tuple(halves), index)
 
     def _half(self, half: Half, symbols: Symbols, index: int, alone: bool) -> ReadHalf:
@@ -236,8 +242,14 @@ class _Reader:
                         "perhaps a semicolon is meant after the +; else take the + out")  # fmt: skip
         else:
             self.problems.append(
-                problem("plus-left-out", Severity.NOTE, "the + beside other symbols is read as the wild-type form of a"
-                        " gene across from it", self.cleaned.text, half.start, half.end)  # fmt: skip
+                problem(
+                    "plus-left-out",
+                    Severity.NOTE,
+                    "the + beside other symbols is read as the wild-type form of a gene across from it",
+                    self.cleaned.text,
+                    half.start,
+                    half.end,
+                )  # fmt: skip
             )
 
     # -- results -------------------------------------------------------------------------------------------------
@@ -264,9 +276,15 @@ class _Reader:
                         "write all fields, with + for wild type: +; ...; + for chromosome 2")  # fmt: skip
             return self._refused()
         self.problems.append(
-            problem("no-chromosome", Severity.WARNING, "read as elements only: nothing says which chromosome they are on",
-                    self.cleaned.text, where.start, where.end,
-                    "write all fields, with + for wild type, or a label such as (II)")  # fmt: skip
+            problem(
+                "no-chromosome",
+                Severity.WARNING,
+                "read as elements only: nothing says which chromosome they are on",
+                self.cleaned.text,
+                where.start,
+                where.end,
+                "write all fields, with + for wild type, or a label such as (II)",
+            )  # fmt: skip
         )
         homologues = [homologue_of(half) for half in field.halves]
         elements = tuple(dict.fromkeys(e for h in homologues for e in h.elements))

@@ -33,21 +33,36 @@ from crossplan.genetics.notation_insertion import (
 )
 from crossplan.genetics.notation_split import Item
 
-_LABEL = re.compile(r"(?P<base>.+)\((?:chr(?:omosome)?\.? ?)?(?P<name>X|[1-5](?:L|R|LR)?|I|II|III|IV|V)\)", re.IGNORECASE)
-_CHROMOSOME_OF_LABEL: Final = {"x": "X", "1": "X", "i": "X", "2": "2", "ii": "2", "3": "3", "iii": "3", "4": "4", "iv": "4"}
+_LABEL = re.compile(
+    r"(?P<base>.+)\((?:chr(?:omosome)?\.? ?)?(?P<name>X|[1-5](?:L|R|LR)?|I|II|III|IV|V)\)", re.IGNORECASE
+)
+_CHROMOSOME_OF_LABEL: Final = {
+    "x": "X",
+    "1": "X",
+    "i": "X",
+    "2": "2",
+    "ii": "2",
+    "3": "3",
+    "iii": "3",
+    "4": "4",
+    "iv": "4",
+}
 _AT = re.compile(r"(?P<name>[^@]+)@(?P<place>[^@]+)")
 _IN_PARENTHESES = re.compile(r"(?P<name>.*[^(])\((?P<place>(?:[^()]|\([^()]*\))*)\)")
 _ABERRATION = re.compile(r"(?P<kind>Df|Dp|In|T|Tp|R|C|Ab)\((?P<where>[^()]*)\)(?P<name>.+)")
 _ARM = re.compile(r"(?P<chromosome>[1-4XY])(?:L|R|LR|h)?")
 _ALLELE = re.compile(r"(?P<gene>[^\[\]{}@]+?)\[(?P<allele>[^\[\]]*(?:\[[^\[\]]*\][^\[\]]*)*)\]")
 _IN_ROUND = re.compile(r"(?P<gene>[A-Za-z]{1,5})\((?P<allele>\d{1,4}|\*)\)")
-_RUN_ON = re.compile(r"(?P<gene>[A-Za-z]+?)(?P<allele>\d{1,4}(?:[a-z]{1,2}\d{0,2})?|\*|-|\+)")
+_RUN_ON = re.compile(r"(?P<gene>[A-Za-z]+?)(?P<allele>[1-9]\d{0,3}(?:[a-z]{1,2}\d{0,2})?|\*|-|\+)")
 _LINE_CODE = re.compile(r"[A-Z]\d{2}[A-H]\d{2}")
 _YELLOW_WHITE = re.compile(r"(?P<y>y\d{0,2}\*?)(?P<w>w(?:\d{1,4}(?:[a-z]\d{1,2})?|\*|-)?)(?P<v>[vf]\d{0,2})?")
 _Y_FORMS = re.compile(r"(?:(?P<left>[A-Za-z]+\[[^\[\]]+\])?Y(?P<right>[A-Za-z]+\[[^\[\]]+\])?|Dp\(\d;Y\)(?P<dp>\S*))")
-_MARKED_BALANCER = re.compile(r"(?P<balancer>CyO|SM5|SM6a|TM1|TM2|TM3|TM6B|TM6C|TM6)(?P<marker>Sb|Ser|Tb|Hu|Ubx|Cy|Roi|e)1?")
+_MARKED_BALANCER = re.compile(
+    r"(?P<balancer>CyO|SM5|SM6a|TM1|TM2|TM3|TM6B|TM6C|TM6)(?P<marker>Sb|Ser|Tb|Hu|Ubx|Cy|Roi|e)1?"
+)
 _BALANCER_START = re.compile(r"(?i)(?:C[YO0]|TM\d|FM\d|SM\d|MKR|MRK)")
 _LONGEST_BALANCER: Final = 8
+_MOST_REMEMBERED: Final = 20_000
 _CARRIED: Final = re.compile(r"(?i)gfp|yfp|rfp|cherry|tom|gal4|lacz|flp|uas|dsred")
 _STOCK_NUMBER = re.compile(r"(?:BDSC|DGRC|VDRC|DGGR)[:_# ]?\d{3,}")
 _GLUED_CROSS = re.compile(r"(?i)(?:dbd|ad|gal4)x(?:\d*x?uas|uas)")
@@ -93,6 +108,7 @@ class WordReader:
         self.catalogue = catalogue
         self.known = known
         self.text = text
+        self._memory = _memory_of(catalogue)
 
     def read(self, item: Item, balancer: Element | None = None) -> list[Word]:
         """Return the word or words (`yw` is two) that an item is.
@@ -101,6 +117,19 @@ class WordReader:
             item: the symbol as written.
             balancer: the balancer that stands before it on the homologue.
         """
+        if self.known:
+            return self._read(item, balancer)
+        key = (item.text, balancer.symbol if balancer is not None else "")
+        words = self._memory.get(key)
+        if words is None:
+            words = self._read(item, balancer)
+            if not any(w.problems for w in words):
+                if len(self._memory) >= _MOST_REMEMBERED:
+                    self._memory.clear()
+                self._memory[key] = words
+        return words
+
+    def _read(self, item: Item, balancer: Element | None) -> list[Word]:
         text = item.text
         if text == "+" or (text[0] == "+" and len(text) > 1 and text[1] in "[(" and text[-1] in "])"):
             return [Word(None, plus=True)]
@@ -353,15 +382,24 @@ class WordReader:
         problems = list(notes)
         if not markers and not element.component and element.traits.restores:
             problems.append(
-                self._say(item, "assumed-marker", f"{name} is taken to carry mini-white, as most insertions do",
-                          "write the standard form if it does not")  # fmt: skip
+                self._say(
+                    item,
+                    "assumed-marker",
+                    f"{name} is taken to carry mini-white, as most insertions do",
+                    "write the standard form if it does not",
+                )  # fmt: skip
             )
         if place and not where.because and "[" not in place:
             near = self.catalogue.near_sites(place)
             if near:
                 problems.append(
-                    self._say(item, "unknown-site", f"the catalogue has no landing site '{place}'",
-                              f"perhaps {near[0]}", Severity.WARNING)  # fmt: skip
+                    self._say(
+                        item,
+                        "unknown-site",
+                        f"the catalogue has no landing site '{place}'",
+                        f"perhaps {near[0]}",
+                        Severity.WARNING,
+                    )  # fmt: skip
                 )
         return Word(element, _evidence_of(where), tuple(problems))
 
@@ -493,7 +531,9 @@ class WordReader:
                 chromosome = "X" if numbered[1] == "1" else numbered[1]
         else:
             problems = (self._unknown(item, symbol),)
-        element = Element(symbol, Kind.ALLELE, chromosome, position_cM=locus.cM if locus else None, gene=gene, traits=traits)
+        element = Element(
+            symbol, Kind.ALLELE, chromosome, position_cM=locus.cM if locus else None, gene=gene, traits=traits
+        )
         return Word(element, _said(chromosome, f"the gene {gene}"), problems)
 
     def _unknown(self, item: Item, symbol: str) -> Problem:
@@ -539,6 +579,12 @@ class WordReader:
             return self._fault(item, "cross", f"'{text}' looks like a cross of two genotypes",
                                "write the two genotypes by themselves")  # fmt: skip
         return None
+
+
+@lru_cache(maxsize=8)
+def _memory_of(catalogue: Catalogue) -> dict[tuple[str, str], list[Word]]:
+    """Return the words that were read without a problem with this catalogue: symbols recur all through a list."""
+    return {}
 
 
 def _known_word(known: Element) -> Word:

@@ -38,6 +38,8 @@ class Flies:
 def homologue_of(half: ReadHalf, name: str = "") -> Homologue:
     """Return the homologue that was read, with its elements on chromosome `name`."""
     elements = [w.element for w in half.words if w.element is not None]
+    if not elements:
+        return WILD_TYPE
     return Homologue.of(*dict.fromkeys(_on(e, name) for e in elements))
 
 

@@ -93,13 +93,20 @@ def insertion(
     site = catalogue.site(place) if place else None
     component = component_of(catalogue, name)
     where = place_of(place, site, catalogue)
-    symbol = f"{name}@{site.name if site else place}" if place else name
+    symbol = _short(name, site.name if site else place, standard)
     element = Element(
         symbol, Kind.INSERTION, "" if where.hint_only else where.chromosome, site=site.name if site else "",
         position_cM=where.cM, component=component.cls if component else "", standard=standard,
         traits=insertion_traits(name, markers, site, component, catalogue),
     )  # fmt: skip
     return element, where
+
+
+def _short(name: str, place: str, standard: str) -> str:
+    """Return the short symbol: `AD-K12@attP40`; a name that holds a divider keeps its braces."""
+    if any(sign in name for sign in ";/,@ "):
+        return f"{standard.partition('{')[0] or 'P'}{{{name}}}{place}"
+    return f"{name}@{place}" if place else name
 
 
 def insertion_traits(
@@ -116,7 +123,12 @@ def insertion_traits(
     of_site = site.carries if site is not None else ()
     if not carried and not of_site and component is None:
         return Traits()
-    return catalogue.insertion_traits((*carried, *of_site), component)
+    return _traits_of(catalogue, (*carried, *of_site), component)
+
+
+@lru_cache(maxsize=1024)
+def _traits_of(catalogue: Catalogue, markers: tuple[str, ...], component: ComponentEntry | None) -> Traits:
+    return catalogue.insertion_traits(markers, component)
 
 
 def empty_site(site: SiteEntry, catalogue: Catalogue) -> Element:

@@ -33,7 +33,7 @@ class Symbols:
     items: list[Item] = field(default_factory=list)
     problems: list[Problem] = field(default_factory=list)
     or_y: bool = False
-    floating: Item | None = None
+    floating: tuple[Item, ...] = ()
 
 
 def join_items(items: Sequence[Item], catalogue: Catalogue, text: str) -> Symbols:
@@ -144,22 +144,32 @@ class _Joiner:
             self._extend(before, f"({inner})", item)
         elif inner == "Y":
             self.out.or_y = True
-        elif self.catalogue.balancer(inner.lstrip("/ ")) is not None:
-            self._floating(Item(inner.lstrip("/ "), item.start, item.end), before)
+        elif self._starts_with_balancer(inner):
+            self._floating(item, before)
         elif inner.lower().startswith("or "):
             self._error("choice", f"'{item.text}' leaves open which genotype is meant", item,
                         "write one row for each genotype")  # fmt: skip
         else:
             self._note("remark", f"'{item.text}' is taken for a remark", item)
 
-    def _floating(self, balancer: Item, before: Item | None) -> None:
-        self._problem("floating-balancer", Severity.WARNING, f"{balancer.text} in parentheses is read as present in"
-                      " these flies; others of the stock lack it", balancer,
+    def _starts_with_balancer(self, inner: str) -> bool:
+        words = inner.lstrip("/ ").replace(",", " ").split()
+        return bool(words) and self.catalogue.balancer(words[0]) is not None
+
+    def _floating(self, item: Item, before: Item | None) -> None:
+        """Take `(/CyO)` or `(TM6B, Tb)` for the other homologue of some of the flies."""
+        begin = item.start + len(item.text) - len(item.text[1:].lstrip("/ "))
+        words = [
+            Item(match.group(), begin + match.start(), begin + match.end())
+            for match in re.finditer(r"[^ ,]+", self.text[begin : item.end - 1])
+        ]
+        self._problem("floating-balancer", Severity.WARNING, f"{words[0].text} in parentheses is read as present in"
+                      " these flies; others of the stock lack it", item,
                       "write the genotype of the flies that you use")  # fmt: skip
         if before is None:
-            self.out.items.append(balancer)
+            self.out.items += words
         else:
-            self.out.floating = balancer
+            self.out.floating = tuple(words)
 
     def _square(self, item: Item, before: Item) -> None:
         inner = item.text[1:-1].strip()

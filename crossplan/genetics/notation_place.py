@@ -75,7 +75,12 @@ class ReadField:
         for half in self.halves:
             balanced = half.has_balancer
             for word in half.words:
-                if balanced and word.kind is not Kind.BALANCER and word.kind is not Kind.ABERRATION and not _sited(word):
+                if (
+                    balanced
+                    and word.kind is not Kind.BALANCER
+                    and word.kind is not Kind.ABERRATION
+                    and not _sited(word)
+                ):
                     continue
                 for one in word.evidence:
                     if one.rank is rank:
@@ -122,9 +127,7 @@ class Placer:
         return any(p.severity is Severity.ERROR for p in self.problems)
 
     def _say(self, code: str, severity: Severity, message: str, where: ReadField, hint: str = "") -> None:
-        self.problems.append(
-            problem(code, severity, message, self.text, where.field.start, where.field.end, hint)
-        )
+        self.problems.append(problem(code, severity, message, self.text, where.field.start, where.field.end, hint))
 
     def _error(self, code: str, message: str, where: ReadField, hint: str) -> None:
         self._say(code, Severity.ERROR, message, where, hint)
@@ -134,8 +137,15 @@ class Placer:
     def _counts_fit(self) -> bool:
         if not self.fields:
             self.problems.append(
-                problem("empty", Severity.ERROR, "nothing but semicolons is written here", self.text, 0, len(self.text),
-                        "write + for a wild-type chromosome")  # fmt: skip
+                problem(
+                    "empty",
+                    Severity.ERROR,
+                    "nothing but semicolons is written here",
+                    self.text,
+                    0,
+                    len(self.text),
+                    "write + for a wild-type chromosome",
+                )  # fmt: skip
             )
         elif len(self.fields) > len(PAIRS):
             self._error("five-fields", f"{len(self.fields)} fields are written; the fly has four pairs (X, 2, 3, 4)",
@@ -307,7 +317,7 @@ class Placer:
     def _way(self, field: ReadField, name: str) -> str:
         """Return the field written so that it is surely that chromosome."""
         written = self.text[field.field.start : field.field.end].strip()
-        places = ["+"] * 3
+        places = ["+"] * (_FOURTH if name == "4" else 3)
         if field.index == 1:
             places[0] = "..."
         places[PAIRS.index(name)] = written

@@ -61,6 +61,8 @@ class Days:
     clear: int
     collect: tuple[int, ...]
     discard: int
+    #: day of the first flies: the oldest ones collected may have emerged then
+    born_from: int
     expand: int | None = None
     stock_collect: tuple[int, ...] = ()
 
@@ -95,7 +97,9 @@ class Biology:
         )
 
 
-def days_of(culture: Culture, set_up: int, biology: Biology, laying_days: int, week: WorkWeek) -> Days | None:
+def days_of(
+    culture: Culture, set_up: int, biology: Biology, laying_days: int, week: WorkWeek, most: int = MOST_COLLECTIONS
+) -> Days | None:
     """Return the days of a culture set up on that day; None when a rule of the trade cannot be kept.
 
     Args:
@@ -104,13 +108,15 @@ def days_of(culture: Culture, set_up: int, biology: Biology, laying_days: int, w
         biology: of its temperature.
         laying_days: days for which the parents lay.
         week: the working days.
+        most: working days of collection at most.
     """
     clear = week.on_or_after(set_up + min(laying_days, biology.clear_by))
     if clear is None or clear > set_up + biology.clear_by:
         return None
     first = set_up + biology.first_flies
     stop = set_up + biology.stop_collecting
-    most = MOST_COLLECTIONS if culture.age_span is None else min(MOST_COLLECTIONS, culture.age_span + 1)
+    if culture.age_span is not None:
+        most = min(most, culture.age_span + 1)
     collect = _collections(week, first, stop, most, culture.age_span)
     if collect is None:
         return None
@@ -124,14 +130,14 @@ def days_of(culture: Culture, set_up: int, biology: Biology, laying_days: int, w
         if found is None:
             return None
         expand, stock_days = found
-    return Days(set_up, clear, collect, discard, expand, stock_days)
+    return Days(set_up, clear, collect, discard, first, expand, stock_days)
 
 
 def _collections(week: WorkWeek, first: int, stop: int, most: int, age_span: int | None) -> tuple[int, ...] | None:
     """Return the working days of collection: the first ones after the first flies, close enough for one age group."""
     days = week.between(first, stop)[:most]
     if age_span is not None and days:
-        days = tuple(d for d in days if d - days[0] <= age_span)
+        days = tuple(d for d in days if d - first <= age_span)
     # flies come over several days: a window that opens long after the first flies misses most of them
     if len(days) < min(FEWEST_COLLECTIONS, most) or days[0] - first > 3:
         return None

@@ -55,7 +55,8 @@ def put_on_calendar(
 
 
 def _assays(targets: Sequence[TargetRecord], ages: Mapping[str, tuple[int, int]], fed: frozenset[str]) -> list[Assay]:
-    feed = math.ceil(retinal_feeding().least_days)
+    # food is changed in the afternoon and flies are tested in the morning: a whole day more than the least
+    feed = math.floor(retinal_feeding().least_days) + 1
     rest = math.ceil(anaesthesia_gap_days())
     return [
         Assay(
@@ -111,8 +112,17 @@ def _fill_targets(
             and target.scheme
             and {in_vials_of[s] for s in target.scheme} & set(schedule.unplaced)
         ):
-            target.cautions.append("no days could be found for its crosses within the calendar's horizon")
+            target.cautions.append(
+                "no days could be found for its crosses: check ages, working days, temperature and rig limit"
+            )
+        limit = week.rig_flies_per_day
+        if limit is not None and target.flies > limit and target.target in schedule.assay:
+            target.cautions.append(f"{target.flies} flies are more than the rig tests in a day ({limit}): spread them")
         if target.target not in schedule.assay:
+            if target.status == "planned" and target.due is not None:
+                target.cautions.append(
+                    f"no day could be given to it, so whether it is due in time ({target.due}) is open"
+                )
             continue
         first, last = schedule.windows[target.target]
         target.assay_date = week.date(schedule.assay[target.target]).isoformat()

@@ -15,8 +15,8 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from typing import Any, Literal
 
-from crossplan.schedule.culture import Biology, Culture, Days, days_of, fits
-from crossplan.schedule.week import WorkWeek
+from crossplan.schedule.culture import MOST_COLLECTIONS, Biology, Culture, Days, days_of, fits
+from crossplan.schedule.week import HORIZON_DAYS, WorkWeek
 
 #: deterministic effort for each objective, in the solver's own units (about seconds on a usual machine)
 EFFORT = (2.0, 1.5)
@@ -62,7 +62,7 @@ class Late:
 class Schedule:
     """The days that were chosen. `gap` is how far the fullest day may be from the best possible (0: proved best)."""
 
-    status: Literal["optimal", "feasible", "nothing to plan"]
+    status: Literal["optimal", "feasible", "nothing to plan", "no days found"]
     gap: float
     days: Mapping[str, Days]
     assay: Mapping[str, int]
@@ -124,11 +124,22 @@ class _Solver:
         self.assay_picks: dict[str, list[tuple[int, Any]]] = {}
 
     def _options(self, culture: Culture, first: int, last: int) -> list[Days]:
-        made = (
-            days_of(culture, d, self.biologies[culture.step], self.laying_days, self.week)
-            for d in self.week.between(first, last)
-        )
+        made = (self._days(culture, d) for d in self.week.between(first, last))
         return [d for d in made if d is not None]
+
+    def _days(self, culture: Culture, set_up: int) -> Days | None:
+        """Return the days with the most collections after which every assay still has a day."""
+        assays = [a for a in self.assays if a.vials_of == culture.step]
+        for most in range(MOST_COLLECTIONS, 0, -1):
+            made = days_of(culture, set_up, self.biologies[culture.step], self.laying_days, self.week, most)
+            if made is not None and all(self._assay_days(a, made) for a in assays):
+                return made
+        return None
+
+    def _assay_days(self, assay: Assay, made: Days) -> tuple[int, ...]:
+        """Return the working days on which flies of that culture are of the age asked for, rested and fed."""
+        low, high = assay.age_days
+        return self.week.between(made.last + max(low, assay.feed_days, assay.rest_days), made.born_from + high)
 
     def _earliest(self, cultures: Sequence[Culture]) -> dict[str, Days]:
         """Return the earliest days of each culture, one after the other; those that find none are left out."""
@@ -144,7 +155,15 @@ class _Solver:
 
     def _last_day(self) -> int:
         """Return the last day on which anything need be set up: some weeks of slack beyond the earliest plan."""
-        return max((d.set_up for d in self.earliest.values()), default=0) + 21
+        return max((d.set_up for d in self.earliest.values()), default=0) + 21 + self._rig_days()
+
+    def _rig_days(self) -> int:
+        """Return how many days the rig needs for all flies, days off included."""
+        limit = self.week.rig_flies_per_day
+        if limit is None:
+            return 0
+        full = -(-2 * sum(min(a.flies, limit) for a in self.assays) // limit)
+        return -(-full * HORIZON_DAYS // max(len(self.week.days), 1))
 
     def _choice(self, culture: Culture) -> _Choice:
         options = self._options(culture, self.earliest[culture.step].set_up, self.last_day)
@@ -174,7 +193,8 @@ class _Solver:
         solver.parameters.max_deterministic_time = EFFORT[0]
         self.model.minimize(first)
         status = solver.solve(self.model)
-        assert status in (self.cp.OPTIMAL, self.cp.FEASIBLE), "every culture has a day by itself"
+        if status not in (self.cp.OPTIMAL, self.cp.FEASIBLE):
+            return Schedule("no days found", 0.0, {}, {}, {}, (), tuple(self.cultures))
         proved = status == self.cp.OPTIMAL
         self.model.add(first <= round(solver.objective_value))
         self._hint(solver)
@@ -204,10 +224,9 @@ class _Solver:
 
     def _add_assay(self, assay: Assay) -> tuple[list[Any], Any]:
         choice = self.choices[assay.vials_of]
-        low, high = assay.age_days
         picks: dict[int, Any] = {}
         for option, pick in zip(choice.options, choice.picks, strict=True):
-            days = self.week.between(option.last + max(low, assay.feed_days, assay.rest_days), option.first + high)
+            days = self._assay_days(assay, option)
             allowed = []
             for day in days:
                 if day not in picks:
@@ -266,7 +285,7 @@ class _Solver:
             low, high = assay.age_days
             made = days[assay.vials_of]
             assay_days[assay.target] = day
-            windows[assay.target] = (made.last + max(low, assay.feed_days, assay.rest_days), made.first + high)
+            windows[assay.target] = (made.last + max(low, assay.feed_days, assay.rest_days), made.born_from + high)
             if assay.due is not None and self.week.date(day) > assay.due:
                 late.append(Late(assay.target, assay.due, self.week.date(day)))
         return Schedule(status, round(gap, 4), days, assay_days, windows, tuple(late), self.unplaced)

@@ -14,6 +14,13 @@ from crossplan.schedule.solve import MINUTES_PER_ASSAY_FLY, MINUTES_PER_VIAL, As
 from crossplan.schedule.week import WorkWeek
 
 
+def virgin_time(week: WorkWeek, hours: float) -> str:
+    """Return when virgins are collected: in the afternoon, or earlier if they are surely virgins only until then."""
+    hour, minute = map(int, week.morning.split(":"))
+    latest = 60 * hour + minute + int(60 * hours)
+    return min(week.afternoon, f"{latest // 60:02d}:{latest % 60:02d}")
+
+
 def step_dates(days: Days, week: WorkWeek) -> StepDates:
     """Return the dates of a culture as the contract writes them."""
     return StepDates(
@@ -56,11 +63,23 @@ def write_tasks(
     for assay in assays:
         if assay.target in schedule.assay:
             tasks += _assay_tasks(assay, schedule, week, person.get(assay.vials_of, ""))
-    return sorted(tasks, key=lambda t: (t.date, t.time, t.step, t.id))
+    return sorted(_with_distinct_ids(tasks), key=lambda t: (t.date, t.time, t.step, t.id))
+
+
+def _with_distinct_ids(tasks: Sequence[TaskRecord]) -> list[TaskRecord]:
+    """Number the ids of targets whose names differ only in blanks and hyphens."""
+    seen: dict[str, int] = {}
+    distinct = []
+    for task in tasks:
+        seen[task.id] = seen.get(task.id, 0) + 1
+        again = seen[task.id]
+        distinct.append(task if again == 1 else task.model_copy(update={"id": f"{task.id}-{again}"}))
+    return distinct
 
 
 def _culture_tasks(culture: Culture, days: Days, week: WorkWeek, person: str) -> list[TaskRecord]:
     hours = virgin_hours(culture.temperature_C)
+    virgins_at = virgin_time(week, hours)
     made: list[TaskRecord] = []
 
     def add(kind: str, number: int, day: int, time: str, note: str, step: str = culture.step) -> None:
@@ -84,16 +103,18 @@ def _culture_tasks(culture: Culture, days: Days, week: WorkWeek, person: str) ->
         add("expand", 0, days.expand, week.morning,
             f"put stock {culture.mother_stock} on fresh food, {culture.vials} vials, for virgins of {culture.step}")  # fmt: skip
     for i, day in enumerate(days.stock_collect, start=1):
-        add("virgins", i, day, week.afternoon,
-            f"from stock {culture.mother_stock}: empty its vials at {week.morning}, collect at {week.afternoon};"
+        add("virgins", i, day, virgins_at,
+            f"from stock {culture.mother_stock}: empty its vials at {week.morning}, collect at {virgins_at};"
             f" safe for {hours:.0f} h")  # fmt: skip
     add("set up", 0, days.set_up, week.morning, f"set up {culture.vials} vials at {culture.temperature_C:g} C")
     add("clear", 0, days.clear, week.morning, "take the parents out")
     for step in (culture.step, *culture.also):
         for i, day in enumerate(days.collect, start=1):
             if culture.keeps_virgins:
-                note = f"empty the vials at {week.morning}; females that emerge from then on are virgins at {week.afternoon}"
-                add("collect", i, day, week.afternoon, f"{note} (safe for {hours:.0f} h)", step)
+                note = (
+                    f"empty the vials at {week.morning}; females that emerge from then on are virgins at {virgins_at}"
+                )
+                add("collect", i, day, virgins_at, f"{note} (safe for {hours:.0f} h)", step)
             else:
                 add("collect", i, day, week.morning, "collect the kept class", step)
     add("discard", 0, days.discard, week.afternoon, "last collection done: kill and discard the culture")
@@ -137,5 +158,5 @@ def _assay_tasks(assay: Assay, schedule: Schedule, week: WorkWeek, person: str) 
 
 def _ages(assay: Assay, schedule: Schedule, day: int) -> str:
     made = schedule.days[assay.vials_of]
-    youngest, oldest = day - made.last, day - made.first
+    youngest, oldest = day - made.last, day - made.born_from
     return str(youngest) if youngest == oldest else f"{youngest}-{oldest}"

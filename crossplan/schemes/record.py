@@ -13,10 +13,14 @@ from crossplan.genetics.notation import fly_json
 from crossplan.genetics.progeny import ProgenyClass
 from crossplan.plan.model import FlyRecord, KeepRecord, ParentRecord, StepRecord, TargetRecord
 from crossplan.plan.screen import ScreenFile
+from crossplan.rearing.handling import breeding_allowed
 from crossplan.schemes.batch import Answer
 from crossplan.schemes.numbers import Amount, Use, amounts
 from crossplan.schemes.realise import Cross, StockParent, describe_class, look_alike_words
 from crossplan.schemes.screen_plan import ScreenPlanner
+
+#: rearing temperature in degrees C of parents where the lab's own is too hot to breed from
+BREEDING_C = 25.0
 
 
 @dataclass(frozen=True)
@@ -99,6 +103,8 @@ class _StepWriter:
         rearing = self.screen.rearing
         # what serves several targets is reared as the coolest of them asks
         warm = min((self.planner.temperature_of(a.asked) for a in serves), default=rearing.temperature)
+        if uses and not breeding_allowed(warm):
+            warm = BREEDING_C
         observer = self.planner.observer_of(warm)
         used_by = [self.numbered.id_of(self.numbered.crosses[u.by]) for u in uses]
         return StepRecord(

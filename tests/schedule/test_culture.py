@@ -49,7 +49,7 @@ def test_a_slower_strain_is_later() -> None:
     ],
 )
 def test_a_week_at_25_C(set_up: int, clear: int, collect: tuple[int, ...]) -> None:
-    assert days_of(culture(), set_up, WARM, 3, WEEK) == Days(set_up, clear, collect, collect[-1])
+    assert days_of(culture(), set_up, WARM, 3, WEEK) == Days(set_up, clear, collect, collect[-1], set_up + 9)
 
 
 @pytest.mark.parametrize(
@@ -57,7 +57,9 @@ def test_a_week_at_25_C(set_up: int, clear: int, collect: tuple[int, ...]) -> No
     [(0, 3, (18, 21, 22, 23)), (1, 4, (21, 22, 23, 24)), (4, 7, (22, 23, 24, 25))],
 )
 def test_a_week_at_18_C(set_up: int, clear: int, collect: tuple[int, ...]) -> None:
-    assert days_of(culture(), set_up, COLD, 3, WEEK) == Days(set_up, clear, collect, collect[-1])
+    assert days_of(culture(), set_up, COLD, 3, WEEK) == Days(
+        set_up, clear, collect, collect[-1], set_up + COLD.first_flies
+    )
 
 
 def test_parents_never_stay_longer_than_the_table() -> None:
@@ -98,10 +100,10 @@ def test_virgins_from_a_stock_need_a_generation_on_fresh_food() -> None:
 
 
 def test_a_child_waits_for_its_last_parent_and_not_too_long() -> None:
-    parent = Days(0, 3, (9, 10, 11, 14), 14)
-    assert not fits(Days(14, 17, (23,), 23), parent, True, WARM)
-    assert fits(Days(15, 18, (24,), 24), parent, True, WARM)
-    assert fits(Days(16, 19, (25,), 25), parent, True, WARM)
-    assert not fits(Days(17, 20, (26,), 26), parent, True, WARM)  # the first virgins are 8 days old
-    assert fits(Days(23, 26, (32,), 32), parent, False, WARM)  # fathers keep for two weeks
-    assert not fits(Days(24, 27, (33,), 33), parent, False, WARM)
+    parent = Days(0, 3, (9, 10, 11, 14), 14, 9)
+    assert not fits(Days(14, 17, (23,), 23, 23), parent, True, WARM)
+    assert fits(Days(15, 18, (24,), 24, 24), parent, True, WARM)
+    assert fits(Days(16, 19, (25,), 25, 25), parent, True, WARM)
+    assert not fits(Days(17, 20, (26,), 26, 26), parent, True, WARM)  # the first virgins are 8 days old
+    assert fits(Days(23, 26, (32,), 32, 32), parent, False, WARM)  # fathers keep for two weeks
+    assert not fits(Days(24, 27, (33,), 33, 33), parent, False, WARM)
