@@ -367,6 +367,11 @@ def plan_screen(
         controls = controls_for(made, planner.shelf, catalogue, request.screen.screen.empty)
         answers += planner.answer(controls.asked, lambda n, of: tell("finding schemes for controls", n, of))
         remarks = controls.remarks
+        background = request.screen.screen.background
+        if background is not None and shelf.by_name(background) is None:
+            remarks += (
+                f"the background '{background}' is no stock of {shelf.path}: controls were made with any wild type",
+            )
     tell("planning days", 0, 0)
     plan = _assemble(request, shelf, planner, answers, remarks, start or request.screen.calendar.start or today,
                      with_calendar)  # fmt: skip

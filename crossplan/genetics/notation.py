@@ -180,7 +180,8 @@ class _Reader:
         words: list[Word] = []
         balancer: Element | None = None
         balancer_item: Item | None = None
-        for item in symbols.items:
+        # a balancer is read first, since it says what the symbols beside it are
+        for item in sorted(symbols.items, key=lambda i: self.catalogue.balancer(i.text) is None):
             for word in self.words.read(item, balancer):
                 words.append(word)
                 self.problems += word.problems

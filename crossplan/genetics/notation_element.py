@@ -47,7 +47,7 @@ _CHROMOSOME_OF_LABEL: Final = {
     "4": "4",
     "iv": "4",
 }
-_AT = re.compile(r"(?P<name>[^@]+)@(?P<place>[^@]+)")
+_AT = re.compile(r"(?P<name>[^@]+)@(?P<place>[^@()]*(?:\([^@()]*\)[^@()]*)*)")
 _IN_PARENTHESES = re.compile(r"(?P<name>.*[^(])\((?P<place>(?:[^()]|\([^()]*\))*)\)")
 _ABERRATION = re.compile(r"(?P<kind>Df|Dp|In|T|Tp|R|C|Ab)\((?P<where>[^()]*)\)(?P<name>.+)")
 _ARM = re.compile(r"(?P<chromosome>[1-4XY])(?:L|R|LR|h)?")
@@ -56,7 +56,7 @@ _IN_ROUND = re.compile(r"(?P<gene>[A-Za-z]{1,5})\((?P<allele>\d{1,4}|\*)\)")
 _RUN_ON = re.compile(r"(?P<gene>[A-Za-z]+?)(?P<allele>[1-9]\d{0,3}(?:[a-z]{1,2}\d{0,2})?|\*|-|\+)")
 _LINE_CODE = re.compile(r"[A-Z]\d{2}[A-H]\d{2}")
 _YELLOW_WHITE = re.compile(r"(?P<y>y\d{0,2}\*?)(?P<w>w(?:\d{1,4}(?:[a-z]\d{1,2})?|\*|-)?)(?P<v>[vf]\d{0,2})?")
-_Y_FORMS = re.compile(r"(?:(?P<left>[A-Za-z]+\[[^\[\]]+\])?Y(?P<right>[A-Za-z]+\[[^\[\]]+\])?|Dp\(\d;Y\)(?P<dp>\S*))")
+_Y_FORMS = re.compile(r"(?:(?P<left>[A-Za-z]{1,3}\[[^\[\]]+\])?Y(?P<right>[A-Za-z]{1,3}\[[^\[\]]+\])?|Dp\(\d;Y\)(?P<dp>\S*))")
 _MARKED_BALANCER = re.compile(
     r"(?P<balancer>CyO|SM5|SM6a|TM1|TM2|TM3|TM6B|TM6C|TM6)(?P<marker>Sb|Ser|Tb|Hu|Ubx|Cy|Roi|e)1?"
 )
@@ -67,6 +67,9 @@ _CARRIED: Final = re.compile(r"(?i)gfp|yfp|rfp|cherry|tom|gal4|lacz|flp|uas|dsre
 _STOCK_NUMBER = re.compile(r"(?:BDSC|DGRC|VDRC|DGGR)[:_# ]?\d{3,}")
 _GLUED_CROSS = re.compile(r"(?i)(?:dbd|ad|gal4)x(?:\d*x?uas|uas)")
 _MOST_UNDERSCORES: Final = 2
+#: what cannot be the name of an element: a sign in front, a word that divides, a chromosome, a Y hung on
+_NO_SYMBOL = re.compile(r"[^\w{]|(?:or|and|in|at|oder|x|X|I|II|III|IV|V)(?:\(|$)|.*\(Y\)|.*@.*@"
+                        r"|(?:Df|Dp|In|T|Tp|R|C|Ab)\([^()]*\)$")  # fmt: skip
 _LETHAL_WORD = re.compile(r"(?i)lethal\w*|\[?l(?:ethal)?\]")
 
 
@@ -130,6 +133,8 @@ class WordReader:
         return words
 
     def _read(self, item: Item, balancer: Element | None) -> list[Word]:
+        if " " in item.text and "{" not in item.text:
+            item = Item(item.text.replace(" ", ""), item.start, item.end)
         text = item.text
         if text == "+" or (text[0] == "+" and len(text) > 1 and text[1] in "[(" and text[-1] in "])"):
             return [Word(None, plus=True)]
@@ -140,6 +145,10 @@ class WordReader:
         known = self.known.get(text)
         if known is not None and not known.gene and known.kind in (Kind.INSERTION, Kind.UNKNOWN):
             return [_known_word(known)]
+        if _NO_SYMBOL.match(text):
+            return [
+                self._fault(item, "no-symbol", f"'{text}' is no symbol", "take it out, or write what it stands for")
+            ]
         several = self._run_together(item)
         if several is not None:
             return several
@@ -350,6 +359,9 @@ class WordReader:
             if match is None or self.catalogue.site(match["place"]) is None:
                 return self._bare_site(item)
         name, place = match["name"], match["place"]
+        if "{" in item.text or name.count("(") != name.count(")") or name.count("[") != name.count("]"):
+            return self._fault(item, "brackets-and-site", f"'{item.text}' mixes brackets and @",
+                               "write NAME@SITE, or P{NAME}SITE")  # fmt: skip
         joined = re.match(r"(?P<site>[^_]+)_(?P<rest>.+)", place)
         if joined and self.catalogue.site(place) is None and self.catalogue.site(joined["site"]) is not None:
             return self._fault(item, "underscore", f"an underscore joins {name}@{joined['site']} to the next symbol",
@@ -496,6 +508,8 @@ class WordReader:
         matches = list(_ALLELE.finditer(text))
         if not matches or "".join(m.group() for m in matches) != text:
             return None
+        if len(matches) > 1 and any(self._is_stranger(m["gene"]) for m in matches):
+            return None
         if len(matches) == 1 and self._is_transgene(matches[0]["gene"], matches[0]["allele"], text):
             return None
         words = []
@@ -507,6 +521,9 @@ class WordReader:
             else:
                 words.append(self._allele(match["gene"], match["allele"], part, match.group()))
         return words
+
+    def _is_stranger(self, gene: str) -> bool:
+        return self.catalogue.marker(gene) is None and self.catalogue.locus(gene) is None
 
     def _is_transgene(self, gene: str, allele: str, text: str) -> bool:
         """Tell `tub-GAL80[ts]`, a construct, from an allele of a gene."""

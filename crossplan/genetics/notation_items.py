@@ -20,6 +20,9 @@ from crossplan.genetics.notation_split import Item
 LABEL = re.compile(r"(?:chr(?:omosome)?\.? ?)?(X|Y|[1-5](?:L|R|LR)?|I|II|III|IV|V)", re.IGNORECASE)
 _ROMAN: Final = frozenset(("I", "II", "III", "IV", "V"))
 _NAMELESS_ABERRATION = re.compile(r"(?:Df|Dp|In|T|Tp|R|C|Ab)\([^()]*\)")
+#: one pair of brackets round all of it; others may stand inside, one deep
+_ROUND = re.compile(r"\((?:[^()]|\([^()]*\))*\)")
+_SQUARE = re.compile(r"\[(?:[^\[\]]|\[[^\[\]]*\])*\]")
 _NULL_ALLELE = re.compile(r"[a-z]{1,3}-")
 _ALLELE_OF = re.compile(r"[^\[\]{}]+\[([^\[\]]+)\]")
 _CHOICES: Final = frozenset(("or", "and", "&", "oder", "and/or"))
@@ -65,11 +68,11 @@ class _Joiner:
         if before is None:
             self._first(item)
         elif text in ("in", "at", "@") and after is not None:
-            self._extend(before, f"@{after.text.strip('()[]')}", after)
+            self._extend(before, f"@{_bare(after.text)}", after)
             return 2
-        elif text[0] == "(" and text[-1] == ")":
+        elif _ROUND.fullmatch(text):
             self._parenthesis(item, before)
-        elif text[0] == "[" and text[-1] == "]":
+        elif _SQUARE.fullmatch(text):
             self._square(item, before)
         elif text in _ROMAN or text == "X":
             self._extend(before, f"({text})", item)
@@ -79,7 +82,7 @@ class _Joiner:
 
     def _first(self, item: Item) -> None:
         text = item.text
-        if text[0] == "(" and text[-1] == ")":
+        if _ROUND.fullmatch(text):
             self._parenthesis(item, None)
         elif text.endswith("(Y)") and len(text) > len("(Y)"):
             self.out.or_y = True
@@ -188,3 +191,8 @@ class _Joiner:
 
     def _problem(self, code: str, severity: Severity, message: str, item: Item, hint: str = "") -> None:
         self.out.problems.append(problem(code, severity, message, self.text, item.start, item.end, hint))
+
+
+def _bare(text: str) -> str:
+    """Return a text without one pair of brackets round all of it."""
+    return text[1:-1] if _ROUND.fullmatch(text) or _SQUARE.fullmatch(text) else text

@@ -56,8 +56,8 @@ def _homologue(homologue: Homologue, style: Style) -> str:
     if not homologue.elements:
         return "+"
     words = [_element(e, style) for e in homologue.elements]
-    if any(e.site == e.symbol for e in homologue.elements):
-        # the name of an empty landing site must not run into the symbol before it
+    if any(e.site == e.symbol or e.symbol[-1] == "-" for e in homologue.elements):
+        # the name of an empty landing site, and what follows a hyphen, would run into the symbol before
         return ", ".join(words)
     if homologue.balancer is not None and len(words) > 1:
         return f"{words[0]}, {' '.join(words[1:])}"

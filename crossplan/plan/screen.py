@@ -30,7 +30,7 @@ class ScreenSection(Section):
     controls: bool = False
     #: the empty half-drivers or driver that stand in for the pair in the control with no driver, by role
     empty: tuple[str, ...] = ()
-    #: the component list of a control with no effector is crossed to this wild type or background stock
+    #: the stock that stands in for the missing part in controls; no other wild type or mutant strain is used for them
     background: str | None = None
 
 

@@ -11,6 +11,7 @@ from dataclasses import replace
 
 from crossplan.genetics.appearance import Means, Observer
 from crossplan.genetics.catalogue import Catalogue
+from crossplan.genetics.element import Kind
 from crossplan.genetics.survival import sterile_because
 from crossplan.plan.screen import ScreenFile
 from crossplan.schemes.batch import Answer, Asked, BatchPlanner
@@ -35,6 +36,12 @@ def _convenience(stock: Stock) -> tuple[object, ...]:
     return (not fertile, heterozygous, -(stock.copies or 0), stock.row)
 
 
+def _is_strain(source: Source) -> bool:
+    """Return whether the stock carries nothing but alleles: a wild type or a mutant strain."""
+    flies = [f for f in (source.female, source.male) if f is not None]
+    return all(e.kind in (Kind.ALLELE, Kind.Y) for f in flies for e in f.elements())
+
+
 def means_of(screen: ScreenFile) -> Means:
     """Return the means of the lab that the screen file describes."""
     return Means(
@@ -53,7 +60,7 @@ class ScreenPlanner:
         self.screen = screen
         self.catalogue = catalogue
         self.shelf = carried_elements(sources)
-        self._planners: dict[float, BatchPlanner] = {}
+        self._planners: dict[tuple[float, bool], BatchPlanner] = {}
 
     def needs(self, asked: Asked) -> Needs:
         """Return what the components of a target ask of the bench."""
@@ -67,21 +74,30 @@ class ScreenPlanner:
 
     def observer_of(self, rearing_C: float) -> Observer:
         """Return who looks at flies reared at that temperature."""
-        return self._planner(rearing_C).observer
+        return self._planner(rearing_C, control=False).observer
 
-    def _planner(self, rearing_C: float) -> BatchPlanner:
-        found = self._planners.get(rearing_C)
+    def _planner(self, rearing_C: float, control: bool) -> BatchPlanner:
+        found = self._planners.get((rearing_C, control))
         if found is None:
             observer = Observer(self.catalogue, replace(means_of(self.screen), rearing_C=rearing_C))
-            found = BatchPlanner(self.sources, observer, self.screen.search.max_generations)
-            self._planners[rearing_C] = found
+            sources = self._control_sources() if control else self.sources
+            found = BatchPlanner(sources, observer, self.screen.search.max_generations)
+            self._planners[rearing_C, control] = found
         return found
+
+    def _control_sources(self) -> tuple[Source, ...]:
+        """Return the stocks for controls: where the screen names a background, no other wild type or mutant strain."""
+        background = self.screen.screen.background
+        if background is None or background not in {s.name for s in self.sources}:
+            return self.sources
+        return tuple(s for s in self.sources if s.name == background or not _is_strain(s))
 
     def answer(self, asked: Sequence[Asked], progress: Callable[[int, int], None] | None = None) -> list[Answer]:
         """Return an answer for every target in order; `progress` hears how many of how many are done."""
         answers = []
         for done, one in enumerate(asked, start=1):
-            answers.append(self._planner(self.temperature_of(one)).answer(one))
+            planner = self._planner(self.temperature_of(one), control=bool(one.control_kind))
+            answers.append(planner.answer(one))
             if progress is not None:
                 progress(done, len(asked))
         return answers
