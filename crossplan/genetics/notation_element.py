@@ -56,7 +56,9 @@ _IN_ROUND = re.compile(r"(?P<gene>[A-Za-z]{1,5})\((?P<allele>\d{1,4}|\*)\)")
 _RUN_ON = re.compile(r"(?P<gene>[A-Za-z]+?)(?P<allele>[1-9]\d{0,3}(?:[a-z]{1,2}\d{0,2})?|\*|-|\+)")
 _LINE_CODE = re.compile(r"[A-Z]\d{2}[A-H]\d{2}")
 _YELLOW_WHITE = re.compile(r"(?P<y>y\d{0,2}\*?)(?P<w>w(?:\d{1,4}(?:[a-z]\d{1,2})?|\*|-)?)(?P<v>[vf]\d{0,2})?")
-_Y_FORMS = re.compile(r"(?:(?P<left>[A-Za-z]{1,3}\[[^\[\]]+\])?Y(?P<right>[A-Za-z]{1,3}\[[^\[\]]+\])?|Dp\(\d;Y\)(?P<dp>\S*))")
+_Y_FORMS = re.compile(
+    r"(?:(?P<left>[A-Za-z]{1,3}\[[^\[\]]+\])?Y(?P<right>[A-Za-z]{1,3}\[[^\[\]]+\])?|Dp\(\d;Y\)(?P<dp>\S*))"
+)
 _MARKED_BALANCER = re.compile(
     r"(?P<balancer>CyO|SM5|SM6a|TM1|TM2|TM3|TM6B|TM6C|TM6)(?P<marker>Sb|Ser|Tb|Hu|Ubx|Cy|Roi|e)1?"
 )

@@ -9,6 +9,7 @@ last step whether its flies are what the target asked for.
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
+from typing import Any
 
 from crossplan.errors import Problem, Severity
 from crossplan.genetics.appearance import Observer
@@ -32,7 +33,9 @@ def replay(plan: Plan, observer_of: Callable[[float], Observer], known: Mapping[
         known: elements of the stock list by symbol, so that genotypes mean what they mean there.
     """
     check = _Replay(plan, observer_of, known)
-    faults: list[Problem] = []
+    faults = check.order()
+    if faults:
+        return tuple(faults)
     for step in plan.steps:
         faults += check.step(step)
     for target in plan.targets:
@@ -50,6 +53,25 @@ class _Replay:
 
     def _fly(self, record: FlyRecord) -> Fly:
         return read_fly(record.genotype, record.sex, self.observer_of(25.0).catalogue, self.known)
+
+    def order(self) -> list[Problem]:
+        """Check that no cross comes from itself, and that each generation is the longest run of crosses from a stock."""
+        import networkx
+
+        graph: Any = networkx.DiGraph()
+        graph.add_nodes_from(self.steps)
+        for step in self.plan.steps:
+            graph.add_edges_from((p.step, step.id) for p in (step.mother, step.father) if p.step in self.steps)
+        if not networkx.is_directed_acyclic_graph(graph):
+            return [Problem("plan-step", Severity.ERROR, "some crosses come from each other in a circle")]
+        longest: dict[str, int] = {}
+        for step_id in networkx.topological_sort(graph):
+            longest[step_id] = 1 + max((longest[p] for p in graph.predecessors(step_id)), default=0)
+        return [
+            _fault(s, f"it is generation {longest[s.id]}, not {s.generation}")
+            for s in self.plan.steps
+            if longest[s.id] != s.generation
+        ]
 
     def step(self, step: StepRecord) -> list[Problem]:
         mother, father = self._fly(step.mother.fly), self._fly(step.father.fly)

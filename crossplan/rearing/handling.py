@@ -7,19 +7,16 @@ shares of the limit are summed.
 
 from __future__ import annotations
 
-import math
 from collections.abc import Callable
 from dataclasses import dataclass
 from typing import Final
 
-from crossplan.errors import RearingError
 from crossplan.rearing.course import Course
 from crossplan.rearing.development import (
     FIRST_FLIES_FRACTION,
     HOT_FROM_C,
     Clock,
     check_temperature,
-    relative_rate,
 )
 
 Table = tuple[tuple[float, float], ...]
@@ -49,9 +46,6 @@ CLEAR_PARENTS_DAYS: Final[Table] = ((18.0, 10.0), (21.0, 8.0), (22.0, 8.0), (25.
 #: common practice).
 MATE_AND_LAY_HOURS: Final = 24.0
 
-#: Days between transfers of a stock (common practice; sources run from 14 to 35 days at 18 C). Warmer than
-#: 25 C the figure at 25 C is scaled by development (own calculation).
-FLIP_DAYS: Final[Table] = ((18.0, 28.0), (21.0, 21.0), (22.0, 21.0), (25.0, 14.0))
 
 #: Hours before the first eclosion from which the temperature decides how the wings turn out. Duox, the gene
 #: of Curly, acts on the last day of the pupa (Hurd, Liang & Lehmann 2015, PLoS Genet. 11:e1005625); two
@@ -128,21 +122,6 @@ def stop_collecting_hours(where: Course | float, clock: Clock) -> float:
     course = Course.of(where)
     first_flies = clock.hour_of(FIRST_FLIES_FRACTION, course)
     return clock.hour_of(FIRST_FLIES_FRACTION, course, laid_at=first_flies + MATE_AND_LAY_HOURS)
-
-
-def flip_interval_days(temperature: float) -> int:
-    """Return the days after which a stock kept at this temperature is due on new food.
-
-    Raises:
-        RearingError: outside 12 to 30 C, or too warm to breed.
-    """
-    if not breeding_allowed(temperature):
-        raise RearingError(
-            f"a stock cannot be kept at {temperature:g} C: expected below {HOT_FROM_C:g} C",
-            "Flies reared at 29 C or warmer give almost no offspring; keep stocks at 18 to 25 C.",
-        )
-    warm = relative_rate(temperature) if temperature > 25.0 else 1.0
-    return math.floor(read_off(FLIP_DAYS, temperature) / warm)
 
 
 def male_ready_days() -> AgeRange:

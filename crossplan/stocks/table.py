@@ -13,6 +13,7 @@ from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 from difflib import get_close_matches
 from pathlib import Path
+from typing import Literal
 
 from crossplan.errors import Problem, Severity, StockListError
 
@@ -146,12 +147,16 @@ def _delimiter(lines: Sequence[str]) -> str:
 
 
 def _read_workbook(path: Path, kind: str, sheet: str | None) -> list[list[str]]:
+    import pandas
+
+    engine: Literal["openpyxl", "odf"] = "openpyxl" if kind == "xlsx" else "odf"
     try:
-        sheets = _xlsx(path) if kind == "xlsx" else _ods(path)
-    except (zipfile.BadZipFile, KeyError, ValueError) as error:
+        frames = pandas.read_excel(path, sheet_name=None, header=None, dtype=object, na_filter=False, engine=engine)
+    except (zipfile.BadZipFile, KeyError, ValueError, EOFError) as error:
         raise StockListError(
             f"{path} is no readable workbook ({error})", "open it and save it again, or export CSV"
         ) from error
+    sheets = {str(name): [[_cell(v) for v in row] for row in frame.to_numpy()] for name, frame in frames.items()}
     if sheet is not None:
         if sheet not in sheets:
             raise StockListError(f"{path} has no sheet '{sheet}'", f"its sheets: {', '.join(sheets)}")
@@ -162,46 +167,15 @@ def _read_workbook(path: Path, kind: str, sheet: str | None) -> list[list[str]]:
     return filled[0]
 
 
-def _xlsx(path: Path) -> dict[str, list[list[str]]]:
-    import openpyxl
-
-    book = openpyxl.load_workbook(path, read_only=True, data_only=True)
-    try:
-        return {s.title: [[_cell(v) for v in row] for row in s.iter_rows(values_only=True)] for s in book.worksheets}
-    finally:
-        book.close()
-
-
 def _cell(value: object) -> str:
-    if value is None:
+    """Return a cell as text: dates in ISO form, whole numbers without a point."""
+    if value is None or value != value:
         return ""
     if isinstance(value, dt.datetime):
         return value.date().isoformat()
     if isinstance(value, float) and value.is_integer():
         return str(int(value))
     return str(value)
-
-
-def _ods(path: Path) -> dict[str, list[list[str]]]:
-    from odf.opendocument import load
-    from odf.table import Table as Sheet
-    from odf.table import TableCell, TableRow
-    from odf.teletype import extractText
-
-    sheets: dict[str, list[list[str]]] = {}
-    for sheet in load(str(path)).getElementsByType(Sheet):
-        grid: list[list[str]] = []
-        for row in sheet.getElementsByType(TableRow):
-            cells: list[str] = []
-            for cell in row.getElementsByType(TableCell):
-                date = cell.getAttribute("datevalue")
-                text = date[:10] if date else extractText(cell)
-                repeat = int(cell.getAttribute("numbercolumnsrepeated") or 1)
-                cells += [text] * min(repeat, 200)
-            repeat = int(row.getAttribute("numberrowsrepeated") or 1)
-            grid += [cells] * (repeat if any(cells) else min(repeat, 1000))
-        sheets[str(sheet.getAttribute("name"))] = grid
-    return sheets
 
 
 # -- rows under their headings -----------------------------------------------------------------------------------

@@ -55,16 +55,6 @@ def test_stop_collecting(temperature: float, day: int) -> None:
     assert int(handling.stop_collecting_hours(temperature, CLOCK) / 24) == day
 
 
-@pytest.mark.parametrize(("temperature", "days"), [(18, 28), (21, 21), (22, 21), (25, 14), (15, 28), (28, 11)])
-def test_flip_interval(temperature: float, days: int) -> None:
-    assert handling.flip_interval_days(temperature) == days
-
-
-def test_no_stock_at_29() -> None:
-    with pytest.raises(RearingError, match="a stock cannot be kept at 29 C: expected below 29 C"):
-        handling.flip_interval_days(29.0)
-
-
 def test_breeding() -> None:
     assert handling.breeding_allowed(28.9)
     assert not handling.breeding_allowed(29.0)
@@ -92,7 +82,6 @@ def test_ages_and_feeding() -> None:
     [
         handling.virgin_hours,
         handling.breeding_allowed,
-        handling.flip_interval_days,
         handling.virgin_keeping_days,
     ],
 )
