@@ -5,6 +5,7 @@
     read_stocks, audit_stocks, audit_json        the shelf
     plan_screen, plan_json, load_plan            a screen
     write_plan, write_labels, write_calendar     what people hold
+    log_entry, day_report                        what really happened, and what it changes
     rearing_report, count_report                 the clock and the head-counts
     write_demo                                   the demo
 
@@ -554,6 +555,64 @@ def parse_days(text: str | None) -> list[dt.date] | None:
     if not 1 <= days <= 3660:
         raise InputError(f"'{text}' holds no day, or more than ten years of them", "write FROM..TO, FROM first")
     return [first + dt.timedelta(days=i) for i in range(days)]
+
+
+# -- what really happened ----------------------------------------------------------------------------------------
+
+
+def log_entry(
+    plan: Path, step: str, event: str, *, day: dt.date, count: int | None = None, person: str = "", note: str = ""
+) -> Path:
+    """Add what happened to a culture to the journal beside its plan; return the journal.
+
+    Raises:
+        InputError: the plan has no such step, or there is no such event.
+        OutputError: the journal cannot be written.
+    """
+    from crossplan.logbook.entry import Entry, Event
+    from crossplan.logbook.journal import add_entry
+
+    steps = [s.id for s in load_plan(plan).steps]
+    if step not in steps:
+        raise InputError(f"the plan has no cross {step}", f"its crosses: {steps[0]} to {steps[-1]}" if steps else "")
+    if event not in set(Event):
+        raise InputError(f"'{event}' is no event of a culture", f"one of: {', '.join(Event)}")
+    journal = _journal_of(plan)
+    add_entry(journal, Entry(day, step, Event(event), count, person, note))
+    return journal
+
+
+def day_report(plan: Path, day: dt.date, person: str | None = None) -> dict[str, Any]:
+    """Return the tasks of a day, the cultures that do not run as planned, and the tasks that should move.
+
+    Faults of the journal are returned under `problems`; the lines that can be read count.
+    """
+    from crossplan.logbook.journal import read_journal
+    from crossplan.logbook.progress import moved_tasks, progress
+
+    loaded = load_plan(plan)
+    entries, problems = read_journal(_journal_of(plan))
+    mine = [t for t in loaded.tasks if person is None or t.person == person]
+    states = progress(loaded, entries, day)
+    return {
+        "date": day.isoformat(),
+        "tasks": [t.model_dump(mode="json") for t in mine if t.date == day.isoformat()],
+        "cultures": [
+            {"step": s.step, "state": s.state, "collected": s.collected, "needed": s.needed, "days_late": s.days_late}
+            for s in states
+            if s.days_late or s.state in ("collecting", "short", "failed")
+        ],
+        "moved": [
+            {"task": m.task.id, "from": m.task.date, "to": m.to.isoformat(), "because": m.because}
+            for m in moved_tasks(loaded, entries)
+            if person is None or m.task.person == person
+        ],
+        "problems": [f"{p.place()}: {p.message}" for p in problems],
+    }
+
+
+def _journal_of(plan: Path) -> Path:
+    return (plan if plan.is_dir() else plan.parent) / "journal.csv"
 
 
 # -- clock, counts, demo -----------------------------------------------------------------------------------------

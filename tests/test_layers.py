@@ -17,7 +17,7 @@ MAY_IMPORT: dict[str, set[str]] = {
     "schemes": {"errors", "genetics", "stocks", "rearing", "plan"},
     "schedule": {"errors", "genetics", "stocks", "rearing", "plan"},
     "bench": {"errors", "genetics", "stocks", "rearing", "plan", "schemes", "schedule"},
-    "logbook": {"errors", "genetics", "stocks", "rearing", "plan", "schemes", "schedule"},
+    "logbook": {"errors", "genetics", "stocks", "rearing", "plan", "schemes", "schedule", "bench"},
     "api": {"errors", "genetics", "stocks", "rearing", "plan", "schemes", "schedule", "bench", "logbook"},
     "cli": {"errors", "api"},
 }

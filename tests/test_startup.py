@@ -8,7 +8,7 @@ import sys
 import pytest
 
 HEAVY = ("pandas", "numpy", "networkx", "ortools", "pydantic", "fpdf", "segno", "icalendar", "openpyxl", "odf", "rich")
-COMMANDS = ("plan", "progeny", "read", "audit", "labels", "calendar", "rear", "count", "demo")
+COMMANDS = ("plan", "progeny", "read", "audit", "labels", "calendar", "today", "log", "rear", "count", "demo")
 
 
 def loaded_by(*arguments: str) -> set[str]:

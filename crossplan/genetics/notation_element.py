@@ -29,6 +29,7 @@ from crossplan.genetics.notation_insertion import (
     frt,
     insertion,
     is_nested,
+    is_several,
     markers_and_name,
 )
 from crossplan.genetics.notation_split import Item
@@ -64,6 +65,8 @@ _MARKED_BALANCER = re.compile(
 )
 _BALANCER_START = re.compile(r"(?i)(?:C[YO0]|TM\d|FM\d|SM\d|MKR|MRK)")
 _LONGEST_BALANCER: Final = 8
+#: the longest real symbols known to us have some 130 characters
+_LONGEST_SYMBOL: Final = 400
 _MOST_REMEMBERED: Final = 20_000
 _CARRIED: Final = re.compile(r"(?i)gfp|yfp|rfp|cherry|tom|gal4|lacz|flp|uas|dsred")
 _STOCK_NUMBER = re.compile(r"(?:BDSC|DGRC|VDRC|DGGR)[:_# ]?\d{3,}")
@@ -147,6 +150,8 @@ class WordReader:
         known = self.known.get(text)
         if known is not None and not known.gene and known.kind in (Kind.INSERTION, Kind.UNKNOWN):
             return [_known_word(known)]
+        if len(text) > _LONGEST_SYMBOL:
+            return [self._fault(item, "too-long", f"one symbol of {len(text)} characters", "look at the cell")]
         if _NO_SYMBOL.match(text):
             return [
                 self._fault(item, "no-symbol", f"'{text}' is no symbol", "take it out, or write what it stands for")
@@ -268,6 +273,8 @@ class WordReader:
         near = self.catalogue.is_balancer_like(text) if _BALANCER_START.match(text) else None
         if near is None or self.catalogue.marker(text) is not None:
             return None
+        turned = (b.name for b in self.catalogue.balancers() if sorted(b.name.lower()) == sorted(text.lower()))
+        near = next(turned, near)
         return self._fault(item, "balancer-typo", f"'{text}' is no balancer that the catalogue knows",
                            f"perhaps {near}; correct it, or add the balancer to the lab's catalogue")  # fmt: skip
 
@@ -328,6 +335,9 @@ class WordReader:
         if not content.strip():
             return self._fault(item, "empty-construct", "the braces are empty: which construct is it?",
                                "write its name between the braces")  # fmt: skip
+        if is_several(content):
+            return self._fault(item, "run-together", "two insertions run into each other",
+                               "write a blank or a comma between them")  # fmt: skip
         if is_nested(content):
             return self._fault(item, "nested-braces", "braces stand directly inside braces",
                                "write one pair, such as P{UAS-GFP}attP2")  # fmt: skip

@@ -160,8 +160,9 @@ class _Builder:
         field = self.placed.get("X")
         xs = [h for h in homologues if not h.is_y]
         ys = [h for h in homologues if h.is_y]
-        compound = next((h for h in xs if h.is_compound), None)
-        if not xs or len(ys) > 1 or (compound is None and len(homologues) > 2):
+        compounds = [h for h in xs if h.is_compound]
+        compound = compounds[0] if compounds else None
+        if not xs or len(ys) > 1 or len(compounds) > 1 or (compound is None and len(homologues) > 2):
             what = "no X is written" if not xs else "two Y are written" if len(ys) > 1 else "too many X are written"
             self._say("sex-chromosomes", Severity.ERROR, what, "X", "a female is X/X, a male X/Y")
             return None, None, None

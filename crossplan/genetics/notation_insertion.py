@@ -78,6 +78,16 @@ def is_nested(content: str) -> bool:
     return _NESTED.match(content) is not None
 
 
+def is_several(content: str) -> bool:
+    """Return whether a brace closes before the last one: `a}1 P{b` is the inside of two insertions run together."""
+    depth = 0
+    for char in content:
+        depth += (char == "{") - (char == "}")
+        if depth < 0:
+            return True
+    return False
+
+
 def insertion(
     name: str, place: str, markers: Sequence[str], standard: str, catalogue: Catalogue
 ) -> tuple[Element, Place]:

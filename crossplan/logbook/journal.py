@@ -8,11 +8,10 @@ from __future__ import annotations
 import csv
 import datetime as dt
 import io
-import os
-import tempfile
 from collections.abc import Iterable
 from pathlib import Path
 
+from crossplan.bench.plan_folder import write_files
 from crossplan.errors import OutputError, Problem, Severity
 from crossplan.logbook.entry import Entry, Event
 
@@ -84,9 +83,6 @@ def write_journal(path: Path, entries: Iterable[Entry]) -> None:
     for e in entries:
         rows.writerow((e.date.isoformat(), e.step, e.event, "" if e.count is None else e.count, e.person, e.note))
     try:
-        handle, beside = tempfile.mkstemp(dir=path.parent, prefix=path.name, suffix=".part")
-        with os.fdopen(handle, "w", encoding="utf-8", newline="") as file:
-            file.write(text.getvalue())
-        Path(beside).replace(path)
+        write_files(path.parent, {path.name: text.getvalue().encode()})
     except OSError as error:
         raise OutputError(f"cannot write {path}: {error.strerror}", "check the folder and your rights") from error

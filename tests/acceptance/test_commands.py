@@ -183,3 +183,17 @@ def test_demo_writes_a_folder_that_can_be_planned(tmp_path: Path) -> None:
     done = run("demo", tmp_path / "demo")
     assert done.returncode == 2
     assert (tmp_path / "demo" / "stocks.csv").read_text() == "changed by hand"
+
+
+def test_the_journal_follows_the_bench(tmp_path: Path) -> None:
+    plan = tmp_path / "plan"
+    assert run("plan", ONE / "screen.toml", "--stocks", ONE / "stocks.csv", "--out", plan).returncode == 0
+    steps = json.loads((plan / "plan.json").read_text(encoding="utf-8"))["steps"]
+    first, day = steps[0]["id"], steps[0]["dates"]["collect_from"]
+    assert document("today", plan, "--date", day)["tasks"]
+    assert run("log", plan, first, "flies", "--date", "2027-12-24").returncode == 0
+    report = document("today", plan, "--date", day)
+    assert report["cultures"][0]["days_late"] > 100
+    assert report["moved"]
+    assert run("log", plan, "S99", "flies").returncode == 2
+    assert run("log", plan, first, "vanished").returncode == 2

@@ -1,0 +1,295 @@
+"""Genotypes to flies: what an element is told to be, where it sits, who carries it, and what is said of the text."""
+
+from __future__ import annotations
+
+import pytest
+
+from crossplan.errors import GenotypeError, Severity
+from crossplan.genetics.element import Element, Kind
+from crossplan.genetics.fly import Fly
+from crossplan.genetics.notation import Reading, fly_json, format_genotype, read_fly, read_genotype, reading_json
+
+
+def element(text: str, symbol: str) -> Element:
+    """Return the element of that symbol in a genotype."""
+    reading = read_genotype(text)
+    assert reading.ok, reading.problems
+    return next(e for e in reading.elements if e.symbol == symbol)
+
+
+def codes(reading: Reading, severity: str = "") -> set[str]:
+    return {p.code for p in reading.problems if not severity or p.severity == severity}
+
+
+def female(text: str) -> Fly:
+    return read_fly(text, "female")
+
+
+class TestInsertions:
+    def test_standard_and_shorthand_are_one_element(self) -> None:
+        standard = element("P{y[+t7.7] w[+mC]=AD-K12}attP40", "AD-K12@attP40")
+        for text in ("AD-K12@attP40", "AD-K12(attP40)", "AD-K12 (attP40)", "AD-K12 in attP40", "AD-K12 attP40"):
+            short = element(text, "AD-K12@attP40")
+            assert short == standard
+            assert (short.kind, short.site, short.chromosome) == (Kind.INSERTION, "attP40", "2")
+            assert short.position_cM == standard.position_cM
+            assert short.component == standard.component == "AD"
+
+    def test_written_markers_count(self) -> None:
+        hairpin = element("y[1] v[1]; P{y[+t7.7] v[+t1.8]=k.IR}attP2", "k.IR@attP2")
+        assert hairpin.traits.restores == {"y", "v"}
+
+    def test_unusual_markers_are_not_lost_in_the_short_form(self) -> None:
+        fly = female("y[1] v[1]; P{y[+t7.7] v[+t1.8]=k.IR}attP2")
+        assert format_genotype(fly) == "y[1] v[1]; +; P{y[+t7.7] v[+t1.8]=k.IR}attP2"
+        assert fly_json(fly)["3"] == [["k.IR@attP2"], ["k.IR@attP2"]]
+        assert female(format_genotype(fly)) == fly
+
+    def test_the_markers_of_the_site_stay_beside_the_insertion(self) -> None:
+        assert element("P{w[+mC]=UAS-k}VK00018", "UAS-k@VK00018").traits.restores == {"w", "y"}
+
+    def test_a_gene_that_was_hit_gives_the_place(self) -> None:
+        hit = element("P{lacW}e[k1]", "lacW@e[k1]")
+        assert (hit.chromosome, hit.position_cM) == ("3", 70.7)
+
+    def test_two_insertions_of_one_site_stand_on_two_homologues(self) -> None:
+        fly = female("w; AD-K1@attP40/UAS-k@attP40; +")
+        assert [h.symbols for h in fly.pair("2")] == [("AD-K1@attP40",), ("UAS-k@attP40",)]
+        assert "same-site" in codes(read_genotype("w; AD-K1@attP40, UAS-k@attP40; +"), "error")
+
+    def test_one_insertion_in_two_genes(self) -> None:
+        reading = read_genotype("w; +; Mi{ET1}e[KX1] kxg[KX1]")
+        assert [e.symbol for e in reading.elements] == ["w", "ET1@e[KX1]"]
+        assert "two-genes" in codes(reading)
+
+    def test_insertions_run_together_are_not_one(self) -> None:
+        assert codes(read_genotype("w; P{a}1P{b}2/CyO"), "error") == {"run-together"}
+
+    def test_frt_says_its_arm(self) -> None:
+        assert element("w; FRT40A", "FRT40A").chromosome == "2"
+        assert element("w; neoFRT82B", "neoFRT82B").chromosome == "3"
+        assert element("FRT19A", "FRT19A").chromosome == "X"
+
+
+class TestAlleles:
+    @pytest.mark.parametrize(
+        ("text", "symbol"), [("Sb1", "Sb[1]"), ("Sb", "Sb"), ("Sb(1)", "Sb[1]"), ("Sb[1]", "Sb[1]")]
+    )
+    def test_spellings_of_an_allele(self, text: str, symbol: str) -> None:
+        sb = element(f"w; +; {text}/TM6B, Tb", symbol)
+        assert (sb.kind, sb.gene) == (Kind.ALLELE, "Sb")
+        assert "stubble bristles" in sb.traits.dominant
+
+    def test_a_line_code_is_no_allele(self) -> None:
+        assert element("w; R76F05; +", "R76F05").kind is Kind.UNKNOWN
+
+    def test_a_null_of_white_is_white(self) -> None:
+        assert element("w-", "w[-]").traits.null_for == {"w"}
+        assert element("yw", "w").traits.null_for == {"w"}
+
+    @pytest.mark.parametrize(("text", "symbol", "group", "chromosome"), [
+        ("l(2)k5[1]/CyO", "l(2)k5[1]", "l(2)k5", "2"), ("l(3)k5[1]/TM3, Sb", "l(3)k5[1]", "l(3)k5", "3"),
+        ("l(1)k5/FM7a", "l(1)k5", "l(1)k5", "X"), ("Df(2R)k6/CyO", "Df(2R)k6", "Df(2R)k6", "2"),
+    ])  # fmt: skip
+    def test_lethals_by_name(self, text: str, symbol: str, group: str, chromosome: str) -> None:
+        found = element(text, symbol)
+        assert found.traits.lethal == {group}
+        assert found.chromosome == chromosome
+
+    def test_a_deficiency_is_taken_to_be_lethal_and_that_is_said(self) -> None:
+        assert "assumed-lethal" in codes(read_genotype("Df(2R)k6/CyO"))
+
+    def test_an_unknown_symbol_keeps_itself_and_that_is_said(self) -> None:
+        reading = read_genotype("w; kxg[7]/CyO")
+        assert "unknown-symbol" in codes(reading, "note")
+        assert next(e for e in reading.elements if e.symbol == "kxg[7]").gene == "kxg"
+
+    def test_a_duplication_sits_where_it_was_put(self) -> None:
+        assert female("w; +; Dp(1;3)k1/+").pair("3")[0].symbols == ("Dp(1;3)k1",)
+
+
+class TestBalancers:
+    def test_marker_written(self) -> None:
+        fly = female("w; +; +/TM3, Sb[1]")
+        assert fly.pair("3")[1].symbols == ("TM3", "Sb[1]")
+        assert not read_genotype("w; +; +/TM3, Sb[1]").assumed
+
+    def test_marker_assumed(self) -> None:
+        reading = read_genotype("w; +; +/TM3")
+        assert "assumed-marker" in codes(reading, "warning")
+        assert reading.female is not None
+        assert "stubble bristles" in reading.female.pair("3")[1].elements[0].traits.dominant
+
+    def test_a_lost_marker_can_be_denied(self) -> None:
+        balancer = female("w; +; +/TM6B, Tb[+]").pair("3")[1].elements[0]
+        assert "tubby pupae" not in balancer.traits.dominant
+
+    def test_the_glow_of_a_balancer(self) -> None:
+        glow = element("w; +/CyO, Kr-GFP", "Kr-GFP")
+        assert glow.traits.dominant == ("green fluorescence",)
+        assert glow.traits.restores == {"w"}
+        assert element("w; +/CyO-KrGFP", "CyO-KrGFP").kind is Kind.BALANCER
+
+    def test_capitals_are_put_right_with_a_note(self) -> None:
+        reading = read_genotype("w; Sp/cyo")
+        assert reading.canonical == "w; Sp/CyO; +"
+        assert "spelling" in codes(reading, "note")
+
+    @pytest.mark.parametrize(("typed", "meant"), [("TM6Bb", "TM6B"), ("Cy0", "CyO"), ("CyyO", "CyO"), ("MRKS", "MKRS")])
+    def test_a_typing_error_is_not_taken_for_an_element(self, typed: str, meant: str) -> None:
+        reading = read_genotype(f"w; +/{typed}; +")
+        assert codes(reading, "error") == {"balancer-typo"}
+        assert meant in reading.problems[0].hint
+
+    def test_a_driver_named_after_a_cell_is_no_balancer(self) -> None:
+        fly = female("w; +; Tm3KX-Gal4/TM3, Sb")
+        assert [h.symbols[0] for h in fly.pair("3")] == ["Tm3KX-Gal4", "TM3"]
+
+    def test_a_marker_on_a_balancer_does_not_name_the_chromosome(self) -> None:
+        assert female("w; +/CyO, Tb; +").pair("2")[1].symbols == ("CyO", "Tb")
+
+    def test_a_translocation_balancer_stands_on_both(self) -> None:
+        fly = female("w; T(2;3)SM6a-TM6B/+")
+        assert [h.symbols for h in fly.pair("3")] == [(), ("T(2;3)SM6a-TM6B",)]
+        assert female(format_genotype(fly)) == fly
+        assert female("w; Sp/SM6a-TM6B; Dr") == female("w; Sp/SM6a-TM6B; Dr/SM6a-TM6B")
+
+
+class TestSex:
+    def test_one_text_serves_both(self) -> None:
+        reading = read_genotype("w[1118]; Sp/CyO")
+        assert set(reading.flies()) == {"female", "male"}
+        assert reading.written_sex is None
+        assert reading.male is not None
+        assert reading.male.pair("X")[1].is_y
+        assert format_genotype(reading.male) == "w[1118]/Y; Sp/CyO; +"
+
+    def test_y_names_a_male(self) -> None:
+        assert read_genotype("w/Y; +; +").written_sex == "male"
+
+    @pytest.mark.parametrize(("text", "x"), [
+        ("FM7a/w[1118]", ("w[1118]",)), ("y[1]/w[1118]", ("y[1]",)), ("w l(1)k3[1]/FM7a", ("FM7a",)),
+        ("Df(1)k4, w/FM7c", ("FM7c",)),
+    ])  # fmt: skip
+    def test_males_of_a_heterozygous_x_and_a_note(self, text: str, x: tuple[str, ...]) -> None:
+        reading = read_genotype(text)
+        assert reading.male is not None
+        assert reading.male.pair("X")[0].symbols == x
+        assert "males-of-stock" in codes(reading, "note")
+
+    def test_attached_x(self) -> None:
+        reading = read_genotype("C(1)DX, y[1] f[1]/w[1118]/Y; +; +")
+        assert reading.female is not None
+        assert reading.male is not None
+        assert [h.symbols[0] for h in reading.female.pair("X")] == ["C(1)DX", "Y"]
+        assert [h.symbols[0] for h in reading.male.pair("X")] == ["w[1118]", "Y"]
+
+    def test_a_marked_y(self) -> None:
+        y = read_fly("w/Dp(1;Y)y[+]; +; +", "male").pair("X")[1]
+        assert y.is_y
+        assert y.elements[0].traits.restores == {"y"}
+
+    def test_or_y(self) -> None:
+        reading = read_genotype("w/y w or Y; +; +")
+        assert format_genotype(reading.flies()["male"]) == "w/Y; +; +"
+        assert format_genotype(reading.flies()["female"]) == "w/y w; +; +"
+
+
+class TestChromosomes:
+    def test_what_other_rows_say_settles_an_open_chromosome(self) -> None:
+        known = {"kx-GAL4": Element("kx-GAL4", Kind.INSERTION, "3", component="GAL4")}
+        assert not read_genotype("w; kx-GAL4").ok
+        reading = read_genotype("w; kx-GAL4", known=known)
+        assert reading.canonical == "w; +; kx-GAL4"
+        assert "assumed-chromosome" in codes(reading)
+
+    def test_the_place_outweighs_other_rows_and_that_is_said(self) -> None:
+        known = {"kx-GAL4": Element("kx-GAL4", Kind.INSERTION, "3", component="GAL4")}
+        reading = read_genotype("w; kx-GAL4; +", known=known)
+        assert reading.canonical == "w; kx-GAL4; +"
+        assert "other-rows" in codes(reading, "warning")
+        assert read_genotype("w; kx-GAL4/CyO", known=known).canonical == "w; kx-GAL4/CyO; +"
+
+    def test_the_question_shows_each_way_to_answer_it(self) -> None:
+        first = read_genotype("w; UAS-k").problems[0]
+        assert first.code == "which-chromosome"
+        for answer in ("'...; UAS-k; +'", "'...; +; UAS-k'"):
+            assert answer in first.hint
+        assert read_genotype("w; UAS-k; +").ok
+        assert read_genotype("w; +; UAS-k").ok
+
+    def test_the_number_of_an_insertion_is_only_a_hint(self) -> None:
+        assert read_genotype("w[*]; P{w[+mC]=UAS-k}3").canonical == "w[*]; +; UAS-k@3"
+        assert read_genotype("w[*]; P{w[+mC]=UAS-k}1; +").canonical == "w[*]; UAS-k@1; +"
+        assert not read_genotype("w[*]; P{w[+mC]=UAS-k}1").ok
+
+    def test_elements_without_a_chromosome_make_no_fly(self) -> None:
+        reading = read_genotype("P{lacW}kxg[k1]")
+        assert reading.ok
+        assert not reading.flies()
+        assert [e.symbol for e in reading.elements] == ["lacW@kxg[k1]"]
+        with pytest.raises(GenotypeError) as caught:
+            read_fly("P{lacW}kxg[k1]", "female")
+        assert "(II)" in caught.value.hint
+
+    def test_elements_are_on_the_chromosome_of_their_field(self) -> None:
+        assert element("w; kx-GAL4; UAS-k", "kx-GAL4").chromosome == "2"
+        assert element("w; kx-GAL4/CyO", "kx-GAL4").chromosome == "2"
+
+
+class TestProblems:
+    def test_places_are_in_the_text_as_typed(self) -> None:
+        text = "\ufeff\u2018w<sup>1118</sup>\u00a0; TM6Bb/+; +\u2019"
+        first = read_genotype(text).problems[0]
+        assert first.code == "balancer-typo"
+        assert text[first.start : first.end] == "TM6Bb"
+
+    def test_what_was_put_right_is_said(self) -> None:
+        reading = read_genotype("w\u00a0; P{w[ +mC]=UAS\u2013k}attP40")
+        notes = " ".join(p.message for p in reading.problems)
+        assert "blanks" in notes
+        assert "dashes" in notes
+
+    @pytest.mark.parametrize("text", [
+        "(" * 1_000_000, "w; " + "P{" * 500 + "}" * 500, ";".join(["w"] * 1500), "w; " + "/".join(["A"] * 1500),
+        "w; " + "a" * 3900, "[" * 3000, "w " * 1900, "w" + "(" * 1900 + ")" * 1900, "-" * 3900, "P{a}" * 900, "a@" * 1900,
+    ])  # fmt: skip
+    def test_monsters_are_refused_or_read_and_never_raise(self, text: str) -> None:
+        reading = read_genotype(text)
+        assert reading.text == text
+        assert len(reading.problems) < 2500
+
+    def test_errors_come_first(self) -> None:
+        severities = [p.severity for p in read_genotype("w; kxg[1]/TM6Bb; +/TM3").problems]
+        assert severities[0] is Severity.ERROR
+        assert severities == sorted(severities, key=list(Severity).index)
+
+    def test_read_fly_says_what_is_wrong(self) -> None:
+        with pytest.raises(GenotypeError) as caught:
+            read_fly("w; Sp/TM6Bb", "female")
+        assert "TM6B" in caught.value.hint
+        assert caught.value.problems[0].code == "balancer-typo"
+
+
+class TestJson:
+    def test_the_fly_of_the_contract(self) -> None:
+        fly = female("w[1118]; P{y[+t7.7] w[+mC]=AD-K12}attP40/CyO; TM6B, Tb[1]/+")
+        assert fly_json(fly) == {
+            "sex": "female", "X": [["w[1118]"], ["w[1118]"]], "2": [["AD-K12@attP40"], ["CyO"]],
+            "3": [[], ["TM6B", "Tb[1]"]], "4": [[], []], "genotype": "w[1118]; AD-K12@attP40/CyO; +/TM6B, Tb[1]",
+        }  # fmt: skip
+        assert fly_json(read_fly("w", "male"))["X"] == [["w"], ["Y"]]
+
+    def test_the_reading_of_the_contract(self) -> None:
+        record = reading_json(read_genotype("w; Sp/CyO"))
+        assert set(record) == {"text", "ok", "flies", "canonical", "elements", "problems"}
+        assert set(record["flies"]) == {"female", "male"}
+        assert [set(e) for e in record["elements"]] == [{"symbol", "kind", "chromosome", "site", "position_cM"}] * 3
+        bad = reading_json(read_genotype("w; P{"))
+        assert bad["flies"] == {"female": None, "male": None}
+        assert {"severity", "code", "message", "start", "end"} <= set(bad["problems"][0])
+
+    def test_styles(self) -> None:
+        text = "w[1118]; P{y[+t7.7] w[+mC]=AD-K12}attP40; +"
+        assert format_genotype(female(text), "standard") == text
+        assert format_genotype(female(text)) == "w[1118]; AD-K12@attP40; +"
