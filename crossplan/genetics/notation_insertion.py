@@ -21,7 +21,8 @@ from crossplan.genetics.element import Element, Kind, Traits
 TRANSPOSON = re.compile(r"(?P<letter>P\+PBac|PBac|P|Mi|M|H|TI)\{(?P<content>.*)\}(?P<place>[^{}]*)", re.DOTALL)
 #: older ways of writing the braces: `P[esc+]`, `PBac(y[+mDint2]=vas-Cas9)VK00027`
 OLD_BRACKETS = re.compile(
-    r"(?P<letter>PBac|P|Mi|M)(?:\[(?P<square>[^{}]*)\]|\((?P<round>[^{}]*)\))(?P<place>[^{}\[\]()]*)"
+    r"(?P<letter>PBac|P|Mi|M)(?:\[(?P<square>[^{}\[\]]*(?:\[[^\[\]]*\][^{}\[\]]*)*)\]"
+    r"|\((?P<round>[^{}()]*(?:\([^()]*\)[^{}()]*)*)\))(?P<place>[^{}\[\]()]*)"
 )
 _NESTED = re.compile(r"(?:P\+PBac|PBac|P|Mi|M|H|TI)\{")
 _GENE_HIT = re.compile(r"(?P<gene>[^\[\]{}]+?)\[[^\[\]]*\].*")

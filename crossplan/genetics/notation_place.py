@@ -310,18 +310,21 @@ class Placer:
         low = max(before, default=-1) + 1 + (field.index if not before else 0)
         open_to = [n for n in PAIRS[low : min(after, default=3)] if n != "4"] or ["4"]
         written = self.text[field.field.start : field.field.end].strip()
-        ways = "; ".join(f"for {n} write {self._way(field, n)}" for n in open_to) if len(written) <= 60 else ""
+        ways = "; ".join(f"for {n} write {self._way(field, n, names)}" for n in open_to)
         self._error("which-chromosome", f"nothing says which chromosome {field.symbols()} is on", field,
-                    ways or "write all fields, with + for wild type, or a label such as (II)")  # fmt: skip
+                    ways if len(written) <= 60 else "write all fields, with + for wild type, or a label such as (II)")  # fmt: skip
 
-    def _way(self, field: ReadField, name: str) -> str:
-        """Return the field written so that it is surely that chromosome."""
-        written = self.text[field.field.start : field.field.end].strip()
-        places = ["+"] * (_FOURTH if name == "4" else 3)
-        if field.index == 1:
-            places[0] = "..."
-        places[PAIRS.index(name)] = written
-        return f"'{'; '.join(places)}'"
+    def _way(self, field: ReadField, chromosome: str, names: Sequence[str]) -> str:
+        """Return the genotype written so that the field is surely that chromosome."""
+        places = ["+"] * _FOURTH
+        for one, name in zip(self.fields, names, strict=True):
+            where = chromosome if one is field else name
+            written = self.text[one.field.start : one.field.end].strip()
+            if where:
+                places[PAIRS.index(where)] = written
+            elif one.index == 0:
+                places[0] = "..."
+        return f"'{'; '.join(places if places[-1] != '+' else places[:-1])}'"
 
 
 def _without_empty_end(fields: Sequence[ReadField]) -> list[ReadField]:

@@ -2,7 +2,8 @@
 
 Every culture has a table of what happens when it is set up on each working day (culture.py). A constraint solver chooses
 one day for each, so that parents are there when they are needed and every target is tested in its window. Objectives, in
-order: nothing late; the last assay as early as it can be; as little work as possible on the fullest day. Nothing is ever
+order: nothing late; the last assay within a few days of the earliest possible; as little work as possible on the fullest
+day. Nothing is ever
 planned for a day off: such days are not in the tables.
 
 The solver is OR-Tools CP-SAT with one worker, a fixed seed and deterministic limits, so the same input gives the same days.
@@ -19,7 +20,9 @@ from crossplan.schedule.culture import MOST_COLLECTIONS, Biology, Culture, Days,
 from crossplan.schedule.week import HORIZON_DAYS, WorkWeek
 
 #: deterministic effort for each objective, in the solver's own units (about seconds on a usual machine)
-EFFORT = (2.0, 1.5)
+EFFORT = (1.0, 2.0, 0.5)
+#: how many days after the earliest possible end the last assay may be, to keep the fullest day low
+SLACK_DAYS = 5
 #: minutes of work: our own estimates, common practice, no source
 MINUTES_PER_VIAL = {"set up": 4, "clear": 1, "collect": 5, "virgins": 4, "discard": 0.5, "expand": 3}
 MINUTES_PER_ASSAY_FLY = 0.5
@@ -196,16 +199,28 @@ class _Solver:
         if status not in (self.cp.OPTIMAL, self.cp.FEASIBLE):
             return Schedule("no days found", 0.0, {}, {}, {}, (), tuple(self.cultures))
         proved = status == self.cp.OPTIMAL
-        self.model.add(first <= round(solver.objective_value))
+        self.model.add(first <= round(solver.objective_value) + SLACK_DAYS)
         self._hint(solver)
         solver.parameters.max_deterministic_time = EFFORT[1]
-        set_ups = sum(o.set_up * p for c in self.choices.values() for o, p in zip(c.options, c.picks, strict=True))
-        self.model.minimize(1000 * peak + set_ups)
+        solver.parameters.linearization_level = 2
+        self.model.minimize(peak)
         status = solver.solve(self.model)
         best = max(solver.best_objective_bound, 0.0)
         gap = (solver.objective_value - best) / max(solver.objective_value, 1.0)
         proved = proved and status == self.cp.OPTIMAL
+        self._as_early_as_can_be(solver, peak)
         return self._schedule(solver, "optimal" if proved else "feasible", 0.0 if proved else gap)
+
+    def _as_early_as_can_be(self, solver: Any, peak: Any) -> None:
+        """Among plans with this fullest day, move everything as early as a little more effort finds."""
+        self.model.add(peak <= round(solver.value(peak)))
+        self._hint(solver)
+        solver.parameters.max_deterministic_time = EFFORT[2]
+        self.model.minimize(
+            sum(o.set_up * p for c in self.choices.values() for o, p in zip(c.options, c.picks, strict=True))
+        )
+        status = solver.solve(self.model)
+        assert status in (self.cp.OPTIMAL, self.cp.FEASIBLE), "the plan at hand is one"
 
     def _link_to_parents(self, choice: _Choice) -> None:
         for parent, as_mother in choice.culture.parents:

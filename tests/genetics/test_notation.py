@@ -213,10 +213,9 @@ class TestChromosomes:
     def test_the_question_shows_each_way_to_answer_it(self) -> None:
         first = read_genotype("w; UAS-k").problems[0]
         assert first.code == "which-chromosome"
-        for answer in ("'...; UAS-k; +'", "'...; +; UAS-k'"):
-            assert answer in first.hint
-        assert read_genotype("w; UAS-k; +").ok
-        assert read_genotype("w; +; UAS-k").ok
+        for answer in ("w; UAS-k; +", "w; +; UAS-k"):
+            assert f"'{answer}'" in first.hint
+            assert read_genotype(answer).canonical == answer
 
     def test_the_number_of_an_insertion_is_only_a_hint(self) -> None:
         assert read_genotype("w[*]; P{w[+mC]=UAS-k}3").canonical == "w[*]; +; UAS-k@3"

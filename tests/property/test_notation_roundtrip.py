@@ -107,14 +107,18 @@ def _sound(reading: Reading, text: str) -> None:
 PIECES = st.sampled_from(
     [";", "/", ",", " ", "+", "w", "y", "Y", "CyO", "TM3", "Sb", "[", "]", "{", "}", "(", ")", "P{", "attP40", "@", "UAS-a",
      "or", "x", "in", "(II)", "=", "-", "1118", "Df(2L)a", "C(1)DX", "T(2;3)SM6a-TM6B", "\u00a0", "\u200b", "(CyO)", "FlpStop",
-     "<sup>", "</sup>", "^", "&Dgr;", "\n", "#NAME?", "\u2078", "TM6B", ">", "_", "."]
+     "<sup>", "</sup>", "^", "&Dgr;", "\n", "#NAME?", "\u2078", "TM6B", ">", "_", ".",
+     "P{x}4", "P{x}1", "; ", "/", " ", "Sb[1]", "UAS-a", "w", "l(2)a", "lethal", "I", "GFP", "kx-", "[y]"]
 )  # fmt: skip
 
 
 @given(st.lists(PIECES, max_size=14).map("".join))
 @settings(max_examples=600, deadline=None)
 def test_no_heap_of_pieces_breaks_the_reader(text: str) -> None:
-    _sound(read_genotype(text), text)
+    reading = read_genotype(text)
+    _sound(reading, text)
+    for sex, fly in reading.flies().items():
+        assert read_fly(format_genotype(fly), sex) == fly
 
 
 @given(st.text(max_size=60))
