@@ -73,7 +73,7 @@ _STOCK_NUMBER = re.compile(r"(?:BDSC|DGRC|VDRC|DGGR)[:_# ]?\d{3,}")
 _GLUED_CROSS = re.compile(r"(?i)(?:dbd|ad|gal4)x(?:\d*x?uas|uas)")
 _MOST_UNDERSCORES: Final = 2
 #: what cannot be the name of an element: a sign in front, a word that divides, a chromosome, a Y hung on
-_NO_SYMBOL = re.compile(r"[^\w{]|(?:or|and|in|at|oder|x|X|I|II|III|IV|V)(?:\(|$)|.*\(Y\)|.*@.*@"
+_NO_SYMBOL = re.compile(r"[^\w{]|(?:or|and|in|at|oder|x|X|I|II|III|IV|V)(?:\(|$)|.*\(Y\)|.*@.*@|.*@$|.*<|.*>$|[^{]*=[^{]*$"
                         r"|(?:Df|Dp|In|T|Tp|R|C|Ab)\([^()]*\)$")  # fmt: skip
 _LETHAL_WORD = re.compile(r"(?i)lethal\w*|\[?l(?:ethal)?\]")
 
@@ -382,7 +382,7 @@ class WordReader:
 
     def _bare_site(self, item: Item) -> Word | None:
         """Read the name of a landing site by itself as the empty site; a plain band (`51D`) is not one."""
-        if "att" not in item.text.lower() or item.text[:1].isdigit():
+        if item.text[:1].isdigit():
             return None
         site = self.catalogue.site(item.text)
         if site is None:

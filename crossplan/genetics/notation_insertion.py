@@ -18,7 +18,7 @@ from crossplan.genetics.catalogue import DIVISIONS, USUAL_INSERTION_MARKER, Cata
 from crossplan.genetics.chromosome import CHROMOSOME_OF_ARM
 from crossplan.genetics.element import Element, Kind, Traits
 
-TRANSPOSON = re.compile(r"(?P<letter>P\+PBac|PBac|P|Mi|M|H|TI)\{(?P<content>.*)\}(?P<place>[^{}]*)", re.DOTALL)
+TRANSPOSON = re.compile(r"(?P<letter>P\+PBac|PBac|P|Mi|M|H|TI)\{(?P<content>.*)\}(?P<place>[^{}=<>]*)", re.DOTALL)
 #: older ways of writing the braces: `P[esc+]`, `PBac(y[+mDint2]=vas-Cas9)VK00027`
 OLD_BRACKETS = re.compile(
     r"(?P<letter>PBac|P|Mi|M)(?:\[(?P<square>[^{}\[\]]*(?:\[[^\[\]]*\][^{}\[\]]*)*)\]"

@@ -49,7 +49,7 @@ def _pair(pair: Pair, style: Style) -> str:
 
 
 def _small_y(homologue: Homologue) -> bool:
-    return homologue.symbols == ("y",)
+    return homologue.symbols[:1] == ("y",)
 
 
 def _homologue(homologue: Homologue, style: Style) -> str:

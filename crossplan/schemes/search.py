@@ -201,15 +201,20 @@ class _Search:
         states = [s for s, f in self.found.items() if f.level <= below]
         return [s for s in states if sexes[s[0]] == FEMALE], [s for s in states if sexes[s[0]] == MALE]
 
-    def breed(self, level: int, last: bool, carriers: bool = False) -> bool:
+    def breed(self, level: int, last: bool, carried: range | None = None) -> bool:
         """Add every fly of `level` to what was found; return False when the budget does not allow it.
 
         With `last`, the flies are bred to be parents of the last cross only, and those that no last cross can
         use are left out: a parent must give, on each chromosome, a gamete that the wanted flies may carry.
-        With `carriers`, only crosses of which a parent carries something wanted are made.
+        With `carried`, only crosses whose parents carry that many of the wanted elements between them are made.
         """
         mothers, fathers = self.parents(level - 1)
-        crosses = [(m, f) for m in mothers for f in fathers if not carriers or self.content(m) or self.content(f)]
+        crosses = [
+            (m, f)
+            for m in mothers
+            for f in fathers
+            if carried is None or len(self.content(m) | self.content(f)) in carried
+        ]
         if len(crosses) > self.budget:
             return False
         for mother, father in crosses:
@@ -217,9 +222,14 @@ class _Search:
         return True
 
     def breed_last(self, level: int) -> Iterator[bool]:
-        """Breed the parents of a last cross in two parts, the promising one first; yield whether each was done."""
-        for carriers in (True, False):
-            yield self.breed(level, last=True, carriers=carriers)
+        """Breed the parents of a last cross in parts, the promising one first; yield whether each was done.
+
+        A parent made in two generations is most likely to pay when it joins two wanted elements.
+        """
+        most = len(self.wish.components) + 1
+        parts = (range(1, most), range(1)) if level == 1 else (range(2, most), range(1, 2), range(1))
+        for carried in parts:
+            yield self.breed(level, last=True, carried=carried)
 
     def _breed_pair(self, mother: State, father: State, level: int, last: bool) -> None:
         options = []

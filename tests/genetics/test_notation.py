@@ -192,7 +192,7 @@ class TestSex:
     def test_or_y(self) -> None:
         reading = read_genotype("w/y w or Y; +; +")
         assert format_genotype(reading.flies()["male"]) == "w/Y; +; +"
-        assert format_genotype(reading.flies()["female"]) == "w/y w; +; +"
+        assert format_genotype(reading.flies()["female"]) == "y w/w; +; +"
 
 
 class TestChromosomes:

@@ -81,7 +81,7 @@ UNDERSTOOD = [
     ("w[1118]/Y; UAS-kx@attP40", "w[1118]/Y; UAS-kx@attP40; +"),
     ("w/Dp(1;Y)y[+]; +; +", "w/Dp(1;Y)y[+]; +; +"),
     ("C(1)DX, y[1] f[1]/Y", "C(1)DX, y[1] f[1]/Y; +; +"),
-    ("y w/w or Y; +; +", "w/y w; +; +"),
+    ("y w/w or Y; +; +", "y w/w; +; +"),
     ("w(Y); UAS-kx@attP40", "w; UAS-kx@attP40; +"),
     # noise
     ("\ufeffw; Sp/CyO", "w; Sp/CyO; +"),
