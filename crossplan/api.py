@@ -130,18 +130,6 @@ class CrossResult:
             causes[zygote.cause] = causes.get(zygote.cause, 0.0) + float(zygote.share_of_zygotes)
         return sorted(causes.items(), key=lambda item: (-item[1], item[0]))
 
-    def remarks(self) -> list[str]:
-        """Return what qualifies the shares: leaky balancers, elements of unknown place."""
-        remarks = [
-            f"{leak.element} lies outside the cover of {leak.balancer}: in up to {100 * leak.rate:.1f} % of eggs it"
-            " may have left its homologue (not counted above)"
-            for leak in self.progeny.leaks
-        ]
-        if self.progeny.unplaced:
-            names = ", ".join(dict.fromkeys(self.progeny.unplaced))
-            remarks.append(f"map position unknown: {names}; recombination with it is not counted")
-        return remarks
-
 
 def cross_flies(
     mother: str,
@@ -210,7 +198,7 @@ def progeny_json(result: CrossResult) -> dict[str, Any]:
             for d in progeny.dead
         ],
         "alive": float(progeny.alive),
-        "remarks": result.remarks(),
+        "remarks": progeny.remarks(),
     }
 
 

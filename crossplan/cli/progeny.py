@@ -83,5 +83,5 @@ def _remarks(result: CrossResult) -> None:
         out.print(f"{percent(1 - float(progeny.alive))} of the zygotes die:")
         for cause, share in result.causes_of_death():
             out.print(f"  {percent(share)}  {cause}")
-    for remark in result.remarks():
+    for remark in progeny.remarks():
         out.print(remark, style="yellow")

@@ -73,7 +73,7 @@ _STOCK_NUMBER = re.compile(r"(?:BDSC|DGRC|VDRC|DGGR)[:_# ]?\d{3,}")
 _GLUED_CROSS = re.compile(r"(?i)(?:dbd|ad|gal4)x(?:\d*x?uas|uas)")
 _MOST_UNDERSCORES: Final = 2
 #: what cannot be the name of an element: a sign in front, a word that divides, a chromosome, a Y hung on
-_NO_SYMBOL = re.compile(r"[^\w{]|(?:or|and|in|at|oder|x|X|I|II|III|IV|V)(?:\(|$)|.*\(Y\)|.*@.*@|.*@$|.*<|.*>$|[^{]*=[^{]*$"
+_NO_SYMBOL = re.compile(r"[^\w{]|(?:or|and|in|at|oder|x|X|I|II|III|IV|V)(?:\(|$)|.*\(Y\)|.*@.*@|.*@$|.*<|.*>$|(?!(?:PBac|P|Mi|M)[(\[])[^{]*=[^{]*$"
                         r"|(?:Df|Dp|In|T|Tp|R|C|Ab)\([^()]*\)$")  # fmt: skip
 _LETHAL_WORD = re.compile(r"(?i)lethal\w*|\[?l(?:ethal)?\]")
 

@@ -66,6 +66,18 @@ class Progeny:
     leaks: tuple[Leak, ...]
     unplaced: tuple[str, ...]
 
+    def remarks(self) -> list[str]:
+        """Return what qualifies the shares, in sentences: leaky balancers, elements of unknown place."""
+        found = [
+            f"{leak.element} lies outside the cover of {leak.balancer}: in up to {100 * leak.rate:.1f} % of eggs it"
+            " may have left its homologue (not counted in the shares)"
+            for leak in self.leaks
+        ]
+        if self.unplaced:
+            names = ", ".join(dict.fromkeys(self.unplaced))
+            found.append(f"map position unknown: {names}; recombination with it is not counted")
+        return found
+
 
 def zygote_pairs(
     mother: Pair, father: Pair, chromosome: str, map_function: MapFunction = "haldane"

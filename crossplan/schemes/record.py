@@ -174,14 +174,7 @@ def _signs_of_others(kept: ProgenyClass, classes: Sequence[ProgenyClass]) -> lis
 
 
 def _cautions(cross: Cross) -> list[str]:
-    found = [
-        f"{leak.element} lies outside the cover of {leak.balancer}: in up to {100 * leak.rate:.1f} % of eggs it may"
-        " have left its homologue"
-        for leak in cross.progeny.leaks
-    ]
-    if cross.progeny.unplaced:
-        names = ", ".join(dict.fromkeys(cross.progeny.unplaced))
-        found.append(f"the map position of {names} is not known; recombination with it is not counted")
+    found = cross.progeny.remarks()
     for parent in (cross.mother, cross.father):
         if isinstance(parent, StockParent) and not parent.pick_is_pure:
             found.append(
