@@ -292,3 +292,241 @@ class TestJson:
         text = "w[1118]; P{y[+t7.7] w[+mC]=AD-K12}attP40; +"
         assert format_genotype(female(text), "standard") == text
         assert format_genotype(female(text)) == "w[1118]; AD-K12@attP40; +"
+
+
+# tables of our own: what a fly worker reads in a genotype, and where the fault is in one that is none
+
+#: text, and the pairs of the female in the form of the contract (those not named are wild type); `male X` where the X of
+#: the male is not the first of hers
+GENOTYPES: list[tuple[str, dict[str, list[list[str]]]]] = [
+    ("w[1118]", {"X": [["w[1118]"], ["w[1118]"]]}),
+    ("w[1118]/Y; +; +", {"X": [["w[1118]"], ["w[1118]"]]}),
+    ("y[1] w[1118]", {"X": [["y[1]", "w[1118]"], ["y[1]", "w[1118]"]]}),
+    ("yw; Sp/CyO; Dr/TM3, Sb",
+     {"X": [["y", "w"], ["y", "w"]], "2": [["Sp"], ["CyO"]], "3": [["Dr"], ["TM3", "Sb"]]}),
+    ("w; AD-K12@attP40; DBD-K12@attP2",
+     {"X": [["w"], ["w"]], "2": [["AD-K12@attP40"], ["AD-K12@attP40"]], "3": [["DBD-K12@attP2"], ["DBD-K12@attP2"]]}),
+    ("w[1118]; P{y[+t7.7] w[+mC]=AD-K12}attP40/CyO; P{y[+t7.7] w[+mC]=DBD-Q7}attP2/TM6B, Tb[1]",
+     {"X": [["w[1118]"], ["w[1118]"]], "2": [["AD-K12@attP40"], ["CyO"]], "3": [["DBD-Q7@attP2"], ["TM6B", "Tb[1]"]]}),
+    ("w; AD-K12 (attP40) / CyO ; +", {"X": [["w"], ["w"]], "2": [["AD-K12@attP40"], ["CyO"]]}),
+    ("w; UAS-kx@VK00037 AD-K12@attP40; +",
+     {"X": [["w"], ["w"]], "2": [["UAS-kx@VK00037", "AD-K12@attP40"], ["UAS-kx@VK00037", "AD-K12@attP40"]]}),
+    ("w; AD-K12@attP40 UAS-kx@VK00037; +",
+     {"X": [["w"], ["w"]], "2": [["UAS-kx@VK00037", "AD-K12@attP40"], ["UAS-kx@VK00037", "AD-K12@attP40"]]}),
+    ("w; kx-GAL4(II)", {"X": [["w"], ["w"]], "2": [["kx-GAL4"], ["kx-GAL4"]]}),
+    ("w; kx-GAL4 (III)", {"X": [["w"], ["w"]], "3": [["kx-GAL4"], ["kx-GAL4"]]}),
+    ("w; +; UAS-kx/TM6B, Tb", {"X": [["w"], ["w"]], "3": [["UAS-kx"], ["TM6B", "Tb"]]}),
+    ("w[*]; M{3xP3-RFP.attP=UAS-kx}ZH-86Fb",
+     {"X": [["w[*]"], ["w[*]"]], "3": [["UAS-kx@ZH-86Fb"], ["UAS-kx@ZH-86Fb"]]}),
+    ("w[1118]; PBac{y[+mDint2] w[+mC]=UAS-kx}VK00027",
+     {"X": [["w[1118]"], ["w[1118]"]], "3": [["UAS-kx@VK00027"], ["UAS-kx@VK00027"]]}),
+    ("+; cn[1] bw[1]; +", {"2": [["cn[1]", "bw[1]"], ["cn[1]", "bw[1]"]]}),
+    ("b pr cn; st", {"2": [["b", "pr", "cn"], ["b", "pr", "cn"]], "3": [["st"], ["st"]]}),
+    ("+; b[1] pr[1]/+; e[1]", {"2": [["b[1]", "pr[1]"], []], "3": [["e[1]"], ["e[1]"]]}),
+    ("+; +; +; ci[D]/+", {"4": [["ci[D]"], []]}),
+    ("w; +; +; ey[D]/ci[D]", {"X": [["w"], ["w"]], "4": [["ci[D]"], ["ey[D]"]]}),
+    ("FM7a/w[1118]", {"X": [["w[1118]"], ["FM7a"]]}),
+    ("FM7c/Y; +; +", {"X": [["FM7c"], ["FM7c"]]}),
+    ("l(1)k3[1]/FM7a", {"X": [["l(1)k3[1]"], ["FM7a"]], "male X": [["FM7a"], ["Y"]]}),
+    ("w UAS-kx@attP18; +; +", {"X": [["w", "UAS-kx@attP18"], ["w", "UAS-kx@attP18"]]}),
+    ("y[1] v[1]; P{y[+t7.7] v[+t1.8]=k.IR}attP40",
+     {"X": [["y[1]", "v[1]"], ["y[1]", "v[1]"]], "2": [["k.IR@attP40"], ["k.IR@attP40"]]}),
+    ("w; Sco/SM6a", {"X": [["w"], ["w"]], "2": [["Sco"], ["SM6a"]]}),
+    ("w; In(2LR)Gla/CyO", {"X": [["w"], ["w"]], "2": [["CyO"], ["In(2LR)Gla"]]}),
+    ("w; Df(2L)k4/CyO; +", {"X": [["w"], ["w"]], "2": [["Df(2L)k4"], ["CyO"]]}),
+    ("w; +; Df(3R)k6/TM6C, Sb[1] Tb[1]",
+     {"X": [["w"], ["w"]], "3": [["Df(3R)k6"], ["TM6C", "Sb[1]", "Tb[1]"]]}),
+    ("w; l(2)k5[1] FRT40A/CyO, Kr-GFP",
+     {"X": [["w"], ["w"]], "2": [["FRT40A", "l(2)k5[1]"], ["CyO", "Kr-GFP"]]}),
+    ("w; FRT42D l(2)k6[1]/CyO", {"X": [["w"], ["w"]], "2": [["FRT42D", "l(2)k6[1]"], ["CyO"]]}),
+    ("w; +; FRT82B l(3)k2[1]/TM6B, Tb[1]",
+     {"X": [["w"], ["w"]], "3": [["FRT82B", "l(3)k2[1]"], ["TM6B", "Tb[1]"]]}),
+    ("P{ry[+t7.2]=hsFLP}1 w; +; +", {"X": [["w", "hsFLP@1"], ["w", "hsFLP@1"]]}),
+    ("w; tub-GAL80[ts]@20/CyO; +", {"X": [["w"], ["w"]], "2": [["tub-GAL80[ts]@20"], ["CyO"]]}),
+    ("w[1118]; Sp/CyO; TM2/TM6B, Tb[1]",
+     {"X": [["w[1118]"], ["w[1118]"]], "2": [["Sp"], ["CyO"]], "3": [["TM2"], ["TM6B", "Tb[1]"]]}),
+    ("w; +; MKRS/TM6B", {"X": [["w"], ["w"]], "3": [["MKRS"], ["TM6B"]]}),
+    ("w; T(2;3)SM6a-TM6B/+",
+     {"X": [["w"], ["w"]], "2": [[], ["T(2;3)SM6a-TM6B"]], "3": [[], ["T(2;3)SM6a-TM6B"]]}),
+    ("C(1)DX, y[1] f[1]/Y; +; +", {"X": [["C(1)DX", "y[1]", "f[1]"], ["Y"]], "male X": [[], ["Y"]]}),
+    ("w/Dp(1;Y)y[+]; +; +", {"X": [["w"], ["w"]], "male X": [["w"], ["Dp(1;Y)y[+]"]]}),
+    ("w; Dp(1;2)k1/+; +", {"X": [["w"], ["w"]], "2": [["Dp(1;2)k1"], []]}),
+    ("w1118;Sp/CyO;MKRS/TM6B,Tb",
+     {"X": [["w[1118]"], ["w[1118]"]], "2": [["Sp"], ["CyO"]], "3": [["MKRS"], ["TM6B", "Tb"]]}),
+    ("w<sup>1118</sup>; Sp/CyO", {"X": [["w[1118]"], ["w[1118]"]], "2": [["Sp"], ["CyO"]]}),
+    ("w^{1118}; Sp/CyO", {"X": [["w[1118]"], ["w[1118]"]], "2": [["Sp"], ["CyO"]]}),
+    ("w\u00b9\u00b9\u00b9\u2078; Sp/CyO", {"X": [["w[1118]"], ["w[1118]"]], "2": [["Sp"], ["CyO"]]}),
+    ("+", {}),
+    ("Canton-S", {}),
+    ("+; +; +", {}),
+    ("w; kx[7]/CyO; +", {"X": [["w"], ["w"]], "2": [["kx[7]"], ["CyO"]]}),
+    ("w; P{lacW}e[k1]/TM3, Sb[1]", {"X": [["w"], ["w"]], "3": [["lacW@e[k1]"], ["TM3", "Sb[1]"]]}),
+    ("w; P{lacW}l(2)k9[1]/CyO", {"X": [["w"], ["w"]], "2": [["lacW@l(2)k9[1]"], ["CyO"]]}),
+    ("w; AD-K12@attP40/UAS-kx@attP40; +", {"X": [["w"], ["w"]], "2": [["AD-K12@attP40"], ["UAS-kx@attP40"]]}),
+    ("w; attP40; +", {"X": [["w"], ["w"]], "2": [["attP40"], ["attP40"]]}),
+    ("w; +; attP2", {"X": [["w"], ["w"]], "3": [["attP2"], ["attP2"]]}),
+    ("w; sna[Sco]/CyO", {"X": [["w"], ["w"]], "2": [["sna[Sco]"], ["CyO"]]}),
+    ("w; wg[Sp-1]/CyO", {"X": [["w"], ["w"]], "2": [["wg[Sp-1]"], ["CyO"]]}),
+    ("w; +; TM3, Ser[1]/Sb[1]", {"X": [["w"], ["w"]], "3": [["Sb[1]"], ["TM3", "Ser[1]"]]}),
+    ("w; +; Dr[Mio]/TM3, P{w[+mC]=kx}3, Sb[1]",
+     {"X": [["w"], ["w"]], "3": [["Dr[Mio]"], ["TM3", "Sb[1]", "kx@3"]]}),
+    ("w; CyO-GFP/Sp", {"X": [["w"], ["w"]], "2": [["Sp"], ["CyO-GFP"]]}),
+    ("w; Sp/cyo", {"X": [["w"], ["w"]], "2": [["Sp"], ["CyO"]]}),
+    ("w; +; Ubx[130]/TM2", {"X": [["w"], ["w"]], "3": [["Ubx[130]"], ["TM2"]]}),
+    ("Basc/+; +; +", {"X": [[], ["Basc"]]}),
+    ("w; R76F05-kx@attP40; +", {"X": [["w"], ["w"]], "2": [["R76F05-kx@attP40"], ["R76F05-kx@attP40"]]}),
+    ("Mi{ET1}e[k1]", {"3": [["ET1@e[k1]"], ["ET1@e[k1]"]]}),
+    ("w[1118] f[1]; Sp/CyO; +", {"X": [["w[1118]", "f[1]"], ["w[1118]", "f[1]"]], "2": [["Sp"], ["CyO"]]}),
+    ("w sn[3]; +; +", {"X": [["w", "sn[3]"], ["w", "sn[3]"]]}),
+    ("+/w[1118]; b[1]/CyO", {"X": [["w[1118]"], []], "2": [["b[1]"], ["CyO"]], "male X": [[], ["Y"]]}),
+    ("w; 20XUAS-kx@su(Hw)attP5; +",
+     {"X": [["w"], ["w"]], "2": [["20XUAS-kx@su(Hw)attP5"], ["20XUAS-kx@su(Hw)attP5"]]}),
+    ("y[1] w[1118]/y[1] w[1118]; +; +", {"X": [["y[1]", "w[1118]"], ["y[1]", "w[1118]"]]}),
+]  # fmt: skip
+
+#: text, the first problem, where the characters that it points at begin, and those characters
+MALFORMED: list[tuple[str, str, int, str]] = [
+    ("", "empty", 0, ""),
+    ("   ", "empty", 0, "   "),
+    ("\u00a0\u00a0", "empty", 0, "\u00a0\u00a0"),
+    (";;;", "empty", 0, ";;;"),
+    ("w; Sp/CyO; TM3/TM6B; +; +", "five-fields", 24, "+"),
+    ("w; Sco/CyO/Sp; +", "three-homologues", 3, "Sco/CyO/Sp"),
+    ("w; Sp/TM3, Sb; +", "chromosomes-disagree", 3, "Sp/TM3, Sb"),
+    ("w; CyO/+; Dr/SM6a", "chromosomes-disagree", 10, "Dr/SM6a"),
+    ("w; FM7c/+; +", "wrong-place", 3, "FM7c/+"),
+    ("w; DBD-K@attP2; AD-K@attP40", "wrong-place", 3, "DBD-K@attP2"),
+    ("w; +; UAS-kx/Y", "y-on-autosome", 6, "UAS-kx/Y"),
+    ("w/Y/Y; +; +", "three-homologues", 0, "w/Y/Y"),
+    ("Y/Y; +; +", "sex-chromosomes", 0, "Y/Y"),
+    ("w; P{UAS-kx; +", "bracket", 4, "{"),
+    ("w; P{w[+mC=UAS-kx}2; +", "bracket", 6, "[+mC=UAS-kx}"),
+    ("w; P{w[+mC]=UAS-kx)attP40; +", "bracket", 4, "{w[+mC]=UAS-kx)"),
+    ("w[1118]]; Sp/CyO", "bracket", 7, "]"),
+    ("w; Sp)/CyO", "bracket", 5, ")"),
+    ("w; Sp//CyO", "empty-homologue", 5, "/"),
+    ("w; Sp/; +", "empty-homologue", 5, "/"),
+    ("w; Sp/Cy0; +", "balancer-typo", 6, "Cy0"),
+    ("w; Sp/TM6Bb; +", "balancer-typo", 6, "TM6Bb"),
+    ("w; CyO SM6a/Sp; +", "two-balancers", 3, "CyO SM6a"),
+    ("w; AD-K@attP40, UAS-k@attP40; +", "same-site", 3, "AD-K@attP40, UAS-k@attP40"),
+    ("w; P{a}1P{b}2/CyO", "run-together", 3, "P{a}1P{b}2"),
+    ("w; Sp/CyO x w; Dr/TM3", "cross", 10, "x"),
+    ("w; Sp or Sco/CyO", "choice", 6, "or"),
+    ("#NAME?", "spreadsheet-error", 0, "#NAME?"),
+    ("w; #REF!; +", "spreadsheet-error", 3, "#REF!"),
+    ("=A1&B1", "formula", 0, "=A1&B1"),
+    ("w; 1-Sep/CyO; +", "date", 3, "1-Sep"),
+    ("w; 2.30E+05/CyO", "number", 3, "2.30E+05"),
+    ("w; Sp/CyO\nw; Dr/TM3, Sb", "two-genotypes", 0, "w; Sp/CyO\nw; Dr/TM3, Sb"),
+    ("w; Sp\x00/CyO", "control-character", 5, "\x00"),
+    ("w; \u202eSp/CyO", "control-character", 3, "\u202e"),
+    ("w; UAS-kx", "which-chromosome", 3, "UAS-kx"),
+    ("w; Sp/CyO; + Dr", "plus-with-symbols", 11, "+ Dr"),
+    ("w[]; Sp/CyO", "empty-allele", 0, "w[]"),
+    ("w; ???; +", "no-symbol", 3, "???"),
+    ("CyO/+; w", "wrong-order", 0, "CyO/+"),
+    ("w/y; +; +", "y-or-yellow", 0, "w/y"),
+    ("w; Sp/CyO; (see note)", "remark-only", 11, "(see note)"),
+    ("w; Sp/CyOxTM3", "balancer-typo", 6, "CyOxTM3"),
+    ("w; CyO-TM3/Sp", "two-balancers", 3, "CyO-TM3"),
+    ("w; Sp/T(2;3)SM6a-TM6B", "linked", 3, "Sp/T(2;3)SM6a-TM6B"),
+    ("w; Df(5L)k1/CyO", "no-such-chromosome", 3, "Df(5L)k1"),
+    ("UAS-kx (V)", "no-such-chromosome", 0, "UAS-kx (V)"),
+    ("w; w__x__y; +", "underscores", 3, "w__x__y"),
+    ("w; kx-GAL4BDSC1234; +", "stock-number", 3, "kx-GAL4BDSC1234"),
+    ("((((((((((((((((w))))))))))))))))", "too-deep", 12, "("),
+    ("w; UAS-kx/UAS-ky@attP2/TM3; +", "three-homologues", 3, "UAS-kx/UAS-ky@attP2/TM3"),
+    ("w; b[1]/e[1]; +", "chromosomes-disagree", 3, "b[1]/e[1]"),
+    ("w; Sp Y/CyO; +", "y-with-others", 3, "Sp Y"),
+    ("+; +; TM6B/TM6B/Sb", "three-homologues", 6, "TM6B/TM6B/Sb"),
+    ("w; kx>UAS-k", "which-chromosome", 3, "kx>UAS-k"),
+    ("R12-GAL4>UAS-kx", "which-chromosome", 0, "R12-GAL4>UAS-kx"),
+    ("w; +; kx_a_b_c_d; +", "underscores", 6, "kx_a_b_c_d"),
+    ("w; TM3/Sp; CyO/Dr", "chromosomes-disagree", 3, "TM3/Sp"),
+    ("w; 17/05/2024; +", "date", 3, "17/05/2024"),
+    ("{\"x\"}", "braces", 0, "{\"x\"}"),
+]  # fmt: skip
+
+#: text, and the elements of the contract: symbol, kind, chromosome, site, and the place on the map where it has one
+ELEMENTS: list[tuple[str, list[tuple[str, str, str, str | None, float | None]]]] = [
+    ("y[1] w[1118]", [("y[1]", "allele", "X", None, 0.0), ("w[1118]", "allele", "X", None, 1.5)]),
+    ("w[1118]; AD-K12@attP40/CyO", [
+        ("w[1118]", "allele", "X", None, 1.5), ("AD-K12@attP40", "insertion", "2", "attP40", 15.1),
+        ("CyO", "balancer", "2", None, None),
+    ]),
+    ("+; cn[1] bw[1]/b[1]; e[1]", [
+        ("cn[1]", "allele", "2", None, 57.5), ("bw[1]", "allele", "2", None, 104.5), ("b[1]", "allele", "2", None, 48.5),
+        ("e[1]", "allele", "3", None, 70.7),
+    ]),
+    ("+; +; Df(3R)k6/TM6B, Tb[1]", [
+        ("Df(3R)k6", "aberration", "3", None, None), ("TM6B", "balancer", "3", None, None), ("Tb[1]", "allele", "3", None, 90.6),
+    ]),
+    ("w[1118]/Dp(1;Y)y[+]; +; +", [("w[1118]", "allele", "X", None, 1.5), ("Dp(1;Y)y[+]", "Y", "Y", None, None)]),
+    ("+; kxg7; +", [("kxg7", "unknown", "2", None, None)]),
+]  # fmt: skip
+
+
+class TestTables:
+    def test_the_tables_have_no_row_twice(self) -> None:
+        for table in (GENOTYPES, MALFORMED):
+            texts = [row[0] for row in table]
+            assert len(set(texts)) == len(texts)
+
+    @pytest.mark.parametrize(("text", "pairs"), GENOTYPES, ids=lambda v: v if isinstance(v, str) else "")
+    def test_flies(self, text: str, pairs: dict[str, list[list[str]]]) -> None:
+        record = reading_json(read_genotype(text))
+        assert record["ok"]
+        autosomes = {name: pairs.get(name, [[], []]) for name in ("2", "3", "4")}
+        x = pairs.get("X", [[], []])
+        for sex, its_x in (("female", x), ("male", pairs.get("male X", [x[0], ["Y"]]))):
+            found = dict(record["flies"][sex])
+            written = found.pop("genotype")
+            assert found == {"sex": sex, "X": its_x, **autosomes}
+            assert reading_json(read_genotype(written))["flies"][sex] == record["flies"][sex]
+
+    @pytest.mark.parametrize(("text", "elements"), ELEMENTS, ids=lambda v: v if isinstance(v, str) else "")
+    def test_elements(self, text: str, elements: list[tuple[str, str, str, str | None, float | None]]) -> None:
+        keys = ("symbol", "kind", "chromosome", "site", "position_cM")
+        assert [tuple(e[k] for k in keys) for e in reading_json(read_genotype(text))["elements"]] == elements
+
+    @pytest.mark.parametrize(("text", "code", "start", "characters"), MALFORMED)
+    def test_faults(self, text: str, code: str, start: int, characters: str) -> None:
+        reading = read_genotype(text)
+        assert not reading.ok
+        assert reading.flies() == {}
+        first = reading.problems[0]
+        assert (first.code, first.severity) == (code, Severity.ERROR)
+        assert text[start : start + len(characters)] == characters
+        # a blank beside the symbols counts as their place
+        pointed = text[first.start : first.end]
+        assert characters in (pointed, pointed.strip())
+        assert first.start <= start <= start + len(characters) <= first.end
+
+    def test_a_megabyte_of_brackets_is_refused_with_a_short_answer(self) -> None:
+        for bracket in "([{)]}":
+            reading = read_genotype(bracket * 1_000_000)
+            assert not reading.ok
+            assert [p.code for p in reading.problems] == ["too-long"]
+            assert len(reading.problems[0].message) < 200
+            assert reading.problems[0].text == ""
+
+    @pytest.mark.parametrize(("chromosome", "canonical"), [("2", "w; kx-GAL4; +"), ("3", "w; +; kx-GAL4")])
+    def test_known_settles_an_open_field_either_way(self, chromosome: str, canonical: str) -> None:
+        assert codes(read_genotype("w; kx-GAL4"), "error") == {"which-chromosome"}
+        known = {"kx-GAL4": Element("kx-GAL4", Kind.INSERTION, chromosome, component="GAL4")}
+        reading = read_genotype("w; kx-GAL4", known=known)
+        assert (reading.ok, reading.canonical) == (True, canonical)
+        assert next(e for e in reading.elements if e.symbol == "kx-GAL4").chromosome == chromosome
+
+    def test_tm3_alone_is_assumed_to_carry_stubble_and_the_warning_points_at_it(self) -> None:
+        text = "w; Sp/CyO; +/TM3"
+        reading = read_genotype(text)
+        (warning,) = [p for p in reading.problems if p.severity is Severity.WARNING]
+        assert (warning.code, text[warning.start : warning.end]) == ("assumed-marker", "TM3")
+        assert "Sb" in warning.message
+        assert reading.assumed
+        carried = female(text).pair("3")[1].elements[0].traits
+        assert "stubble bristles" in carried.dominant
+        other = female("w; Sp/CyO; +/TM3, Ser[1]").pair("3")[1]
+        assert "stubble bristles" not in {s for e in other.elements for s in e.traits.dominant}
