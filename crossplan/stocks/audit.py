@@ -96,7 +96,7 @@ def check_assumptions(shelf: Shelf, today: dt.date, catalogue: Catalogue) -> Ite
 def check_rows(shelf: Shelf, today: dt.date, catalogue: Catalogue) -> Iterator[Finding]:
     """Names that stand twice, dates and numbers that cannot be read."""
     for problem in shelf.problems:
-        if problem.code in ("name-twice", "date", "not-a-number", "not-a-temperature", "encoding"):
+        if problem.code in ("name-twice", "date", "not-a-number", "not-a-temperature", "encoding", "too-many-cells"):
             name = next((s.name for s in shelf.stocks if s.row == problem.line), "")
             yield Finding(problem.code, problem.severity, name, problem.line, problem.message, problem.hint)
 

@@ -130,6 +130,7 @@ class _ShelfReader:
         self.catalogue = catalogue
         self.problems: list[Problem] = list(table.problems)
         self._readings: dict[str, Reading] = {}
+        self._names = {self._cell(row, "stock") for row in table.rows}
 
     def read(self) -> Shelf:
         texts = [self._genotype(row) for row in self.table.rows]
@@ -152,7 +153,8 @@ class _ShelfReader:
                     if element.chromosome and not element.is_balancer:
                         known.setdefault(element.symbol, element)
         for text, reading in self._readings.items():
-            if not reading.ok or reading.assumed:
+            # other assumptions are no question of place; such a row would only be settled by itself
+            if not reading.ok or any(p.code in ("assumed-place", "assumed-chromosome") for p in reading.problems):
                 again = read_genotype(text, self.catalogue, known)
                 if again.ok:
                     self._readings[text] = again
@@ -178,7 +180,8 @@ class _ShelfReader:
             self._problem(
                 row, "stock", "name-twice", f"stock '{name}' stands in row {seen[name]} too", "give it another name"
             )
-            name = f"{name} (row {row.number})"
+            while name in seen or name in self._names:
+                name = f"{name} (row {row.number})"
         seen.setdefault(name, row.number)
         return Stock(
             name, text, reading, row.number,
@@ -197,7 +200,7 @@ class _ShelfReader:
         text = self._cell(row, kind)
         if not text:
             return None
-        if text.isdigit():
+        if text.isdecimal():
             return int(text)
         self._problem(row, kind, "not-a-number", f"'{text}' is no number of copies", "write a whole number")
         return None

@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import csv
 import datetime as dt
+import io
 import zipfile
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
@@ -89,20 +90,15 @@ def _near_files(path: Path) -> str:
 
 def _read_text(path: Path) -> tuple[list[list[str]], list[Problem]]:
     text, problems = _decoded(path)
-    lines = [line for line in text.splitlines() if line.strip()]
+    lines = [line for line in io.StringIO(text, newline=None) if line.strip()]
     if not lines:
         raise StockListError(f"{path} holds only blank lines", "export the list again from the spreadsheet")
     delimiter = _delimiter(lines)
     csv.field_size_limit(1_000_000)
-    grid: list[list[str]] = []
-    reader = csv.reader(text.splitlines(keepends=True), delimiter=delimiter)
+    # only CR and LF end a row; a cell with line breaks is one row, as the spreadsheet program numbers it
+    reader = csv.reader(io.StringIO(text, newline=""), delimiter=delimiter)
     try:
-        last = 0
-        for cells in reader:
-            # a cell with line breaks spans several lines; the row keeps the number of the first
-            grid += [[] for _ in range(last - len(grid))]
-            grid.append(cells)
-            last = reader.line_num
+        grid = list(reader)
     except csv.Error as error:
         raise StockListError(f"{path}, line {reader.line_num}: {error}", "check the quotes on that line") from error
     return grid, problems
@@ -189,14 +185,34 @@ def _as_table(path: Path, grid: list[list[str]], problems: list[Problem], needed
     rows = []
     for i, cells in enumerate(grid[at + 1 :], start=at + 2):
         texts = [c.strip() for c in cells]
-        if not any(texts) or texts[0].startswith("#") or _same(texts, grid[at]):
+        if not any(texts) or _is_comment(texts) or _same(texts, grid[at]):
             continue
+        if any(texts[len(headings) :]):
+            problems.append(_too_many_cells(path, i, len(headings)))
         rows.append(Row(i, dict(zip(headings, texts + [""] * (len(headings) - len(texts)), strict=False))))
     return Table(str(path), headings, tuple(rows), tuple(problems))
 
 
+def _is_comment(cells: Sequence[str]) -> bool:
+    """Whether a row is a remark; `#` alone is a usual heading for the number of a stock."""
+    first = cells[0].strip()
+    return first.startswith("#") and first != "#"
+
+
+def _too_many_cells(path: Path, row: int, columns: int) -> Problem:
+    """Return the warning for a row that runs beyond the last column: most often a comma that should be in quotes."""
+    return Problem(
+        "too-many-cells",
+        Severity.WARNING,
+        f"the row has more cells than the {columns} columns, so cells may have slipped",
+        'put a cell that holds the delimiter in quotes, such as "w; Sco/CyO; TM3, Sb/TM6B"',
+        str(path),
+        row,
+    )
+
+
 def _header_row(grid: list[list[str]], words: set[str]) -> int | None:
-    filled = [i for i, row in enumerate(grid) if any(c.strip() for c in row) and not row[0].lstrip().startswith("#")]
+    filled = [i for i, row in enumerate(grid) if any(c.strip() for c in row) and not _is_comment(row)]
     for i in filled[:DEEPEST_HEADER]:
         if words & {c.strip().lower() for c in grid[i]}:
             return i
