@@ -19,6 +19,7 @@ from crossplan.rearing.development import Clock
 from crossplan.rearing.handling import (
     anaesthesia_gap_days,
     breeding_allowed,
+    clear_parents_by_hours,
     retinal_feeding,
     stop_collecting_hours,
     virgin_hours,
@@ -88,8 +89,8 @@ def _day(task: TaskRecord) -> dt.date:
 
 
 def _clock_hours(time: str) -> float:
-    read = dt.time.fromisoformat(time)
-    return read.hour + read.minute / 60.0
+    hour, minute = time.split(":")
+    return int(hour) + int(minute) / 60.0
 
 
 class _Check:
@@ -152,6 +153,11 @@ class _Check:
             if person not in known:
                 yield _problem("person", about, f"nobody called '{person}' is in [calendar] people")
         for task in self.plan.tasks:
+            if task.step in self.dates and task.person != self.steps[task.step].person:
+                yield _problem(
+                    "person", task.id,
+                    f"given to '{task.person}', but {task.step} is looked after by '{self.steps[task.step].person}'",
+                )  # fmt: skip
             if task.step not in self.steps:
                 yield _problem("task", task.id, f"there is no step {task.step}")
             if task.target is not None and task.target not in self.targets:
@@ -190,13 +196,16 @@ class _Check:
         course = Course.constant(self._temperature(step))
         first_hours = self.clock.eclosion(course).first_hours
         stop_hours = stop_collecting_hours(course, self.clock)
-        clear, first, last = ((d - dates.set_up).days for d in (dates.clear, dates.first, dates.last))
+        kept = (dates.clear, dates.first, dates.last, dates.discard)
+        clear, first, last, discard = ((d - dates.set_up).days for d in kept)
         if clear < LEAST_LAYING_DAYS:
             yield _problem("clear", step.id, f"parents are cleared {clear} days after set-up: they have not laid")
-        if clear * 24.0 >= first_hours:
+        clear_hours = clear_parents_by_hours(course, self.clock)
+        if clear * 24.0 > clear_hours:
             yield _problem(
                 "clear", step.id,
-                f"parents are cleared {clear} days after set-up, their children emerge from {first_hours / 24:.1f} days on",
+                f"parents are cleared {clear} days after set-up, they must be out after {clear_hours / 24:.1f} days;"
+                f" their children emerge from {first_hours / 24:.1f} days on",
             )  # fmt: skip
         if first * 24.0 < first_hours:
             yield _problem(
@@ -207,6 +216,11 @@ class _Check:
             yield _problem(
                 "collect", step.id,
                 f"collection goes on to {last} days after set-up, flies may be grandchildren from {stop_hours / 24:.1f} days on",
+            )  # fmt: skip
+        elif discard * 24.0 >= stop_hours:
+            yield _problem(
+                "collect", step.id,
+                f"discarded {discard} days after set-up, when grandchildren may be about ({stop_hours / 24:.1f} days)",
             )  # fmt: skip
         if not dates.first <= dates.last <= dates.discard:
             yield _problem("collect", step.id, "first collection, last collection and discarding are not in this order")
@@ -269,13 +283,16 @@ class _Check:
         yield from self._fresh_food(step, temperature, min(map(_day, taken)))
 
     def _fresh_food(self, step: StepRecord, temperature: float, first: dt.date) -> Iterator[Problem]:
-        """The stock goes on fresh food early enough for new flies to be there."""
-        first_hours = self.clock.eclosion(Course.constant(temperature)).first_hours
+        """The stock goes on fresh food early enough for new flies to be there, and not so early that they have bred."""
+        course = Course.constant(temperature)
+        first_hours = self.clock.eclosion(course).first_hours
+        stop_hours = stop_collecting_hours(course, self.clock)
         expanded = [_day(t) for t in self.tasks[step.id, "expand"]]
-        if not expanded or (first - min(expanded)).days * 24.0 < first_hours:
+        if not any(first_hours <= (first - day).days * 24.0 < stop_hours for day in expanded):
             yield _problem(
                 "virgins", step.id,
-                f"stock {step.mother.stock} is not on fresh food {first_hours / 24:.1f} days before its virgins are taken on {first}",
+                f"stock {step.mother.stock} is not put on fresh food {first_hours / 24:.1f} to {stop_hours / 24:.1f} days"
+                f" before its virgins are first taken on {first}",
             )  # fmt: skip
 
     def _emptied(self, task: TaskRecord, temperature: float) -> Iterator[Problem]:
@@ -292,7 +309,7 @@ class _Check:
                 "virgins", task.id,
                 f"virgins are collected {gap:.1f} h after the emptying at {morning}, at {temperature:g} C {safe:.1f} h are safe",
             )  # fmt: skip
-        if "empty" not in task.note or morning not in task.note:
+        if "empty" not in task.note or morning.rjust(5, "0") not in task.note:
             yield _problem("virgins", task.id, f"its note does not say to empty the vials at {morning}")
 
     # -- targets -----------------------------------------------------------------------------------------------
@@ -325,6 +342,8 @@ class _Check:
         if target.assay_date is None:
             if tasks:
                 yield _problem("task", target.target, "it has an assay task but no assay day")
+            elif target.target in self.ages and not any("no day" in c for c in target.cautions):
+                yield _problem("task", target.target, "it has no assay day, and no caution says so")
             return
         if days != [target.assay_date]:
             yield _problem(
@@ -369,6 +388,8 @@ class _Check:
                 yield _problem(
                     "food", task.id, f"retinal food is given {fed} days before the assay, {least:g} are needed"
                 )
+            if "dark" not in task.note:
+                yield _problem("food", task.id, "its note does not say to keep the flies in the dark")
             if _day(task) < made.last:
                 yield _problem("food", task.id, f"on {task.date} its flies are not collected yet (last on {made.last})")
 

@@ -77,7 +77,10 @@ class Days:
 
 @dataclass(frozen=True)
 class Biology:
-    """Whole days of one temperature, counted from the day of set-up."""
+    """Whole days of one temperature, counted from the day of set-up.
+
+    First day with flies; last day for clearing the parents; last day without grandchildren; days that virgins keep.
+    """
 
     first_flies: int
     clear_by: int
@@ -92,7 +95,7 @@ class Biology:
         return cls(
             math.ceil(first / 24.0),
             math.floor(min(clear_parents_by_hours(course, clock), first) / 24.0),
-            math.floor(stop_collecting_hours(course, clock) / 24.0),
+            math.ceil(stop_collecting_hours(course, clock) / 24.0) - 1,
             math.floor(virgin_keeping_days(temperature_C)),
         )
 
@@ -145,15 +148,19 @@ def _collections(week: WorkWeek, first: int, stop: int, most: int, age_span: int
 
 
 def _from_stock(set_up: int, biology: Biology, week: WorkWeek) -> tuple[int, tuple[int, ...]] | None:
-    days = [d for d in week.days if set_up - biology.keep_virgins <= d < set_up][-STOCK_COLLECTIONS:]
+    days = week.between(set_up - biology.keep_virgins, set_up - 1)[-STOCK_COLLECTIONS:]
     if not days:
         return None
     latest = days[0] - biology.first_flies
-    earlier = [d for d in week.days if latest - 6 <= d <= latest]
-    return (earlier[-1], tuple(days)) if earlier else None
+    earlier = week.between(max(latest - 6, days[0] - biology.stop_collecting), latest)
+    return (earlier[-1], days) if earlier else None
+
+
+def latest_use(parent: Days, as_mother: bool, biology: Biology) -> int:
+    """Return the last day on which the kept flies of `parent` are fresh enough to be mothers or fathers."""
+    return parent.first + (biology.keep_virgins if as_mother else MALE_KEEPING_DAYS)
 
 
 def fits(child: Days, parent: Days, as_mother: bool, biology: Biology) -> bool:
     """Return whether the kept flies of `parent` are there, and fresh enough, when `child` is set up."""
-    keep = biology.keep_virgins if as_mother else MALE_KEEPING_DAYS
-    return parent.last < child.set_up <= parent.first + keep
+    return parent.last < child.set_up <= latest_use(parent, as_mother, biology)

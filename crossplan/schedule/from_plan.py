@@ -11,8 +11,9 @@ from crossplan.plan.model import StepRecord, TargetRecord, TaskRecord
 from crossplan.plan.screen import ScreenFile
 from crossplan.rearing.development import Clock
 from crossplan.rearing.handling import anaesthesia_gap_days, retinal_feeding
+from crossplan.schedule.assay import Assay
 from crossplan.schedule.culture import Biology, Culture
-from crossplan.schedule.solve import Assay, Schedule, solve
+from crossplan.schedule.solve import Late, Schedule, solve
 from crossplan.schedule.tasks import share_out, step_dates, write_tasks
 from crossplan.schedule.week import WorkWeek
 
@@ -50,7 +51,7 @@ def put_on_calendar(
         if culture in schedule.days:
             step.dates = step_dates(schedule.days[culture], week)
             step.person = person.get(culture, "")
-    _fill_targets(targets, schedule, week, in_vials_of)
+    _fill_targets(targets, assays, schedule, week, in_vials_of)
     return write_tasks(placed, assays, schedule, week, person), schedule
 
 
@@ -103,33 +104,46 @@ def _cultures(steps: Sequence[StepRecord], assays: Sequence[Assay]) -> list[Cult
 
 
 def _fill_targets(
-    targets: Sequence[TargetRecord], schedule: Schedule, week: WorkWeek, in_vials_of: Mapping[str, str]
+    targets: Sequence[TargetRecord],
+    assays: Sequence[Assay],
+    schedule: Schedule,
+    week: WorkWeek,
+    in_vials_of: Mapping[str, str],
 ) -> None:
     late = {item.target: item for item in schedule.late}
+    tested = {a.target for a in assays}
     for target in targets:
-        if (
-            target.status == "planned"
-            and target.scheme
-            and {in_vials_of[s] for s in target.scheme} & set(schedule.unplaced)
-        ):
-            target.cautions.append(
-                "no days could be found for its crosses: check ages, working days, temperature and rig limit"
-            )
-        limit = week.rig_flies_per_day
-        if limit is not None and target.flies > limit and target.target in schedule.assay:
-            target.cautions.append(f"{target.flies} flies are more than the rig tests in a day ({limit}): spread them")
-        if target.target not in schedule.assay:
-            if target.status == "planned" and target.due is not None:
-                target.cautions.append(
-                    f"no day could be given to it, so whether it is due in time ({target.due}) is open"
-                )
+        if target.status != "planned":
             continue
-        first, last = schedule.windows[target.target]
-        target.assay_date = week.date(schedule.assay[target.target]).isoformat()
-        target.assay_from, target.assay_to = week.date(first).isoformat(), week.date(last).isoformat()
-        missed = late.get(target.target)
-        if missed is not None:
-            target.cautions.append(
-                f"not ready by the day it is due ({missed.due.isoformat()}): {missed.ready.isoformat()} is the earliest"
-                " found; start earlier, or move the due day"
-            )
+        if target.target in schedule.assay:
+            _fill_assay(target, schedule, week)
+        elif {in_vials_of[s] for s in target.scheme} & set(schedule.unplaced):
+            target.cautions.append(_why_no_days(schedule))
+        elif target.target in tested:
+            target.cautions.append("no day could be found for its assay: check ages, working days and rig limit")
+        if target.target not in schedule.assay and target.due is not None:
+            target.cautions.append(f"no day could be given to it, so whether it is due in time ({target.due}) is open")
+        if target.target in late:
+            target.cautions.append(_late_words(late[target.target]))
+
+
+def _fill_assay(target: TargetRecord, schedule: Schedule, week: WorkWeek) -> None:
+    first, last = schedule.windows[target.target]
+    target.assay_date = week.date(schedule.assay[target.target]).isoformat()
+    target.assay_from, target.assay_to = week.date(first).isoformat(), week.date(last).isoformat()
+    limit = week.rig_flies_per_day
+    if limit is not None and target.flies > limit:
+        target.cautions.append(f"{target.flies} flies are more than the rig tests in a day ({limit}): spread them")
+
+
+def _why_no_days(schedule: Schedule) -> str:
+    if schedule.status == "limit reached":
+        return "no days were found for its crosses before the search was stopped: plan fewer targets at a time"
+    return "no days could be found for its crosses: check ages, working days, temperature and rig limit"
+
+
+def _late_words(late: Late) -> str:
+    return (
+        f"not ready by the day it is due ({late.due.isoformat()}): {late.ready.isoformat()} is the earliest found;"
+        f" {late.reason}; {late.remedy}"
+    )

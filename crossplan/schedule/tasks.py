@@ -9,8 +9,10 @@ from collections.abc import Mapping, Sequence
 
 from crossplan.plan.model import StepDates, TaskRecord
 from crossplan.rearing.handling import virgin_hours
+from crossplan.schedule.assay import Assay
 from crossplan.schedule.culture import Culture, Days
-from crossplan.schedule.solve import MINUTES_PER_ASSAY_FLY, MINUTES_PER_VIAL, Assay, Schedule, tasks_by_day
+from crossplan.schedule.day_model import MINUTES_PER_ASSAY_FLY, MINUTES_PER_VIAL, tasks_by_day
+from crossplan.schedule.solve import Schedule
 from crossplan.schedule.week import WorkWeek
 
 

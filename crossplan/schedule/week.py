@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import datetime as dt
+from bisect import bisect_left, bisect_right
 from dataclasses import dataclass
 from functools import cached_property
 
@@ -10,7 +11,7 @@ from crossplan.errors import ScreenError
 from crossplan.plan.screen import DAYS, CalendarSection
 
 #: how many days ahead a schedule may reach
-HORIZON_DAYS = 200
+HORIZON_DAYS = 400
 
 
 @dataclass(frozen=True)
@@ -30,10 +31,16 @@ class WorkWeek:
         """Return the week that the screen file describes, beginning on `start`.
 
         Raises:
-            ScreenError: no day of the next months is a working day.
+            ScreenError: no day of the next months is a working day, or the afternoon is not after the morning.
         """
+        morning, afternoon = _four_digits(section.morning), _four_digits(section.afternoon)
+        if morning >= afternoon:
+            raise ScreenError(
+                f"[calendar] afternoon = '{section.afternoon}' is not after morning = '{section.morning}'",
+                "vials are emptied in the morning and virgins collected in the afternoon of the same day",
+            )
         week = cls(
-            start, section.working_days, frozenset(section.holidays), section.morning, section.afternoon,
+            start, section.working_days, frozenset(section.holidays), morning, afternoon,
             section.people, section.rig_flies_per_day,
         )  # fmt: skip
         if not week.days:
@@ -56,8 +63,15 @@ class WorkWeek:
 
     def on_or_after(self, day: int) -> int | None:
         """Return the first working day from `day` on."""
-        return next((d for d in self.days if d >= day), None)
+        at = bisect_left(self.days, day)
+        return self.days[at] if at < len(self.days) else None
 
     def between(self, first: int, last: int) -> tuple[int, ...]:
         """Return the working days from `first` to `last`, both included."""
-        return tuple(d for d in self.days if first <= d <= last)
+        return self.days[bisect_left(self.days, first) : bisect_right(self.days, last)]
+
+
+def _four_digits(time: str) -> str:
+    """Return a time of day as HH:MM, so that times sort as texts: 9:00 is 09:00."""
+    hour, minute = time.split(":")
+    return f"{int(hour):02d}:{minute}"

@@ -12,15 +12,18 @@ from crossplan.plan.screen import CalendarSection, DayName, ScreenFile
 from crossplan.schedule.check import check_schedule
 from tests.schedule.small_plans import PEOPLE, START, cross, on_calendar, screen_of, wanted
 
-CASES = 60
+CASES = 200
 WEEKS: tuple[tuple[DayName, ...], ...] = (
     ("Mon", "Tue", "Wed", "Thu", "Fri"),
     ("Mon", "Tue", "Wed", "Thu", "Fri", "Sat"),
     ("Mon", "Tue", "Wed", "Thu", "Fri", "Sat", "Sun"),
     ("Mon", "Wed", "Thu", "Fri"),
     ("Sun", "Mon", "Tue", "Wed", "Thu"),
+    ("Mon", "Wed", "Fri"),
+    ("Tue", "Fri"),
 )
-AGES = ((3, 7), (2, 6), (4, 8), (3, 10), (5, 5))
+AGES = ((3, 7), (2, 6), (4, 8), (3, 10), (5, 5), (0, 3), (1, 1), (20, 30))
+HOURS = (("09:00", "16:30"), ("8:30", "17:00"), ("13:00", "23:59"))
 
 
 def random_steps(random: Random, number: int, temperature: float) -> list[StepRecord]:
@@ -46,7 +49,7 @@ def random_screen(seed: int) -> tuple[list[StepRecord], list[TargetRecord], Scre
     """Return a screen of one to three targets with its week, holidays, people, due days and rig."""
     random = Random(seed)
     start = START + dt.timedelta(days=random.randrange(14))
-    temperature = random.choice([18.0, 20.0, 22.0, 25.0, 25.0, 25.0])
+    temperature = random.choice([16.0, 18.0, 22.0, 25.0, 25.0, 25.0, 28.0])
     steps: list[StepRecord] = []
     targets: list[TargetRecord] = []
     for number in range(1, random.randint(1, 3) + 1):
@@ -55,11 +58,18 @@ def random_screen(seed: int) -> tuple[list[StepRecord], list[TargetRecord], Scre
         flies = random.choice([10, 20, 40])
         targets.append(wanted(f"line {number}", [s.id for s in made], flies, due, retinal=random.random() < 0.5))
         steps += made
+    off = set(random.sample(range(70), random.randrange(5)))
+    if random.random() < 0.2:
+        closed = random.randrange(50)
+        off |= set(range(closed, closed + random.randrange(7, 15)))
+    morning, afternoon = random.choice(HOURS)
     calendar = CalendarSection(
         working_days=random.choice(WEEKS),
-        holidays=tuple(start + dt.timedelta(days=d) for d in random.sample(range(70), random.randrange(5))),
+        holidays=tuple(start + dt.timedelta(days=d) for d in sorted(off)),
+        morning=morning,
+        afternoon=afternoon,
         people=PEOPLE[: random.randrange(3)],
-        rig_flies_per_day=random.choice([None, None, 40, 70]),
+        rig_flies_per_day=random.choice([None, None, 15, 40, 70]),
     )
     ages = {t.target: random.choice(AGES) for t in targets}
     laying = random.randint(1, 5)
@@ -74,10 +84,11 @@ def planned(seed: int) -> tuple[Plan, ScreenFile]:
 @pytest.mark.parametrize("seed", range(CASES))
 def test_the_calendar_keeps_every_rule(seed: int) -> None:
     plan, screen = planned(seed)
-    assert check_schedule(plan, screen) == ()
+    ages = {t.target: t.age_days for t in screen.target if t.age_days}
+    assert check_schedule(plan, screen, ages) == ()
 
 
-@pytest.mark.parametrize("seed", range(0, CASES, 10))
+@pytest.mark.parametrize("seed", range(0, CASES, 20))
 def test_the_same_screen_gives_the_same_calendar(seed: int) -> None:
     assert planned(seed)[0].model_dump_json() == planned(seed)[0].model_dump_json()
 
@@ -88,3 +99,8 @@ def test_the_random_screens_are_worth_their_name() -> None:
     assert any(t.due for _, targets, *_ in screens for t in targets)
     assert any(s.same_vials_as for steps, *_ in screens for s in steps)
     assert any(screen.calendar.holidays for _, _, screen, _ in screens)
+
+
+def test_most_of_the_random_targets_get_their_day() -> None:
+    targets = [t for seed in range(0, CASES, 8) for t in planned(seed)[0].targets]
+    assert sum(t.assay_date is not None for t in targets) > len(targets) / 2

@@ -267,6 +267,21 @@ def before_the_plan_begins(plan: Plan) -> None:
     plan.screen.start = "2027-03-09"
 
 
+def one_task_in_other_hands(plan: Plan) -> None:
+    task = tasks(plan, "S01", "collect")[1]
+    task.person = next(p for p in PEOPLE if p != task.person)
+
+
+def stock_food_a_month_old(plan: Plan) -> None:
+    move(plan, "S04", "expand", -28)
+
+
+def retinal_food_in_the_light(plan: Plan) -> None:
+    for task in plan.tasks:
+        if task.kind == "food":
+            task.note = "move the flies to retinal food"
+
+
 def no_date_at_all(plan: Plan) -> None:
     plan.tasks[0].date = "1.3.2027"
 
@@ -320,6 +335,9 @@ def no_time_at_all(plan: Plan) -> None:
         (tasks_without_dates, "task"),
         (a_stranger, "person"),
         (nobody_s_task, "person"),
+        (one_task_in_other_hands, "person"),
+        (stock_food_a_month_old, "virgins"),
+        (retinal_food_in_the_light, "food"),
         (no_date_at_all, "date"),
         (no_time_at_all, "date"),
     ],
@@ -332,7 +350,7 @@ def test_a_broken_rule_is_named(plan: Plan, spoil: Callable[[Plan], None], code:
 @pytest.mark.parametrize(
     ("spoil", "words"),
     [
-        (clear_too_late, "S01: parents are cleared 9 days after set-up, their children emerge from 8.5 days on"),
+        (clear_too_late, "S01: parents are cleared 9 days after set-up, they must be out after 6.0 days"),
         (virgins_too_late_in_the_evening, "10.5 h after the emptying at 09:00, at 25 C 8.0 h are safe"),
         (no_discard_task, "its tasks are on no day"),
         (rig_too_full, "41 flies on"),
@@ -355,13 +373,46 @@ def test_a_holiday_declared_afterwards(plan: Plan) -> None:
     assert any(p.message.startswith("S03-clear: ") and str(holiday) in p.message for p in found)
 
 
-def test_a_day_at_the_edge_of_laying_and_eclosion(plan: Plan) -> None:
-    # 0.93 x 220 h is 8.5 days: eight days are still before the children, one day is enough to lay
+def test_a_day_at_the_edge_of_laying_and_of_clearing(plan: Plan) -> None:
+    # at 25 C parents are out by day 6; one day is enough to lay
     clear_too_late(plan)
+    move(plan, "S01", "clear", -2)
+    assert "clear" in codes(plan)
     move(plan, "S01", "clear", -1)
     assert "clear" not in codes(plan)
-    move(plan, "S01", "clear", -7)
+    move(plan, "S01", "clear", -5)
     assert "clear" not in codes(plan)
+
+
+def test_a_culture_is_discarded_before_there_are_grandchildren(plan: Plan) -> None:
+    # at 25 C flies may be grandchildren from 18.1 days on; S03 is set up on 26 March
+    step = plan.step("S03")
+    assert step.dates is not None
+    by = (dt.date.fromisoformat(step.dates.set_up) - dt.date.fromisoformat(step.dates.discard)).days
+    move(plan, "S03", "discard", by + 18)
+    assert "collect" not in codes(plan)
+    move(plan, "S03", "discard", 1)
+    assert "collect" in codes(plan)
+
+
+def test_an_assay_that_has_no_day_is_named(plan: Plan) -> None:
+    ages = {TARGET: (3, 7), CONTROL: (3, 7)}
+    target = plan.targets[1]
+    target.assay_date = target.assay_from = target.assay_to = None
+    plan.tasks = [t for t in plan.tasks if t.target != CONTROL]
+    found = check_schedule(plan, SCREEN, ages)
+    assert [p.message for p in found] == [f"{CONTROL}: it has no assay day, and no caution says so"]
+    target.cautions.append("no day could be found for its assay")
+    assert check_schedule(plan, SCREEN, ages) == ()
+
+
+def test_hours_written_without_a_leading_nought() -> None:
+    early = screen_of(calendar=CalendarSection(people=PEOPLE, morning="9:00"))
+    plan = on_calendar(two_generations(), two_targets(), early)
+    assert check_schedule(plan, early) == ()
+    assert {t.time for t in plan.tasks} == {"09:00", "16:30"}
+    tasks(plan, "S01", "collect")[0].time = "08:30"
+    assert codes(plan, early) == {"virgins"}
 
 
 def test_flies_reared_hot_are_no_parents(plan: Plan) -> None:

@@ -4,7 +4,7 @@ import datetime as dt
 
 import pytest
 
-from crossplan.plan.screen import CalendarSection
+from crossplan.plan.screen import CalendarSection, DayName
 from crossplan.schedule.check import check_schedule
 from tests.schedule.small_plans import (
     CONTROL,
@@ -70,6 +70,7 @@ def test_a_due_day_that_cannot_be_met_is_named() -> None:
     assert len(target.cautions) == 1
     assert "2027-03-20" in target.cautions[0]
     assert str(target.assay_date) in target.cautions[0]
+    assert "even with nothing else to do; begin at least 20 days earlier" in target.cautions[0]
     assert check_schedule(plan, screen_of()) == ()
 
 
@@ -91,6 +92,29 @@ def test_crosses_for_which_no_days_are_found_are_named() -> None:
     assert all(s.dates is None for s in plan.steps)
     assert plan.tasks == []
     assert all("no days could be found" in t.cautions[0] for t in plan.targets)
+    assert check_schedule(plan, screen) == ()
+
+
+def test_one_target_without_days_does_not_cost_the_others_theirs() -> None:
+    # flies of age 0 cannot be tested: a day must pass after the anaesthesia of their collection
+    steps = [*two_generations(), cross("S05", "CsChrimson attP18", "K12-AD")]
+    targets = [*two_targets(), wanted("too young", ["S05"], due="2027-06-01")]
+    screen = screen_of(ages={"too young": (0, 0)})
+    plan = on_calendar(steps, targets, screen)
+    assert [t.assay_date is not None for t in plan.targets] == [True, True, False]
+    assert [s.id for s in plan.steps if s.dates is None] == ["S05"]
+    assert "no days could be found" in plan.targets[2].cautions[0]
+    assert "2027-06-01" in plan.targets[2].cautions[1]
+    assert check_schedule(plan, screen, {t.target: (3, 7) for t in plan.targets[:2]}) == ()
+
+
+@pytest.mark.parametrize("days", [("Mon", "Wed", "Fri"), ("Mon", "Thu"), ("Tue", "Fri")])
+def test_short_weeks_collect_less_often(days: tuple[DayName, ...]) -> None:
+    # with four collections the first virgins would be too old for their cross when the last are there
+    screen = screen_of(calendar=CalendarSection(working_days=days))
+    plan = on_calendar(two_generations(), two_targets(), screen)
+    assert all(t.assay_date is not None for t in plan.targets)
+    assert sum(t.kind == "collect" and t.step == "S01" for t in plan.tasks) < 4
     assert check_schedule(plan, screen) == ()
 
 

@@ -55,3 +55,15 @@ def test_the_screen_file_s_hours_people_and_rig_are_taken_over() -> None:
     section = CalendarSection(morning="08:00", afternoon="15:00", people=("Ida",), rig_flies_per_day=40)
     week = WorkWeek.of(section, MONDAY)
     assert (week.morning, week.afternoon, week.people, week.rig_flies_per_day) == ("08:00", "15:00", ("Ida",), 40)
+
+
+def test_hours_are_written_with_four_digits_so_that_they_sort() -> None:
+    week = WorkWeek.of(CalendarSection(morning="9:00", afternoon="16:30"), MONDAY)
+    assert week.morning == "09:00"
+    assert sorted([week.afternoon, week.morning]) == ["09:00", "16:30"]
+
+
+@pytest.mark.parametrize("afternoon", ["08:00", "9:00", "09:00"])
+def test_an_afternoon_that_is_not_after_the_morning_is_refused(afternoon: str) -> None:
+    with pytest.raises(ScreenError, match=f"afternoon = '{afternoon}' is not after morning = '09:00'"):
+        WorkWeek.of(CalendarSection(afternoon=afternoon), MONDAY)
