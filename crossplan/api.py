@@ -5,7 +5,7 @@
     read_stocks, audit_stocks, audit_json        the shelf
     plan_screen, plan_json, load_plan            a screen
     write_plan, write_labels, write_calendar     what people hold
-    log_entry, day_report                        what really happened, and what it changes
+    log_entry, day_report, day_json              what really happened, and what it changes
     rearing_report, count_report                 the clock and the head-counts
     write_demo                                   the demo
 
@@ -34,6 +34,7 @@ from crossplan.genetics.progeny import Progeny, cross
 from crossplan.genetics.progeny import ProgenyClass as ProgenyClass
 
 if TYPE_CHECKING:
+    from crossplan.logbook.day import DayReport as DayReport
     from crossplan.plan.model import Plan as Plan
     from crossplan.plan.model import TaskRecord
     from crossplan.plan.screen_file import ScreenRequest
@@ -554,49 +555,36 @@ def log_entry(
     """Add what happened to a culture to the journal beside its plan; return the journal.
 
     Raises:
-        InputError: the plan has no such step, or there is no such event.
-        OutputError: the journal cannot be written.
+        InputError: the plan has no such step, there is no such event, or a number is missing.
+        OutputError: the journal has faults, or cannot be written.
     """
-    from crossplan.logbook.entry import Entry, Event
+    from crossplan.logbook.day import new_entry
     from crossplan.logbook.journal import add_entry
 
-    steps = [s.id for s in load_plan(plan).steps]
-    if step not in steps:
-        raise InputError(f"the plan has no cross {step}", f"its crosses: {steps[0]} to {steps[-1]}" if steps else "")
-    if event not in set(Event):
-        raise InputError(f"'{event}' is no event of a culture", f"one of: {', '.join(Event)}")
     journal = _journal_of(plan)
-    add_entry(journal, Entry(day, step, Event(event), count, person, note))
+    add_entry(journal, new_entry(load_plan(plan), step, event, day, count=count, person=person, note=note))
     return journal
 
 
-def day_report(plan: Path, day: dt.date, person: str | None = None) -> dict[str, Any]:
-    """Return the tasks of a day, the cultures that do not run as planned, and the tasks that should move.
+def day_report(plan: Path, day: dt.date, person: str | None = None) -> DayReport:
+    """Return the work of a day, what is overdue, which cultures do not run as planned, and which tasks should move.
 
-    Faults of the journal are returned under `problems`; the lines that can be read count.
+    Raises:
+        InputError: there is no such plan, the journal cannot be opened, or the plan has no work for `person`.
     """
+    from crossplan.logbook.day import day_report as report
     from crossplan.logbook.journal import read_journal
-    from crossplan.logbook.progress import moved_tasks, progress
 
-    loaded = load_plan(plan)
-    entries, problems = read_journal(_journal_of(plan))
-    mine = [t for t in loaded.tasks if person is None or t.person == person]
-    states = progress(loaded, entries, day)
-    return {
-        "date": day.isoformat(),
-        "tasks": [t.model_dump(mode="json") for t in mine if t.date == day.isoformat()],
-        "cultures": [
-            {"step": s.step, "state": s.state, "collected": s.collected, "needed": s.needed, "days_late": s.days_late}
-            for s in states
-            if s.days_late or s.state in ("collecting", "short", "failed")
-        ],
-        "moved": [
-            {"task": m.task.id, "from": m.task.date, "to": m.to.isoformat(), "because": m.because}
-            for m in moved_tasks(loaded, entries)
-            if person is None or m.task.person == person
-        ],
-        "problems": [f"{p.place()}: {p.message}" for p in problems],
-    }
+    journal = _journal_of(plan)
+    entries, problems = read_journal(journal)
+    return report(load_plan(plan), entries, day, person, problems=problems, journal=str(journal))
+
+
+def day_json(report: DayReport) -> dict[str, Any]:
+    """Return the report of a day as the JSON contract writes it."""
+    from crossplan.logbook.day import day_json as document
+
+    return document(report)
 
 
 def _journal_of(plan: Path) -> Path:

@@ -22,7 +22,7 @@ def log(
     event: Annotated[
         str, typer.Argument(help="set up, cleared, pupae, flies (the first seen), collected, failed, discarded, note.")
     ],
-    count: Annotated[int | None, typer.Option(help="Flies collected, or vials failed.", min=0)] = None,
+    count: Annotated[int | None, typer.Option(help="Flies collected, or vials failed (all without it).", min=0)] = None,
     date: Annotated[str | None, typer.Option(help="Day (YYYY-MM-DD); today otherwise.")] = None,
     person: Annotated[str, typer.Option(help="Who.")] = "",
     note: Annotated[str, typer.Option(help="Anything else.")] = "",
@@ -33,6 +33,8 @@ def log(
 
     day = api.parse_day(date) if date else dt.date.today()
     journal = api.log_entry(plan, step, event, day=day, count=count, person=person, note=note)
+    if day > dt.date.today():
+        typer.echo(f"warning: {day} is not yet here; the entry counts from that day on", err=True)
     if as_json:
         print_json({"written": str(journal)})
     else:

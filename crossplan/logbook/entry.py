@@ -3,8 +3,10 @@
 from __future__ import annotations
 
 import datetime as dt
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from enum import StrEnum
+
+from crossplan.errors import InputError
 
 
 class Event(StrEnum):
@@ -19,6 +21,19 @@ class Event(StrEnum):
     DISCARDED = "discarded"
     NOTE = "note"
 
+    @classmethod
+    def read(cls, text: str) -> Event:
+        """Return the event that a text names; capitals, hyphens and underscores do not matter (`Set-up`).
+
+        Raises:
+            InputError: it names none.
+        """
+        words = " ".join(text.casefold().replace("-", " ").replace("_", " ").split())
+        try:
+            return cls(words)
+        except ValueError:
+            raise InputError(f"'{text}' is no event of a culture", f"one of: {', '.join(cls)}") from None
+
 
 @dataclass(frozen=True, slots=True)
 class Entry:
@@ -27,10 +42,12 @@ class Entry:
     Attributes:
         date: the day on which it happened.
         step: id of the cross.
-        event: what happened; `pupae` and `flies` mean the first ones seen, `failed` means that many vials.
-        count: flies collected or vials failed; None where nothing is counted.
+        event: what happened; `pupae` and `flies` mean the first ones seen.
+        count: flies collected, or vials failed (None: all of them); None where nothing is counted.
         person: who did it.
         note: anything else.
+        row: row of the journal that it was read from; 0 when it was not read from one. Two entries that differ in
+            nothing else are equal.
     """
 
     date: dt.date
@@ -39,3 +56,4 @@ class Entry:
     count: int | None = None
     person: str = ""
     note: str = ""
+    row: int = field(default=0, compare=False)

@@ -1,21 +1,20 @@
 """Where every culture stands, and which days of the plan move because of what was seen.
 
-A culture whose first flies (or pupae) come on another day than planned moves its own later tasks, and those of
-every cross that uses its flies, by as many days; the new days are proposals, since only a new schedule knows the
-working week.
+A culture that is set up, or whose first flies come, on another day than planned moves its own later tasks, and those
+of every cross that uses its flies, by as many days; one that failed moves them to when it can be set up again. The new
+days are proposals: a delay is handed on whole, though the plan may have had days to spare, and only a new schedule
+knows the working week.
 """
 
 from __future__ import annotations
 
 import datetime as dt
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
-from typing import Literal
 
-from crossplan.logbook.entry import Entry, Event
+from crossplan.logbook.culture import Culture, State, culture, cultures
+from crossplan.logbook.entry import Entry
 from crossplan.plan.model import Plan, StepRecord, TaskRecord
-
-State = Literal["not set up", "growing", "collecting", "enough", "short", "failed"]
 
 
 @dataclass(frozen=True, slots=True)
@@ -38,73 +37,68 @@ class Moved:
     because: str
 
 
+@dataclass(frozen=True, slots=True)
+class _Delay:
+    """By how many days the tasks of a step move, and the step that this comes from."""
+
+    days: int
+    because: str
+
+
 def progress(plan: Plan, entries: Sequence[Entry], today: dt.date) -> tuple[StepProgress, ...]:
     """Return the state of every step of the plan on `today`."""
-    return tuple(_step_progress(step, [e for e in entries if e.step == step.id], today) for step in plan.steps)
-
-
-def _step_progress(step: StepRecord, entries: Sequence[Entry], today: dt.date) -> StepProgress:
-    collected = sum(e.count or 0 for e in entries if e.event is Event.COLLECTED)
-    failed = sum(e.count or 0 for e in entries if e.event is Event.FAILED)
-    events = {e.event for e in entries}
-    state: State
-    if collected >= step.flies_needed:
-        state = "enough"
-    elif failed and failed >= step.vials:
-        state = "failed"
-    elif step.dates is not None and today > dt.date.fromisoformat(step.dates.collect_to) and events:
-        state = "short"
-    elif collected or Event.FLIES in events:
-        state = "collecting"
-    elif events & {Event.SET_UP, Event.CLEARED, Event.PUPAE}:
-        state = "growing"
-    else:
-        state = "not set up"
-    return StepProgress(step.id, state, collected, step.flies_needed, days_late(step, entries))
+    return tuple(
+        StepProgress(c.step.id, c.state(today), c.collected, c.step.flies_needed, c.days_late)
+        for c in cultures(plan, entries).values()
+    )
 
 
 def days_late(step: StepRecord, entries: Sequence[Entry]) -> int:
-    """Return by how many days the culture runs behind its plan (ahead: negative), by the latest sign of it.
+    """Return by how many days a culture with vials of its own runs behind its plan (ahead: negative)."""
+    return culture(step, [e for e in entries if e.step == step.id], step.vials).days_late
 
-    First flies count against the planned first collection; before them, the day of set-up against the planned one.
+
+def moved_tasks(plan: Plan, entries: Sequence[Entry], today: dt.date | None = None) -> tuple[Moved, ...]:
+    """Return the tasks that should move, in the order of their new days.
+
+    A culture that is set up moves by its own delay; one that is not, by that of the slowest culture that its flies
+    come from, so one early parent does not hurry a cross whose other parent is on time. Tasks that are done, and tasks
+    whose old and new day are both past on `today`, do not move; none moves to a day before `today`.
     """
-    if step.dates is None:
-        return 0
-    for event, planned in ((Event.FLIES, step.dates.collect_from), (Event.SET_UP, step.dates.set_up)):
-        seen = [e.date for e in entries if e.step == step.id and e.event is event]
-        if seen:
-            return (min(seen) - dt.date.fromisoformat(planned)).days
-    return 0
-
-
-def moved_tasks(plan: Plan, entries: Sequence[Entry]) -> tuple[Moved, ...]:
-    """Return the tasks not yet past that should move, in the order of their new days.
-
-    Each task moves by the delay of its own culture, or of the slowest culture that its flies come from.
-    """
-    delays: dict[str, tuple[int, str]] = {}
-    for step in plan.steps:
-        own = days_late(step, entries)
-        candidates = [(own, step.id)] if own else []
-        if not _has(entries, step.id, Event.SET_UP):
-            candidates += [delays[p] for p in (step.mother.step, step.father.step) if p in delays]
-        late = max(candidates, key=lambda c: c[0], default=(0, step.id))
-        if late[0]:
-            delays[step.id] = late
-    done = {(e.step, e.event) for e in entries}
-    moved = [
-        Moved(task, dt.date.fromisoformat(task.date) + dt.timedelta(days=delays[task.step][0]), delays[task.step][1])
-        for task in plan.tasks
-        if task.step in delays and not _is_done(task, done)
-    ]
+    known = cultures(plan, entries)
+    delays = _delays(plan, known, today)
+    moved = []
+    for task in plan.tasks:
+        delay = delays.get(task.step)
+        if delay is None or not delay.days or known[task.step].has_done(task):
+            continue
+        planned = dt.date.fromisoformat(task.date)
+        to = planned + dt.timedelta(days=delay.days)
+        if today is not None and to < today:
+            if planned < today:
+                continue
+            to = today
+        if to != planned:
+            moved.append(Moved(task, to, delay.because))
     return tuple(sorted(moved, key=lambda m: (m.to, m.task.time, m.task.id)))
 
 
-def _has(entries: Sequence[Entry], step: str, event: Event) -> bool:
-    return any(e.step == step and e.event is event for e in entries)
+def _delays(plan: Plan, known: Mapping[str, Culture], today: dt.date | None) -> dict[str, _Delay]:
+    delays: dict[str, _Delay] = {}
+    for step in sorted(plan.steps, key=lambda s: s.generation):
+        here = known[step.id]
+        if here.is_begun:
+            delays[step.id] = _Delay(here.days_late, step.id)
+            continue
+        candidates = [delays[p] for p in (step.mother.step, step.father.step) if p in delays]
+        if here.must_be_repeated and today is not None:
+            candidates.append(_Delay(_days_until_again(plan, here, today), step.id))
+        delays[step.id] = max(candidates, key=lambda d: d.days, default=_Delay(0, step.id))
+    return delays
 
 
-def _is_done(task: TaskRecord, done: set[tuple[str, Event]]) -> bool:
-    events = {"set up": Event.SET_UP, "clear": Event.CLEARED, "discard": Event.DISCARDED}
-    event = events.get(task.kind)
-    return event is not None and (task.step, event) in done
+def _days_until_again(plan: Plan, lost: Culture, today: dt.date) -> int:
+    """Return by how many days a lost culture moves so that the first task of doing it again falls on today."""
+    host = lost.step.same_vials_as or lost.step.id
+    again = [t.date for t in plan.tasks if t.step == host and t.kind in ("virgins", "set up")]
+    return max((today - dt.date.fromisoformat(min(again))).days, 0) if again else 0

@@ -192,7 +192,11 @@ def test_the_journal_follows_the_bench(tmp_path: Path) -> None:
     first, day = steps[0]["id"], steps[0]["dates"]["collect_from"]
     assert document("today", plan, "--date", day)["tasks"]
     assert run("log", plan, first, "flies", "--date", "2027-12-24").returncode == 0
+    # what is dated later than the day asked about has not happened yet
     report = document("today", plan, "--date", day)
+    assert report["moved"] == []
+    assert "2027-12-24" in report["problems"][0]
+    report = document("today", plan, "--date", "2027-12-24")
     assert report["cultures"][0]["days_late"] > 100
     assert report["moved"]
     assert run("log", plan, "S99", "flies").returncode == 2
