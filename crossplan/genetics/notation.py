@@ -10,12 +10,13 @@
     notation_write      writing flies down
 
 Three results only: understood; understood with a stated assumption (`Reading.assumed`); not understood, with the
-characters, the reason and the closest reading. A list of alleles or insertions of which nothing says the chromosome
-(`P{lacW}CycE[k02514]`) is understood as elements, without a fly.
+characters, the reason and the closest reading. Where nothing says the chromosome of a field (`w; kx-GAL4`), the elements are
+understood and the question is asked: there is no fly until it is answered.
 """
 
 from __future__ import annotations
 
+import re
 from collections.abc import Mapping
 from dataclasses import dataclass, replace
 from typing import Any, Final
@@ -40,6 +41,9 @@ WILD_TYPE_NAMES: Final = frozenset(
     ("+", "wt", "wildtype", "cantons", "cs", "oregonr", "orer", "berlin", "berlink", "swedishc", "samarkand")
 )
 
+#: `kx-GAL4>UAS-kx`, said of flies and no genotype; in `kx>stop>GAL4` and `UAS>kx` the > is a part of the construct
+_DRIVER_WITH_EFFECTOR: Final = re.compile(r"(?i)(?:gal4|lexa|qf2?|ad|dbd|\+[^>]+|\d)>(?!stop|frt)")
+
 
 @dataclass(frozen=True)
 class Reading:
@@ -50,7 +54,7 @@ class Reading:
         ok: whether it was understood, with or without a stated assumption.
         female, male: the fly of either sex; None when not understood, when no such fly exists, or when nothing says
             which chromosome the elements are on.
-        canonical: the short form of what was read; empty when not understood.
+        canonical: the short form of what was read; empty when not understood, and no genotype when a chromosome is open.
         elements: every element once, X first.
         problems: everything to be said of it; `start` and `end` count characters of `text`.
         written_sex: the sex that the text itself names (`/Y`: male; two X: female), else None.
@@ -69,6 +73,11 @@ class Reading:
     def assumed(self) -> bool:
         """Whether something was assumed that a person may want to confirm."""
         return self.ok and any(p.severity is Severity.WARNING for p in self.problems)
+
+    @property
+    def is_open(self) -> bool:
+        """Whether nothing says the chromosome of some of it, so that it stands for no fly yet."""
+        return self.ok and any(p.code == "which-chromosome" for p in self.problems)
 
     def fly(self, sex: Sex) -> Fly | None:
         """Return the fly of `sex`."""
@@ -118,7 +127,7 @@ class _Reader:
         self.problems += placer.problems
         if placed is not None:
             return self._flies(placed)
-        return self._refused() if self._failed() else self._unplaced(placer.fields[0])
+        return self._refused() if self._failed() else self._open(placer)
 
     def _wild_type(self, name: str) -> Reading:
         if name != "+":
@@ -265,39 +274,24 @@ class _Reader:
         return Reading(self.text, True, flies.female, flies.male, canonical, flies.elements, self._in_original(),
                        flies.written_sex)  # fmt: skip
 
-    def _unplaced(self, field: ReadField) -> Reading:
-        """Return a single field of which nothing says the chromosome: elements by themselves, if they are formal."""
-        words = [w for half in field.halves for w in half.words if w.element is not None]
-        where = Half((), field.field.start, field.field.end)
-        if not all(_is_formal(w.element) for w in words):
-            label = any(">" in w.element.symbol and not w.element.symbol.startswith(("UAS", "LexAop")) for w in words
-                        if w.element is not None)  # fmt: skip
-            self._error("which-chromosome", "nothing says which chromosome this is on" if not label else
-                        "this reads like a driver with its effector, which is no genotype", where,
-                        "write all fields, with + for wild type: +; ...; + for chromosome 2")  # fmt: skip
+    def _open(self, placer: Placer) -> Reading:
+        """Return what is known where the chromosome of a field stays open: elements, but no fly."""
+        words = [w.element for f in placer.fields for half in f.halves for w in half.words if w.element is not None]
+        pair = any(_DRIVER_WITH_EFFECTOR.search(e.symbol) for e in words)
+        if len(placer.fields) == 1 and (pair or all(e.kind is Kind.UNKNOWN for e in words)):
+            self._label(pair, placer.fields[0])
             return self._refused()
-        self.problems.append(
-            problem(
-                "no-chromosome",
-                Severity.WARNING,
-                "read as elements only: nothing says which chromosome they are on",
-                self.cleaned.text,
-                where.start,
-                where.end,
-                "write all fields, with + for wild type, or a label such as (II)",
-            )  # fmt: skip
-        )
-        homologues = [homologue_of(half) for half in field.halves]
-        elements = tuple(dict.fromkeys(e for h in homologues for e in h.elements))
-        return Reading(self.text, True, canonical=format_homologues(homologues), elements=elements,
+        homologues = [[homologue_of(h, n) for h in f.halves] for f, n in zip(placer.fields, placer.names, strict=True)]
+        elements = tuple(dict.fromkeys(e for field in homologues for h in field for e in h.elements))
+        return Reading(self.text, True, canonical="; ".join(map(format_homologues, homologues)), elements=elements,
                        problems=self._in_original())  # fmt: skip
 
-
-def _is_formal(element: Element | None) -> bool:
-    """Return whether a symbol is plainly a piece of a genotype: a transposon in braces or an allele in brackets."""
-    return element is not None and bool(
-        element.standard or element.site or (element.kind is Kind.ALLELE and "[" in element.symbol)
-    )
+    def _label(self, pair: bool, field: ReadField) -> None:
+        """Refuse the name of something, or of a driver with its effector."""
+        where = Half((), field.field.start, field.field.end)
+        self._error("nothing-known", "this reads like a driver with its effector, which is no genotype" if pair else
+                    "nothing in this is known, so it is not read as a genotype", where,
+                    "write all fields, with + for wild type: +; ...; + for chromosome 2")  # fmt: skip
 
 
 def read_fly(
@@ -312,10 +306,14 @@ def read_fly(
     fly = reading.fly(sex)
     if fly is not None:
         return fly
-    grave = (Severity.ERROR,) if not reading.ok else (Severity.WARNING,)
-    faults = tuple(p for p in reading.problems if p.severity in grave)
+    grave = Severity.ERROR if not reading.ok else Severity.WARNING
+    faults = tuple(p for p in reading.problems if p.severity is grave)
     shown = text if len(text) <= 120 else text[:117] + "..."
-    what = "is not understood" if not reading.ok else f"names no {sex} fly"
+    what = (
+        "is not understood" if not reading.ok
+        else "leaves a chromosome open" if reading.is_open
+        else f"names no {sex} fly"
+    )  # fmt: skip
     raise GenotypeError(f"the genotype {what}: {shown}", faults[0].hint if faults else "", faults)
 
 
@@ -331,7 +329,7 @@ def reading_json(reading: Reading) -> dict[str, Any]:
         "canonical": reading.canonical,
         "elements": [
             {
-                "symbol": e.symbol, "kind": str(e.kind), "chromosome": e.chromosome, "site": e.site or None,
+                "symbol": e.symbol, "kind": str(e.kind), "chromosome": e.chromosome or None, "site": e.site or None,
                 "position_cM": e.position_cM,
             }
             for e in reading.elements

@@ -8,7 +8,7 @@ stock centres an unwritten chromosome leaves no empty field, so there the place 
 (`w[1118]; P{...}attP2` is X and 3). Two pieces of strong evidence that disagree are an error, not a guess.
 
 Where nothing else speaks, a field before one of chromosome 2 can only be the X, and a field after one of chromosome 3
-only the 4th; that is stated as an assumption.
+only the 4th; that is stated as an assumption. A field of which nothing says the chromosome stays open, with the question.
 """
 
 from __future__ import annotations
@@ -106,12 +106,14 @@ class Placer:
         self.written = len(fields)
         self.text = text
         self.problems: list[Problem] = []
+        #: the chromosome of each field; empty where nothing says it
+        self.names: list[str] = [""] * len(self.fields)
         self.in_places = len(fields) >= 3 or (len(fields) > 1 and any(f.is_plus for f in fields))
 
     def place(self) -> Mapping[str, ReadField] | None:
-        """Return the fields by chromosome; None where that is an error, or nothing is known of a single field.
+        """Return the fields by chromosome; None where that is an error, or where the chromosome of a field stays open.
 
-        A single field of which nothing is known leaves no error in `problems`.
+        An open field leaves no error in `problems`; `names` says which fields are known.
         """
         if not self._counts_fit():
             return None
@@ -220,7 +222,7 @@ class Placer:
     # -- by evidence ---------------------------------------------------------------------------------------------
 
     def _by_evidence(self, spoken: Sequence[str]) -> list[str] | None:
-        names = [n or self._weakly(f) for f, n in zip(self.fields, spoken, strict=True)]
+        names = self.names = [n or self._weakly(f) for f, n in zip(self.fields, spoken, strict=True)]
         if len(names) == 2:
             if self._one_homologue(names):
                 return names[:1]
@@ -230,10 +232,9 @@ class Placer:
             self._fill(names)
         if all(names):
             return names
-        if len(names) > 1:
-            for field, name in zip(self.fields, names, strict=True):
-                if not name:
-                    self._ask(field, names)
+        for field, name in zip(self.fields, names, strict=True):
+            if not name:
+                self._ask(field, names)
         return None
 
     def _weakly(self, field: ReadField) -> str:
@@ -311,8 +312,8 @@ class Placer:
         open_to = [n for n in PAIRS[low : min(after, default=3)] if n != "4"] or ["4"]
         written = self.text[field.field.start : field.field.end].strip()
         ways = "; ".join(f"for {n} write {self._way(field, n, names)}" for n in open_to)
-        self._error("which-chromosome", f"nothing says which chromosome {field.symbols()} is on", field,
-                    ways if len(written) <= 60 else "write all fields, with + for wild type, or a label such as (II)")  # fmt: skip
+        self._say("which-chromosome", Severity.WARNING, f"nothing says which chromosome {field.symbols()} is on", field,
+                  ways if len(written) <= 60 else "write all fields, with + for wild type, or a label such as (II)")  # fmt: skip
 
     def _way(self, field: ReadField, chromosome: str, names: Sequence[str]) -> str:
         """Return the genotype written so that the field is surely that chromosome."""

@@ -70,7 +70,7 @@ def check_unreadable(shelf: Shelf, today: dt.date, catalogue: Catalogue) -> Iter
     """A genotype that is not understood, or that cannot be: wrong chromosome, three homologues, unclosed bracket."""
     for stock in shelf.stocks:
         for problem in stock.reading.problems:
-            if problem.severity is Severity.ERROR:
+            if problem.severity is Severity.ERROR or problem.code == "which-chromosome":
                 where = stock.genotype[problem.start : problem.end]
                 shown = f" (at '{where}')" if 0 < len(where) <= 40 else ""
                 yield _of(stock, problem.code, Severity.ERROR, problem.message + shown, problem.hint)

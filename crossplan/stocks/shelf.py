@@ -73,12 +73,12 @@ class Shelf:
 
     @property
     def rows_refused(self) -> int:
-        """Rows whose genotype was not understood."""
-        return sum(not s.reading.ok for s in self.stocks)
+        """Rows whose genotype was not understood, or leaves a chromosome open: nothing can be planned with them."""
+        return sum(not s.reading.ok or s.reading.is_open for s in self.stocks)
 
     def usable(self) -> tuple[Stock, ...]:
-        """Return the stocks that were understood and are in use."""
-        return tuple(s for s in self.stocks if s.reading.ok and s.in_use)
+        """Return the stocks that were understood, chromosomes and all, and are in use."""
+        return tuple(s for s in self.stocks if s.reading.ok and not s.reading.is_open and s.in_use)
 
     @cached_property
     def _by_name(self) -> dict[str, Stock]:
@@ -123,6 +123,10 @@ def read_stocks(
     return reader.read()
 
 
+#: what other rows of the list may settle
+_QUESTIONS_OF_PLACE = frozenset(("assumed-place", "assumed-chromosome", "which-chromosome"))
+
+
 class _ShelfReader:
     def __init__(self, table: Table, columns: Mapping[str, str], catalogue: Catalogue) -> None:
         self.table = table
@@ -148,15 +152,15 @@ class _ShelfReader:
     def _second_pass(self) -> None:
         known: dict[str, Element] = {}
         for reading in self._readings.values():
-            if reading.ok and not any(p.code == "assumed-place" for p in reading.problems):
+            if reading.ok and not reading.is_open and not any(p.code == "assumed-place" for p in reading.problems):
                 for element in reading.elements:
                     if element.chromosome and not element.is_balancer:
                         known.setdefault(element.symbol, element)
         for text, reading in self._readings.items():
             # other assumptions are no question of place; such a row would only be settled by itself
-            if not reading.ok or any(p.code in ("assumed-place", "assumed-chromosome") for p in reading.problems):
+            if not reading.ok or any(p.code in _QUESTIONS_OF_PLACE for p in reading.problems):
                 again = read_genotype(text, self.catalogue, known)
-                if again.ok:
+                if again.ok and not again.is_open:
                     self._readings[text] = again
 
     def _cell(self, row: Row, kind: str) -> str:
@@ -173,7 +177,13 @@ class _ShelfReader:
         reading = self._readings[text]
         for p in reading.problems:
             self.problems.append(
-                replace(p, path=self.table.path, line=row.number, column=self.columns.get("genotype", "genotype"))
+                replace(
+                    p,
+                    path=self.table.path,
+                    line=row.number,
+                    column=self.columns.get("genotype", "genotype"),
+                    severity=Severity.ERROR if p.code == "which-chromosome" else p.severity,
+                )  # fmt: skip
             )
         name = self._cell(row, "stock") or f"row {row.number}"
         if name in seen:

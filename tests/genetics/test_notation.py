@@ -198,7 +198,7 @@ class TestSex:
 class TestChromosomes:
     def test_what_other_rows_say_settles_an_open_chromosome(self) -> None:
         known = {"kx-GAL4": Element("kx-GAL4", Kind.INSERTION, "3", component="GAL4")}
-        assert not read_genotype("w; kx-GAL4").ok
+        assert read_genotype("w; kx-GAL4").is_open
         reading = read_genotype("w; kx-GAL4", known=known)
         assert reading.canonical == "w; +; kx-GAL4"
         assert "assumed-chromosome" in codes(reading)
@@ -220,16 +220,23 @@ class TestChromosomes:
     def test_the_number_of_an_insertion_is_only_a_hint(self) -> None:
         assert read_genotype("w[*]; P{w[+mC]=UAS-k}3").canonical == "w[*]; +; UAS-k@3"
         assert read_genotype("w[*]; P{w[+mC]=UAS-k}1; +").canonical == "w[*]; UAS-k@1; +"
-        assert not read_genotype("w[*]; P{w[+mC]=UAS-k}1").ok
+        assert read_genotype("w[*]; P{w[+mC]=UAS-k}1").is_open
 
     def test_elements_without_a_chromosome_make_no_fly(self) -> None:
         reading = read_genotype("P{lacW}kxg[k1]")
         assert reading.ok
         assert not reading.flies()
         assert [e.symbol for e in reading.elements] == ["lacW@kxg[k1]"]
-        with pytest.raises(GenotypeError) as caught:
+        assert [e.chromosome for e in reading.elements] == [""]
+        with pytest.raises(GenotypeError, match="leaves a chromosome open") as caught:
             read_fly("P{lacW}kxg[k1]", "female")
-        assert "(II)" in caught.value.hint
+        assert "for 3 write '+; +; P{lacW}kxg[k1]'" in caught.value.hint
+
+    def test_an_open_field_leaves_the_others_where_they_are(self) -> None:
+        reading = read_genotype("w; kx-GAL4, UAS-k/+")
+        assert reading.ok
+        assert not reading.flies()
+        assert [(e.symbol, e.chromosome) for e in reading.elements] == [("w", "X"), ("UAS-k", ""), ("kx-GAL4", "")]
 
     def test_elements_are_on_the_chromosome_of_their_field(self) -> None:
         assert element("w; kx-GAL4; UAS-k", "kx-GAL4").chromosome == "2"
@@ -421,7 +428,6 @@ MALFORMED: list[tuple[str, str, int, str]] = [
     ("w; Sp/CyO\nw; Dr/TM3, Sb", "two-genotypes", 0, "w; Sp/CyO\nw; Dr/TM3, Sb"),
     ("w; Sp\x00/CyO", "control-character", 5, "\x00"),
     ("w; \u202eSp/CyO", "control-character", 3, "\u202e"),
-    ("w; UAS-kx", "which-chromosome", 3, "UAS-kx"),
     ("w; Sp/CyO; + Dr", "plus-with-symbols", 11, "+ Dr"),
     ("w[]; Sp/CyO", "empty-allele", 0, "w[]"),
     ("w; ???; +", "no-symbol", 3, "???"),
@@ -440,8 +446,8 @@ MALFORMED: list[tuple[str, str, int, str]] = [
     ("w; b[1]/e[1]; +", "chromosomes-disagree", 3, "b[1]/e[1]"),
     ("w; Sp Y/CyO; +", "y-with-others", 3, "Sp Y"),
     ("+; +; TM6B/TM6B/Sb", "three-homologues", 6, "TM6B/TM6B/Sb"),
-    ("w; kx>UAS-k", "which-chromosome", 3, "kx>UAS-k"),
-    ("R12-GAL4>UAS-kx", "which-chromosome", 0, "R12-GAL4>UAS-kx"),
+    ("R12-GAL4>UAS-kx", "nothing-known", 0, "R12-GAL4>UAS-kx"),
+    ("ask Ida", "nothing-known", 0, "ask Ida"),
     ("w; +; kx_a_b_c_d; +", "underscores", 6, "kx_a_b_c_d"),
     ("w; TM3/Sp; CyO/Dr", "chromosomes-disagree", 3, "TM3/Sp"),
     ("w; 17/05/2024; +", "date", 3, "17/05/2024"),
@@ -513,7 +519,7 @@ class TestTables:
 
     @pytest.mark.parametrize(("chromosome", "canonical"), [("2", "w; kx-GAL4; +"), ("3", "w; +; kx-GAL4")])
     def test_known_settles_an_open_field_either_way(self, chromosome: str, canonical: str) -> None:
-        assert codes(read_genotype("w; kx-GAL4"), "error") == {"which-chromosome"}
+        assert codes(read_genotype("w; kx-GAL4"), "warning") == {"which-chromosome"}
         known = {"kx-GAL4": Element("kx-GAL4", Kind.INSERTION, chromosome, component="GAL4")}
         reading = read_genotype("w; kx-GAL4", known=known)
         assert (reading.ok, reading.canonical) == (True, canonical)
