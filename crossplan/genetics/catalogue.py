@@ -544,6 +544,10 @@ class Catalogue:
             return None
         return Locus(gene, marker.chromosome, marker.map_cM, marker.source, marker.band, marker.kind)
 
+    def genes(self) -> tuple[str, ...]:
+        """Return every gene whose chromosome the catalogue knows."""
+        return tuple(dict.fromkeys((*self._loci, *(m.gene for m in self._markers.values() if m.chromosome))))
+
     def band_to_cM(self, arm: str, band: str) -> float | None:
         """Return the place of a polytene band such as `68A4` in cM, None when it is not a band of `arm`.
 

@@ -2,9 +2,11 @@
 
     notation_clean      noise put right with a notice, and what is refused unread
     notation_split      fields, homologues, items
+    notation_shared     balancers of two chromosomes that are written together
     notation_items      what belongs to the symbol before it, and what is a remark
     notation_insertion  transgenes
-    notation_element    what one symbol is
+    notation_element    what one symbol is; notation_balancer and notation_allele read those two kinds,
+                        and notation_word says what a symbol was read as
     notation_place      which chromosome a field is, in the order of evidence
     notation_flies      the female and the male
     notation_write      writing flies down
@@ -27,11 +29,13 @@ from crossplan.genetics.chromosome import FEMALE, MALE, Sex
 from crossplan.genetics.element import Element, Kind
 from crossplan.genetics.fly import Fly
 from crossplan.genetics.notation_clean import MOST_SHOWN, Cleaned, clean, problem
-from crossplan.genetics.notation_element import Word, WordReader
+from crossplan.genetics.notation_element import WordReader
 from crossplan.genetics.notation_flies import build_flies, homologue_of
 from crossplan.genetics.notation_items import Symbols, join_items
 from crossplan.genetics.notation_place import Placer, ReadField, ReadHalf
+from crossplan.genetics.notation_shared import share_balancers
 from crossplan.genetics.notation_split import Field, Half, Item, split_genotype
+from crossplan.genetics.notation_word import Word
 from crossplan.genetics.notation_write import fly_json as fly_json
 from crossplan.genetics.notation_write import format_genotype as format_genotype
 from crossplan.genetics.notation_write import format_homologues
@@ -119,6 +123,8 @@ class _Reader:
         if fault is not None:
             self.problems.append(fault)
             return self._refused()
+        fields, shared = share_balancers(fields, self.catalogue, self.cleaned.text)
+        self.problems += [shared] if shared is not None else []
         read = [self._field(field, i) for i, field in enumerate(fields)]
         if self._failed():
             return self._refused()
@@ -207,7 +213,7 @@ class _Reader:
         if index == 2 and balancer.traits.linked_to == "3":
             element = self._third_part(balancer)
         elif not any(w.element is not None and self._is_marker(w.element) for w in words):
-            element, note = self.words.with_assumed_marker(balancer, item)
+            element, note = self.words.balancers.with_assumed_marker(balancer, item)
             if note is not None:
                 self.problems.append(note)
         if element is balancer:

@@ -20,6 +20,7 @@ from crossplan.genetics.element import Element, Kind
 from crossplan.genetics.fly import WILD_TYPE, Fly, Homologue, Pair, Y
 from crossplan.genetics.notation_clean import problem
 from crossplan.genetics.notation_place import ReadField, ReadHalf
+from crossplan.genetics.survival import lethal_groups
 
 _Homologues = tuple[Homologue, ...]
 
@@ -152,6 +153,10 @@ class _Builder:
             if first == second and first.balancer is not None and first.balancer.traits.lethal:
                 self._say("balancer-twice", Severity.WARNING, f"flies with two copies of {first.balancer.symbol} die",
                           name, f"write {first.balancer.symbol}/+ if one copy is meant")  # fmt: skip
+            elif lethal_groups(first) & lethal_groups(second):
+                groups = ", ".join(sorted(lethal_groups(first) & lethal_groups(second)))
+                self._say("dead-fly", Severity.NOTE, f"flies of this genotype die: no working copy of {groups}", name,
+                          "write the other homologue if the fly has one")  # fmt: skip
 
     # -- the X pair ----------------------------------------------------------------------------------------------
 

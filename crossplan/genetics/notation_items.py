@@ -150,8 +150,8 @@ class _Joiner:
         elif self._starts_with_balancer(inner):
             self._floating(item, before)
         elif inner.lower().startswith("or "):
-            self._error("choice", f"'{item.text}' leaves open which genotype is meant", item,
-                        "write one row for each genotype")  # fmt: skip
+            self._problem("choice", Severity.WARNING, f"'{item.text}' is an alternative; what stands before it is read", item,
+                          "write one row for each genotype")  # fmt: skip
         else:
             self._note("remark", f"'{item.text}' is taken for a remark", item)
 

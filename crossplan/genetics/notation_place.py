@@ -21,8 +21,8 @@ from crossplan.errors import Problem, Severity
 from crossplan.genetics.chromosome import PAIRS
 from crossplan.genetics.element import Kind
 from crossplan.genetics.notation_clean import problem
-from crossplan.genetics.notation_element import Rank, Word
 from crossplan.genetics.notation_split import Field
+from crossplan.genetics.notation_word import Rank, Word
 
 _ROMAN: Final = {"X": "I", "2": "II", "3": "III", "4": "IV"}
 _FOURTH: Final = 4

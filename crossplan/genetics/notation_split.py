@@ -34,7 +34,7 @@ class Item:
 
 @dataclass(frozen=True, slots=True)
 class Half:
-    """The items of one homologue as written; `start` and `end` enclose it."""
+    """The items of one homologue as written; `start` and `end` enclose them, or the gap where there are none."""
 
     items: tuple[Item, ...]
     start: int
@@ -102,7 +102,8 @@ class _Splitter:
 
     def _end_half(self, i: int) -> None:
         self._end_item(i)
-        self.halves.append(Half(tuple(self.items), self.half_start, i))
+        start, end = (self.items[0].start, self.items[-1].end) if self.items else (self.half_start, i)
+        self.halves.append(Half(tuple(self.items), start, end))
         self.items = []
         self.half_start = i + 1
 
@@ -145,9 +146,9 @@ class _Splitter:
 
     def _bare_slash(self) -> Problem | None:
         for field in self.fields:
-            for half in field.halves:
+            for i, half in enumerate(field.halves):
                 if len(field.halves) > 1 and not half.items:
-                    start = max(min(half.start, len(self.text) - 1) - (half.start == half.end), 0)
+                    start = half.end if i == 0 else half.start - 1
                     return self._error(
                         "empty-homologue", "a homologue is missing beside the slash", start, start + 1,
                         "write + for a wild-type homologue",

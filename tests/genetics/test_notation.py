@@ -440,7 +440,6 @@ MALFORMED: list[tuple[str, str, int, str]] = [
     ("w; Df(5L)k1/CyO", "no-such-chromosome", 3, "Df(5L)k1"),
     ("UAS-kx (V)", "no-such-chromosome", 0, "UAS-kx (V)"),
     ("w; w__x__y; +", "underscores", 3, "w__x__y"),
-    ("w; kx-GAL4BDSC1234; +", "stock-number", 3, "kx-GAL4BDSC1234"),
     ("((((((((((((((((w))))))))))))))))", "too-deep", 12, "("),
     ("w; UAS-kx/UAS-ky@attP2/TM3; +", "three-homologues", 3, "UAS-kx/UAS-ky@attP2/TM3"),
     ("w; b[1]/e[1]; +", "chromosomes-disagree", 3, "b[1]/e[1]"),

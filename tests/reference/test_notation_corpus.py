@@ -77,6 +77,9 @@ UNDERSTOOD = [
     ("w; +/CyO-ActGFP", "w; +/CyO-GFP; +"),
     ("w; +/CyO, Kr-GFP", "w; +/CyO, Kr-GFP; +"),
     ("FM7a/w[1118]", "w[1118]/FM7a; +; +"),
+    # a superscript that was lost behind a mapped gene
+    ("w; nubK51/+", "w; nub[K51]/+; +"),
+    ("egts2/+", "+; +; +/eg[ts2]"),
     # sex
     ("w[1118]/Y; UAS-kx@attP40", "w[1118]/Y; UAS-kx@attP40; +"),
     ("w/Dp(1;Y)y[+]; +; +", "w/Dp(1;Y)y[+]; +; +"),
@@ -113,6 +116,13 @@ ASSUMED = [
     ("PBac(w[+mC]=UAS-kx)VK00037", "+; UAS-kx@VK00037; +", "old-brackets"),
     ("AD-K1@VK00027; DBD-Q1@attP2", "+; +; DBD-Q1@attP2 AD-K1@VK00027", "one-homologue"),
     ("w; UAS-kx@attP40 (/CyO); +", "w; UAS-kx@attP40/CyO; +", "floating-balancer"),
+    ("w; AD-K1@attP40; DBD-Q1@attP2/CyO::TM6B", "w; AD-K1@attP40/CyO; DBD-Q1@attP2/TM6B", "balancers-together"),
+    ("w; +; +/CyO::TM6B", "w; +/CyO; +/TM6B", "balancers-together"),
+    ("w; kx-GAL4BDSC:12345; +", "w; kx-GAL4; +", "stock-number"),
+    ("w; +; UAS-kx in VK00005_UAS-q in attP2/TM6B, Tb", "w; +; UAS-q@attP2 UAS-kx@VK00005/TM6B, Tb", "underscore"),
+    ("w; kx-GAL4 (or q-GAL4); +", "w; kx-GAL4; +", "choice"),
+    ("HA-nub/+", "+; +/HA-nub; +", "assumed-chromosome"),
+    ("cK51/+", "+; +/cK51; +", "assumed-chromosome"),
     # read, but for the chromosome: a question to a person, and no fly until it is answered
     ("P{lacW}kxg[k1]", "lacW@kxg[k1]", "which-chromosome"),
     ("kxg[1]/+", "kxg[1]/+", "which-chromosome"),
@@ -142,7 +152,8 @@ REFUSED = [
     ("w/y; +; +", "y-or-yellow", ""),
     ("w; TM6Bb/+; +", "balancer-typo", "TM6Bb"),
     ("w; Cy0/+", "balancer-typo", "Cy0"),
-    ("w; +; +/CyO::TM6B", "two-balancers", ""),
+    ("w; +; TM3, Sb/CyO::TM6B, Tb", "two-balancers", ""),
+    ("w; CyO::TM6B; +", "two-balancers", "CyO::TM6B"),
     ("w; T(2;3)SM6a-TM6B/Sp", "linked", ""),
     ("P{UAS-kx", "bracket", "{"),
     ("w[1118]]; +", "bracket", "]"),
