@@ -79,7 +79,6 @@ UNDERSTOOD = [
     ("FM7a/w[1118]", "w[1118]/FM7a; +; +"),
     # a superscript that was lost behind a mapped gene
     ("w; nubK51/+", "w; nub[K51]/+; +"),
-    ("egts2/+", "+; +; +/eg[ts2]"),
     # sex
     ("w[1118]/Y; UAS-kx@attP40", "w[1118]/Y; UAS-kx@attP40; +"),
     ("w/Dp(1;Y)y[+]; +; +", "w/Dp(1;Y)y[+]; +; +"),
@@ -121,8 +120,8 @@ ASSUMED = [
     ("w; kx-GAL4BDSC:12345; +", "w; kx-GAL4; +", "stock-number"),
     ("w; +; UAS-kx in VK00005_UAS-q in attP2/TM6B, Tb", "w; +; UAS-q@attP2 UAS-kx@VK00005/TM6B, Tb", "underscore"),
     ("w; kx-GAL4 (or q-GAL4); +", "w; kx-GAL4; +", "choice"),
-    ("HA-nub/+", "+; +/HA-nub; +", "assumed-chromosome"),
-    ("cK51/+", "+; +/cK51; +", "assumed-chromosome"),
+    ("HA-nub/+", "+; HA-nub/+; +", "assumed-chromosome"),
+    ("egts2/+", "+; +; egts2/+", "assumed-chromosome"),
     # read, but for the chromosome: a question to a person, and no fly until it is answered
     ("P{lacW}kxg[k1]", "lacW@kxg[k1]", "which-chromosome"),
     ("kxg[1]/+", "kxg[1]/+", "which-chromosome"),
