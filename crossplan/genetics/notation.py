@@ -183,13 +183,19 @@ class _Reader:
             self.problems += symbols.problems
             halves.append(self._half(half, symbols, index, len(field.halves) == 1))
             if half.items and not symbols.items and not symbols.or_y:
-                self._error(
-                    "remark-only", "nothing but a remark stands here", half, "write + for a wild-type chromosome"
-                )
+                self._remark_only(half, len(field.halves) == 1 and index > 0)
             if symbols.floating and len(field.halves) == 1:
                 across = Half(symbols.floating, symbols.floating[0].start, symbols.floating[-1].end)
                 halves.append(self._half(across, Symbols(list(symbols.floating)), index, False))
         return ReadField(field, tuple(halves), index)
+
+    def _remark_only(self, half: Half, whole_field: bool) -> None:
+        """A remark behind the last semicolon leaves that chromosome unwritten; beside a slash something is missing."""
+        severity = Severity.NOTE if whole_field else Severity.ERROR
+        self.problems.append(
+            problem("remark-only", severity, "nothing but a remark stands here", self.cleaned.text, half.start, half.end,
+                    "write + for a wild-type chromosome")
+        )  # fmt: skip
 
     def _half(self, half: Half, symbols: Symbols, index: int, alone: bool) -> ReadHalf:
         words: list[Word] = []

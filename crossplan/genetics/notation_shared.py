@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import re
 from collections.abc import Sequence
-from dataclasses import replace
 
 from crossplan.errors import Problem, Severity
 from crossplan.genetics.catalogue import Catalogue
@@ -38,7 +37,7 @@ def share_balancers(
         "write each balancer behind the slash of its own chromosome",
     )  # fmt: skip
     before = _with_homologue(fields[-2], _part(items[0], match, "first"))
-    here = replace(last, halves=(last.halves[0], _half(_part(items[0], match, "second"))))
+    here = last._replace(halves=(last.halves[0], _half(_part(items[0], match, "second"))))
     return (*fields[:-2], before, here), note
 
 
@@ -53,4 +52,4 @@ def _half(item: Item) -> Half:
 def _with_homologue(field: Field, item: Item) -> Field:
     first = field.halves[0]
     wild = Half((Item("+", field.start, field.start),), field.start, field.start)
-    return replace(field, halves=(first if first.items else wild, _half(item)))
+    return field._replace(halves=(first if first.items else wild, _half(item)))

@@ -1,14 +1,14 @@
 """The skeleton of a genotype: fields by semicolon, homologues by slash, items by comma or blank.
 
-A sign inside brackets belongs to a symbol and divides nothing. One pass without recursion, so the time grows with the
-length; depth and number of parts are limited.
+A sign inside brackets belongs to a symbol and divides nothing. One or two passes without recursion, so the time grows with
+the length; depth and number of parts are limited.
 """
 
 from __future__ import annotations
 
 import re
-from dataclasses import dataclass
-from typing import Final
+from collections.abc import Sequence
+from typing import Final, NamedTuple
 
 from crossplan.errors import Problem, Severity
 from crossplan.genetics.notation_clean import problem
@@ -20,11 +20,15 @@ MOST_HOMOLOGUES: Final = 12
 
 _CLOSES: Final = {"]": "[", "}": "{", ")": "("}
 _CLOSING: Final = {"[": "]", "{": "}", "(": ")"}
+#: a divider, or a symbol whose brackets are closed and at most two deep; deeper ones are walked through sign by sign
+_WHOLE = re.compile(
+    r"[;/]|[, ]+|(?:[^\[\]{}();/, ]+|\[[^\[\]{}()]*\]|\([^\[\]{}()]*\)"
+    r"|\{(?:[^\[\]{}()]|\[[^\[\]{}()]*\]|\([^\[\]{}()]*\))*\})+"
+)
 _SIGN = re.compile(r"[\[\]{}();/, ]")
 
 
-@dataclass(frozen=True, slots=True)
-class Item:
+class Item(NamedTuple):
     """One word of a genotype and where it stands in the cleaned text."""
 
     text: str
@@ -32,8 +36,7 @@ class Item:
     end: int
 
 
-@dataclass(frozen=True, slots=True)
-class Half:
+class Half(NamedTuple):
     """The items of one homologue as written; `start` and `end` enclose them, or the gap where there are none."""
 
     items: tuple[Item, ...]
@@ -41,8 +44,7 @@ class Half:
     end: int
 
 
-@dataclass(frozen=True, slots=True)
-class Field:
+class Field(NamedTuple):
     """What stands between two semicolons: one homologue, or more with slashes between them."""
 
     halves: tuple[Half, ...]
@@ -71,6 +73,32 @@ class _Splitter:
         self.field_start = self.half_start = self.item_start = 0
 
     def run(self) -> Problem | None:
+        parts = _WHOLE.findall(self.text)
+        if sum(map(len, parts)) == len(self.text):
+            self._all_closed(parts)
+        else:
+            fault = self._sign_by_sign()
+            if fault is not None:
+                return fault
+        self._end_field(len(self.text))
+        if len(self.fields) > MOST_FIELDS or any(len(f.halves) > MOST_HOMOLOGUES for f in self.fields):
+            return self._error("five-fields", "more parts than any fly has chromosomes", 0, len(self.text))
+        return self._bare_slash()
+
+    def _all_closed(self, parts: Sequence[str]) -> None:
+        i = 0
+        for part in parts:
+            end = i + len(part)
+            sign = part[0]
+            if sign == ";":
+                self._end_field(i)
+            elif sign == "/":
+                self._end_half(i)
+            elif sign not in ", ":
+                self.items.append(Item(part, i, end))
+            i = end
+
+    def _sign_by_sign(self) -> Problem | None:
         for match in _SIGN.finditer(self.text):
             i, sign = match.start(), match.group()
             fault = self._bracket(sign, i) if sign in "[]{}()" else self._divide(sign, i)
@@ -78,19 +106,17 @@ class _Splitter:
                 return fault
         if self.open_at:
             return self._unclosed()
-        end = len(self.text)
-        self._end_field(end)
-        return self._bare_slash()
+        self._end_item(len(self.text))
+        return None
 
     def _divide(self, sign: str, i: int) -> Problem | None:
         if self.open_at:
             return None
+        self._end_item(i)
         if sign == ";":
             self._end_field(i)
         elif sign == "/":
             self._end_half(i)
-        else:
-            self._end_item(i)
         if len(self.fields) > MOST_FIELDS or len(self.halves) > MOST_HOMOLOGUES:
             return self._error("five-fields", "more parts than any fly has chromosomes", i, i + 1)
         return None
@@ -101,17 +127,17 @@ class _Splitter:
         self.item_start = i + 1
 
     def _end_half(self, i: int) -> None:
-        self._end_item(i)
-        start, end = (self.items[0].start, self.items[-1].end) if self.items else (self.half_start, i)
-        self.halves.append(Half(tuple(self.items), start, end))
+        items = self.items
+        start, end = (items[0].start, items[-1].end) if items else (self.half_start, i)
+        self.halves.append(Half(tuple(items), start, end))
         self.items = []
         self.half_start = i + 1
 
     def _end_field(self, i: int) -> None:
         self._end_half(i)
-        start = self.halves[0].items[0].start if self.halves[0].items else self.field_start
-        end = self.halves[-1].items[-1].end if self.halves[-1].items else i
-        self.fields.append(Field(tuple(self.halves), start, end))
+        first, last = self.halves[0], self.halves[-1]
+        start = first.start if first.items else self.field_start
+        self.fields.append(Field(tuple(self.halves), start, last.end if last.items else i))
         self.halves = []
         self.field_start = i + 1
 
