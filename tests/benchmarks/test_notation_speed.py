@@ -27,7 +27,8 @@ start: (symbol? delimiter)* symbol?
 delimiter: SEMICOLON | SLASH | GAP
 symbol: (CHARACTERS | bracket)+
 bracket: "[" inner* "]" | "{" inner* "}" | "(" inner* ")"
-inner: INNER | bracket
+inner: INNER | nested
+nested: "[" inner* "]" | "{" inner* "}" | "(" inner* ")"
 SEMICOLON: ";"
 SLASH: "/"
 GAP: /[, ]+/

@@ -433,7 +433,7 @@ MALFORMED: list[tuple[str, str, int, str]] = [
     ("w; ???; +", "no-symbol", 3, "???"),
     ("CyO/+; w", "wrong-order", 0, "CyO/+"),
     ("w/y; +; +", "y-or-yellow", 0, "w/y"),
-    ("w; Sp/CyO; (see note)", "remark-only", 11, "(see note)"),
+    ("w; Sp/(see note); +", "remark-only", 6, "(see note)"),
     ("w; Sp/CyOxTM3", "balancer-typo", 6, "CyOxTM3"),
     ("w; CyO-TM3/Sp", "two-balancers", 3, "CyO-TM3"),
     ("w; Sp/T(2;3)SM6a-TM6B", "linked", 3, "Sp/T(2;3)SM6a-TM6B"),
