@@ -76,7 +76,7 @@ class Reading:
     @property
     def assumed(self) -> bool:
         """Whether something was assumed that a person may want to confirm."""
-        return self.ok and any(p.severity is Severity.WARNING for p in self.problems)
+        return self.ok and not self.is_open and any(p.severity is Severity.WARNING for p in self.problems)
 
     @property
     def is_open(self) -> bool:
@@ -291,6 +291,7 @@ class _Reader:
         words = [w.element for f in placer.fields for half in f.halves for w in half.words if w.element is not None]
         pair = any(_DRIVER_WITH_EFFECTOR.search(e.symbol) for e in words)
         if len(placer.fields) == 1 and (pair or all(e.kind is Kind.UNKNOWN for e in words)):
+            self.problems = [p for p in self.problems if p.code != "which-chromosome"]
             self._label(pair, placer.fields[0])
             return self._refused()
         homologues = [[homologue_of(h, n) for h in f.halves] for f, n in zip(placer.fields, placer.names, strict=True)]

@@ -239,7 +239,7 @@ _EDITS: Final[tuple[tuple[str, re.Pattern[str], _Pieces, str], ...]] = (
         "brackets round the whole genotype",
     ),
     ("e.g.", re.compile(r"^\s*e\.g\.,?\s*"), (), "a label in front"),
-    (": ", re.compile(r"^\s*[A-Z][A-Za-z ]{2,30}: +"), (), "a label in front"),
+    (": ", re.compile(r"^\s*[A-Za-z0-9#][\w#. -]{1,40}: +(?=\S)"), (), "a label in front"),
     (" and", re.compile(r"\s+and\s*$"), (), "a word at the end"),
     ("[", re.compile(r"(?<=\S)\[[^\[\]]*\]"), _without_blanks, "blanks inside brackets"),
     (" ", re.compile(r"(?<=[(\[{]) +| +(?=[)\]}])"), (), "blanks inside brackets"),

@@ -33,7 +33,7 @@ from crossplan.genetics.notation_insertion import (
     markers_and_name,
 )
 from crossplan.genetics.notation_split import Item
-from crossplan.genetics.notation_word import Evidence, Rank, SymbolReader, Word
+from crossplan.genetics.notation_word import Evidence, Rank, SymbolReader, Word, said
 
 _LABEL = re.compile(
     r"(?P<base>.+)\((?:chr(?:omosome)?\.? ?)?(?P<name>X|[1-5](?:L|R|LR)?|I|II|III|IV|V)\)", re.IGNORECASE
@@ -66,6 +66,8 @@ _UNDERSCORE_AFTER_SITE = re.compile(r"[^@_]+@(?P<site>[^_@]+)_(?P<rest>.+)")
 #: what cannot be the name of an element: a sign in front, a word that divides, a chromosome, a Y hung on
 _NO_SYMBOL = re.compile(r"[^\w{]|(?:or|and|in|at|oder|x|X|I|II|III|IV|V)(?:\(|$)|.*\(Y\)|.*@.*@|.*@$|.*<|.*>$|(?!(?:PBac|P|Mi|M)[(\[])[^{]*=[^{]*$"
                         r"|(?:Df|Dp|In|T|Tp|R|C|Ab)\([^()]*\)$")  # fmt: skip
+#: a construct in a gene, named by the allele that it makes: `elav[C155]-GAL4`
+_IN_GENE = re.compile(r"(?P<gene>[^\[\]{}@]+)\[[^\[\]]+\]-")
 _LETHAL_WORD = re.compile(r"(?i)lethal\w*|\[?l(?:ethal)?\]")
 
 
@@ -351,7 +353,10 @@ class WordReader(SymbolReader):
         if component is None:
             return None
         traits = self.catalogue.insertion_traits((), component)
-        return Word(Element(item.text, Kind.INSERTION, component=component.cls, traits=traits))
+        element = Element(item.text, Kind.INSERTION, component=component.cls, traits=traits)
+        hit = _IN_GENE.match(item.text)
+        locus = self.catalogue.locus(hit["gene"]) if hit is not None else None
+        return Word(element, said(locus.chromosome, f"the gene {locus.gene}") if locus is not None else ())
 
     def _before_number(self, item: Item, number: re.Match[str]) -> list[Word]:
         """Read a symbol to which the number of a stock is glued, as a lost superscript leaves it."""

@@ -30,6 +30,8 @@ _BAND_NAME = re.compile(r"(?P<division>\d{2,3})(?P<letter>[A-F])\d{0,2}[a-z]?")
 _NUMBER_NAME = re.compile(r"(?P<number>[1-4])(?:[A-Za-z]{0,2}|w-)")
 _FRT = re.compile(r"(?:neo)?FRT(?:\(?w\[?hs\]?\)?|neo)?[-_ ]?(?P<name>G13|2A|9-2|18A|19A|40A?|42[BD]|79D?|80B?|82B?|101)",
                   re.IGNORECASE)  # fmt: skip
+#: the construct of the FRT insertions; in braces their name stands behind: P{neoFRT}82B
+_FRT_CONSTRUCT = re.compile(r"(?:neo)?FRT(?:\(w\[?hs\]?\))?", re.IGNORECASE)
 #: arm and band of the FRT insertions that are in use (Xu & Rubin 1993, Development 117:1223; Chou & Perrimon 1996,
 #: Genetics 144:1673; 2A and 79D from memory)
 FRT_PLACES: Final = {
@@ -103,7 +105,8 @@ def insertion(
     """
     site = catalogue.site(place) if place else None
     component = component_of(catalogue, name)
-    where = place_of(place, site, catalogue)
+    where = _frt_place(place, catalogue) if _FRT_CONSTRUCT.fullmatch(name) else None
+    where = where or place_of(place, site, catalogue)
     symbol = _short(name, site.name if site else place, standard)
     element = Element(
         symbol, Kind.INSERTION, "" if where.hint_only else where.chromosome, site=site.name if site else "",
@@ -173,11 +176,20 @@ def frt(text: str, catalogue: Catalogue) -> tuple[Element, Place] | None:
     match = _FRT.fullmatch(text)
     if match is None:
         return None
-    arm, band = FRT_PLACES[match["name"].upper()]
-    chromosome = CHROMOSOME_OF_ARM[arm]
-    cM = catalogue.band_to_cM(arm, band)
+    where = _frt_place(match["name"], catalogue)
+    if where is None:
+        return None
     component = component_of(catalogue, text)
     traits = catalogue.insertion_traits((), component) if component is not None else Traits()
-    element = Element(text, Kind.INSERTION, chromosome, position_cM=cM, component=component.cls if component else "",
+    element = Element(text, Kind.INSERTION, where.chromosome, position_cM=where.cM, component=component.cls if component else "",
                       traits=traits)  # fmt: skip
-    return element, Place(chromosome, cM, f"the band of {text}")
+    return element, where
+
+
+def _frt_place(name: str, catalogue: Catalogue) -> Place | None:
+    """Return where the FRT insertion of that name is, such as 82B; None for a name that is not in use."""
+    found = FRT_PLACES.get(name.upper())
+    if found is None:
+        return None
+    arm, band = found
+    return Place(CHROMOSOME_OF_ARM[arm], catalogue.band_to_cM(arm, band), f"FRT{name} in {band}")

@@ -70,6 +70,8 @@ class _Joiner:
         elif text in ("in", "at", "@") and after is not None:
             self._extend(before, f"@{_bare(after.text)}", after)
             return 2
+        elif text[0] == "@" and len(text) > 1 and "@" not in before.text:
+            self._extend(before, text, item)
         elif _ROUND.fullmatch(text):
             self._parenthesis(item, before)
         elif _SQUARE.fullmatch(text):

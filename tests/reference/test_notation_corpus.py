@@ -49,6 +49,11 @@ UNDERSTOOD = [
     ("w; TM3, Sb[1]/TM6B, Tb[1]", "w; +; TM3, Sb[1]/TM6B, Tb[1]"),
     ("w[*]; P{lacW}e[kx1]", "w[*]; +; lacW@e[kx1]"),
     ("w; FRT40A", "w; FRT40A; +"),
+    ("w; P{ry[+t7.2]=neoFRT}82B", "w; +; P{ry[+t7.2]=neoFRT}82B"),
+    ("w; P{FRT(w[hs])}2A", "w; +; FRT(w[hs])@2A"),
+    ("w; eg[kx1]-GAL4", "w; +; eg[kx1]-GAL4"),
+    ("w; UAS-kx @attP40", "w; UAS-kx@attP40; +"),
+    ("K-123: w; Sp/CyO", "w; Sp/CyO; +"),
     ("y[1] w[1118] P{hsFLP}1", "y[1] w[1118] hsFLP@1; +; +"),
     # written in places
     ("w; AD-K12@attP40/CyO; +/TM6B, Tb", "w; AD-K12@attP40/CyO; +/TM6B, Tb"),
@@ -122,12 +127,15 @@ ASSUMED = [
     ("w; kx-GAL4 (or q-GAL4); +", "w; kx-GAL4; +", "choice"),
     ("HA-nub/+", "+; HA-nub/+; +", "assumed-chromosome"),
     ("egts2/+", "+; +; egts2/+", "assumed-chromosome"),
-    # read, but for the chromosome: a question to a person, and no fly until it is answered
-    ("P{lacW}kxg[k1]", "lacW@kxg[k1]", "which-chromosome"),
-    ("kxg[1]/+", "kxg[1]/+", "which-chromosome"),
-    ("w; UAS-kx", "w; UAS-kx", "which-chromosome"),
-    ("UAS-kx/+; kx-GAL4/+", "UAS-kx/+; kx-GAL4/+", "which-chromosome"),
-    ("UAS-kx", "UAS-kx", "which-chromosome"),
+]
+
+#: read, but for the chromosome, which is a question to a person; there is no fly until it is answered
+OPEN = [
+    ("P{lacW}kxg[k1]", "lacW@kxg[k1]"),
+    ("kxg[1]/+", "kxg[1]/+"),
+    ("w; UAS-kx", "w; UAS-kx"),
+    ("UAS-kx/+; kx-GAL4/+", "UAS-kx/+; kx-GAL4/+"),
+    ("UAS-kx", "UAS-kx"),
 ]
 
 #: not understood: text, code of the error, and the characters that it points at (empty: not checked)
@@ -200,6 +208,16 @@ def test_understood_with_a_stated_assumption(text: str, short: str, code: str) -
     assert reading.assumed
     assert reading.canonical == short
     assert code in {p.code for p in reading.problems if p.severity == "warning"}
+
+
+@pytest.mark.parametrize(("text", "short"), OPEN)
+def test_understood_but_for_a_chromosome(text: str, short: str) -> None:
+    reading = read_genotype(text)
+    assert reading.ok
+    assert reading.is_open
+    assert not reading.assumed
+    assert not reading.flies()
+    assert reading.canonical == short
 
 
 @pytest.mark.parametrize(("text", "code", "characters"), REFUSED)
