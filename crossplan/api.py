@@ -73,8 +73,7 @@ def genotype(fly: Fly) -> str:
 
 def short_form(reading: Reading) -> str:
     """Return what was read, in short notation."""
-    fly = reading.female or reading.male
-    return format_genotype(fly) if fly is not None else ""
+    return reading.canonical
 
 
 def reading_rows(reading: Reading) -> list[tuple[str, str, str, str, str]]:
@@ -82,7 +81,10 @@ def reading_rows(reading: Reading) -> list[tuple[str, str, str, str, str]]:
     catalogue = load_catalogue(None)
     fly = reading.female or reading.male
     if fly is None:
-        return []
+        return [
+            (e.chromosome or "?", "", e.symbol, _what_it_is(e), catalogue.provenance(e.symbol))
+            for e in reading.elements
+        ]  # fmt: skip
     rows = []
     for chromosome in ("X", "2", "3", "4"):
         pair = fly.pair(chromosome)
@@ -92,10 +94,14 @@ def reading_rows(reading: Reading) -> list[tuple[str, str, str, str, str]]:
             if not homologue.elements and chromosome != "4":
                 rows.append((chromosome, which, "+", "wild type", ""))
             for element in homologue.elements:
-                kind = str(element.kind) + (f", {element.component}" if element.component else "")
-                words = "; ".join(p for p in (kind, _place_words(element)) if p)
-                rows.append((chromosome, which, element.symbol, words, catalogue.provenance(element.symbol)))
+                source = catalogue.provenance(element.symbol)
+                rows.append((chromosome, which, element.symbol, _what_it_is(element), source))
     return rows
+
+
+def _what_it_is(element: Element) -> str:
+    kind = str(element.kind) + (f", {element.component}" if element.component else "")
+    return "; ".join(p for p in (kind, _place_words(element)) if p)
 
 
 def _place_words(element: Element) -> str:

@@ -41,7 +41,7 @@ def read(
             _show(reading, len(readings) > 20)
         if len(readings) > 1:
             _summary(readings)
-    if any(not r.ok for r in readings):
+    if any(not r.ok or r.is_open for r in readings):
         raise typer.Exit(NEEDS_A_PERSON)
 
 
@@ -51,7 +51,7 @@ def _show(reading: Reading, only_problems: bool) -> None:
     from crossplan import api
 
     out = console()
-    if only_problems and reading.ok:
+    if only_problems and reading.ok and not reading.is_open:
         return
     out.print(Text(reading.text if len(reading.text) <= 300 else reading.text[:297] + "...", style="bold"))
     if reading.ok:
@@ -85,8 +85,10 @@ def _chromosomes(reading: Reading) -> None:
 
 def _summary(readings: list[Reading]) -> None:
     refused = sum(not r.ok for r in readings)
-    assumed = sum(r.ok and r.assumed for r in readings)
-    understood = len(readings) - refused - assumed
+    is_open = sum(r.is_open for r in readings)
+    assumed = sum(r.assumed for r in readings)
+    understood = len(readings) - refused - assumed - is_open
     console().print(
-        f"{len(readings)} genotypes: {understood} understood, {assumed} with a stated assumption, {refused} not"
+        f"{len(readings)} genotypes: {understood} understood, {assumed} with a stated assumption, {is_open} but for a"
+        f" chromosome, {refused} not"
     )
