@@ -76,6 +76,13 @@ SHORTEST_BALANCER_NAME: Final = 3
 
 _SYMBOL = re.compile(r"(?P<gene>.+?)(?:\[(?P<allele>[^\[\]]*)\])?")
 _BAND = re.compile(r"(?P<division>\d{1,3})(?:-?(?P<letter>[A-F])(?P<band>\d{1,2})?)?(?:[-;,].*)?", re.IGNORECASE)
+#: chemoreceptors and odorant-binding proteins: their number is the division of the map, the small letter tells
+#: genes of one division apart
+_NAMED_BY_BAND = re.compile(r"(?:Or|Gr|Ir|Obp)(?P<division>\d{1,3})[a-z]")
+NAMED_BY_BAND_SOURCE: Final = (
+    "receptor genes are named by their band (Drosophila Odorant Receptor Nomenclature Committee 2000 Cell 102:145, "
+    "from memory)"
+)
 _VK = re.compile(r"(?:attp)?vk0*(\d{1,5})")
 _LETHAL_NAME = re.compile(r"l\([1-4]\)\S+")
 _FLUORESCENT_MARKER = re.compile(r"(?i)3xP3|GFP|YFP|CFP|RFP|DsRed|tdTom|mCherry")
@@ -228,11 +235,11 @@ class ComponentEntry:
 
 @dataclass(frozen=True, slots=True)
 class Locus:
-    """A gene on the genetic map: chromosome, place in cM, band, and where that comes from."""
+    """A gene on the genetic map: chromosome, place in cM (None when unknown), band, and where that comes from."""
 
     gene: str
     chromosome: str
-    cM: float
+    cM: float | None
     source: str
     band: str = ""
     kind: str = ""
@@ -261,8 +268,10 @@ class Catalogue:
         for row in rows["landing_sites"]:
             self._add_site(_site(row))
         self._components = [(_pattern(r), self._component(r)) for r in rows["components"]]
-        self._loci = {r["locus"]: _locus(r) for r in rows["map"]}
         self._anchors = _anchors(rows["bands"])
+        self._loci: dict[str, Locus] = {}
+        for row in rows["map"]:
+            self._add_locus(row)
 
     # signs ---
 
@@ -535,8 +544,11 @@ class Catalogue:
     # the map -
 
     def locus(self, gene: str) -> Locus | None:
-        """Return where `gene` lies on the genetic map, None when the catalogue does not know."""
-        found = self._loci.get(gene)
+        """Return where `gene` (symbol or synonym; case counts) lies, None when the catalogue does not know.
+
+        Genes that are named by their band, as `Or47b` is, are placed by that band.
+        """
+        found = self._loci.get(gene) or self._named_by_band(gene)
         if found is not None:
             return found
         marker = self.marker(gene) or next((m for m in self._markers.values() if m.gene == gene), None)
@@ -547,6 +559,29 @@ class Catalogue:
     def genes(self) -> tuple[str, ...]:
         """Return every gene whose chromosome the catalogue knows."""
         return tuple(dict.fromkeys((*self._loci, *(m.gene for m in self._markers.values() if m.chromosome))))
+
+    def _add_locus(self, row: Row) -> None:
+        locus = _locus(row)
+        if locus.cM is None and locus.band:
+            locus = self._placed_by_band(locus)
+        for name in (locus.gene, *_split(row["synonyms"])):
+            _refuse_twice(name, self._loci.setdefault(name, locus).gene, locus.gene)
+
+    def _placed_by_band(self, locus: Locus) -> Locus:
+        arm = arm_of_band(locus.band)
+        if CHROMOSOME_OF_ARM.get(arm) != locus.chromosome:
+            message = f"locus {locus.gene}: {locus.band} is not a band of chromosome {locus.chromosome}"
+            raise InputError(message, "see the band or the chromosome")
+        source = f"{locus.source}; place in cM worked out from the band {locus.band}"
+        return replace(locus, cM=self.band_to_cM(arm, locus.band), source=source)
+
+    def _named_by_band(self, gene: str) -> Locus | None:
+        match = _NAMED_BY_BAND.fullmatch(gene)
+        arm = arm_of_band(match["division"]) if match else ""
+        if match is None or not arm:
+            return None
+        named = Locus(gene, CHROMOSOME_OF_ARM[arm], None, NAMED_BY_BAND_SOURCE, match["division"], "derived")
+        return self._placed_by_band(named)
 
     def band_to_cM(self, arm: str, band: str) -> float | None:
         """Return the place of a polytene band such as `68A4` in cM, None when it is not a band of `arm`.
@@ -680,8 +715,6 @@ def _site(row: Row) -> SiteEntry:
 
 def _locus(row: Row) -> Locus:
     cM = _number(row["cM"], f"locus {row['locus']}")
-    if cM is None:
-        raise InputError(f"locus {row['locus']}: no place on the map", "give cM")
     return Locus(row["locus"], row["chromosome"], cM, row["source"], row["band"], row["kind"])
 
 
@@ -694,6 +727,13 @@ def _anchors(rows: Iterable[Row]) -> dict[str, list[tuple[float, float]]]:
             raise InputError(f"band {row['arm']} {row['band']}: not a band with a place in cM", "see bands.csv")
         found.setdefault(row["arm"], []).append((place, cM))
     return {arm: sorted(anchors) for arm, anchors in found.items()}
+
+
+def arm_of_band(band: str) -> str:
+    """Return the arm of a polytene band such as `68A4`, empty when there is no such division."""
+    match = _BAND.fullmatch(band.strip())
+    division = int(match["division"]) if match else 0
+    return next((arm for arm, (low, high) in DIVISIONS.items() if low <= division <= high), "")
 
 
 def _band_place(arm: str, band: str) -> float | None:

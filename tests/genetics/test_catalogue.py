@@ -13,11 +13,13 @@ from crossplan.genetics.catalogue import (
     KEYS,
     BalancerEntry,
     Catalogue,
+    arm_of_band,
     default_catalogue,
     read_tables,
     restored_gene,
 )
 from crossplan.genetics.catalogue_lab import load_catalogue
+from crossplan.genetics.chromosome import CHROMOSOME_OF_ARM
 from crossplan.genetics.element import PLAIN
 
 LONGEST_MAP = 110.0
@@ -559,3 +561,60 @@ def test_faults_in_the_labs_file_say_what_and_where(tmp_path: Path, text: str, m
 def test_a_file_that_is_not_there(tmp_path: Path) -> None:
     with pytest.raises(InputError, match=r"none\.toml"):
         load_catalogue(tmp_path / "none.toml")
+
+
+def test_every_locus_has_its_band_on_its_chromosome(catalogue: Catalogue) -> None:
+    rows = read_tables()["map"]
+    placed = 0
+    for row in rows:
+        locus = catalogue.locus(row["locus"])
+        assert locus is not None
+        assert locus.chromosome == row["chromosome"]
+        if row["band"]:
+            assert CHROMOSOME_OF_ARM[arm_of_band(row["band"])] == row["chromosome"], row["locus"]
+            assert locus.cM is not None
+            placed += 1
+        elif not row["cM"]:
+            assert locus.cM is None
+    assert placed > 500
+
+
+@pytest.mark.parametrize(
+    ("gene", "chromosome", "band"),
+    [
+        ("Or47b", "2", "47"),
+        ("Or2a", "X", "2"),
+        ("Gr66a", "3", "66"),
+        ("Ir84a", "3", "84"),
+        ("Ir25a", "2", "25"),
+        ("Obp76a", "3", "76C"),
+        ("Or83b", "3", "83A"),
+    ],
+)
+def test_receptors_are_placed_by_the_band_in_their_name(
+    catalogue: Catalogue, gene: str, chromosome: str, band: str
+) -> None:
+    locus = catalogue.locus(gene)
+    assert locus is not None
+    assert (locus.chromosome, locus.band) == (chromosome, band)
+
+
+@pytest.mark.parametrize("gene", ["Or", "Or103x", "Or0a", "Orx", "Gr", "zzz", ""])
+def test_what_is_no_gene(catalogue: Catalogue, gene: str) -> None:
+    assert catalogue.locus(gene) is None
+
+
+def test_a_gene_by_its_other_names(catalogue: Catalogue) -> None:
+    for synonym, symbol in (("Vglut", "VGlut"), ("n-syb", "nSyb"), ("Cha", "ChAT"), ("robo", "robo1")):
+        found = catalogue.locus(synonym)
+        assert found is not None
+        assert found.gene == symbol
+
+
+def test_a_place_worked_out_from_a_band_says_so(catalogue: Catalogue) -> None:
+    locus, unknown = catalogue.locus("para"), catalogue.locus("Lk")
+    assert locus is not None
+    assert "worked out from the band 14D" in locus.source
+    assert locus.cM == catalogue.band_to_cM("X", "14D")
+    assert unknown is not None
+    assert unknown.cM is None
