@@ -26,7 +26,7 @@ _LINE_CODE = re.compile(r"[A-Z]\d{2}[A-H]\d{2}")
 _YELLOW_WHITE = re.compile(r"(?P<y>y\d{0,2}\*?)(?P<w>w(?:\d{1,4}(?:[a-z]\d{1,2})?|\*|-)?)(?P<v>[vf]\d{0,2})?")
 #: what an allele of a mapped gene looks like when it is run on: numbers, a temperature-sensitive one, a knock-out, a stop
 _RUN_ON_LOCUS = re.compile(
-    r"(?:[A-Z]{0,3}\d{1,5}[A-Za-z]{0,2}\d{0,2}|[Tt][Ss]\d*|D\d*|[a-z]{1,3}\d{1,4}|\u0394\w{1,6}|null|KO\d*|FlpStop(?:-?N?D)?)"
+    r"(?:[A-Z]{0,3}\d{1,5}[A-Za-z]{0,2}\d{0,2}|[Tt][Ss]\d*|D\d*|[a-z]{1,3}\d{1,4}[a-z]?|\u0394\w{1,6}|null|KO\d*|FlpStop(?:-?N?D)?)"
     r"(?:-\d+)?"
 )
 _LONGEST_GENE: Final = 12
