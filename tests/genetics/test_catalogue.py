@@ -19,6 +19,7 @@ from crossplan.genetics.catalogue import (
     restored_gene,
 )
 from crossplan.genetics.catalogue_lab import load_catalogue
+from crossplan.genetics.catalogue_tables import parts
 from crossplan.genetics.chromosome import CHROMOSOME_OF_ARM
 from crossplan.genetics.element import PLAIN
 
@@ -116,7 +117,7 @@ def test_every_lethal_of_a_balancer_is_written_in_its_row(catalogue: Catalogue) 
     rows = {(r["name"], r["chromosome"]): r for r in read_tables()["balancers"]}
     for entry in catalogue.balancers():
         written = rows[entry.name, entry.chromosome]["lethal_groups"]
-        assert entry.traits.lethal == set(written.split(";")) - {""}, entry.name
+        assert entry.traits.lethal == set(parts(written)), entry.name
 
 
 def test_no_sign_hides_itself_in_a_circle(catalogue: Catalogue) -> None:
