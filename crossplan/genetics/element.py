@@ -66,6 +66,26 @@ class Traits:
 PLAIN: Traits = Traits()
 
 
+def with_traits(one: Traits, other: Traits) -> Traits:
+    """Return what an element does that does both."""
+    if other == PLAIN:
+        return one
+    return Traits(
+        dominant=tuple(dict.fromkeys((*one.dominant, *other.dominant))),
+        recessive=tuple(dict.fromkeys((*one.recessive, *other.recessive))),
+        null_for=one.null_for | other.null_for,
+        restores=one.restores | other.restores,
+        lethal=one.lethal | other.lethal,
+        male_lethal=one.male_lethal or other.male_lethal,
+        female_sterile=one.female_sterile | other.female_sterile,
+        male_sterile=one.male_sterile | other.male_sterile,
+        cover=(*one.cover, *other.cover),
+        compound=one.compound or other.compound,
+        linked_to=one.linked_to or other.linked_to,
+        masks=one.masks | other.masks,
+    )
+
+
 @dataclass(frozen=True, slots=True, eq=False)
 class Element:
     """One thing written on a homologue.

@@ -15,8 +15,8 @@ from functools import lru_cache
 from typing import Final
 
 from crossplan.errors import Problem, Severity
-from crossplan.genetics.catalogue import Catalogue, MarkerEntry, restored_gene
-from crossplan.genetics.element import PLAIN, Element, Kind, Traits
+from crossplan.genetics.catalogue import USUAL_INSERTION_MARKER, Catalogue, KnownElement, MarkerEntry, restored_gene
+from crossplan.genetics.element import PLAIN, Element, Kind, Traits, with_traits
 from crossplan.genetics.fly import Y_ELEMENT
 from crossplan.genetics.notation_allele import ALLELE, AlleleReader
 from crossplan.genetics.notation_balancer import BalancerReader
@@ -127,7 +127,7 @@ class WordReader(SymbolReader):
             carried = self.balancers.carried_by(item, balancer)
             if carried is not None:
                 return [carried]
-        for read in (self.balancers.plain, self._labelled, self._transposon, self._sited, self._aberration):
+        for read in (self.balancers.plain, self._labelled, self._line, self._transposon, self._sited, self._aberration):
             word = read(item)
             if word is not None:
                 return [word]
@@ -182,6 +182,35 @@ class WordReader(SymbolReader):
         said = Evidence(chromosome, f"{base} ({name})")
         kept = tuple(e for e in inner[0].evidence if e.rank is Rank.STRONG)
         return replace(inner[0], evidence=(said, *kept))
+
+    def _line(self, item: Item) -> Word | None:
+        """Read an insertion by a name that the trade or the lab knows it by: `OK107-GAL4`, `elav[C155]-GAL4`."""
+        known = self.catalogue.known_element(item.text) if "{" not in item.text else None
+        if known is None or self.catalogue.marker(item.text) is not None:
+            return None
+        component = component_of(self.catalogue, item.text)
+        cls = component.cls if component is not None else ""
+        traits = self.catalogue.insertion_traits((), component)
+        return self._settled(Element(item.text, Kind.INSERTION, component=cls, traits=traits), known, bool(cls))
+
+    def _line_of(self, symbol: str, place: str) -> KnownElement | None:
+        """Return the known line that an insertion is, by construct and place or by a place that names it: `}OK107`."""
+        named = place if re.search(r"[A-Za-z]", place) and len(place) > 2 else ""
+        return self.catalogue.known_element(symbol) or (self.catalogue.known_element(named) if named else None)
+
+    def _settled(self, element: Element, known: KnownElement, has_class: bool) -> Word:
+        """Return an insertion with what is known of that line; where it sits outweighs a hint, the lab's word all else."""
+        cls = known.cls or element.component
+        traits = element.traits
+        if known.carries is not None or not has_class:
+            traits = self.catalogue.insertion_traits(known.carries or USUAL_INSERTION_MARKER, None)
+        settled = replace(
+            element, chromosome=known.chromosome, site=known.site, position_cM=known.map_cM, component=cls,
+            traits=with_traits(traits, known.traits),
+        )  # fmt: skip
+        rank = Rank.STRONG if known.kind == "lab" or known.site else Rank.OTHER_ROWS
+        because = f"{known.name} in the {'lab' if known.kind == 'lab' else 'catalogue'}'s list of lines"
+        return Word(settled, (Evidence("X" if known.chromosome == "Y" else known.chromosome, because, rank),))
 
     def _transposon(self, item: Item) -> Word | None:
         text = item.text
@@ -260,6 +289,9 @@ class WordReader(SymbolReader):
         known = self.known.get(element.symbol)
         if known is not None and not markers:
             return replace(_known_word(known), problems=notes)
+        line = None if element.site else self._line_of(element.symbol, place)
+        if line is not None:
+            return replace(self._settled(element, line, True), problems=notes)
         problems = list(notes)
         if not markers and not element.component and element.traits.restores:
             problems.append(

@@ -82,6 +82,9 @@ UNDERSTOOD = [
     ("w; +/CyO-ActGFP", "w; +/CyO-GFP; +"),
     ("w; +/CyO, Kr-GFP", "w; +/CyO, Kr-GFP; +"),
     ("FM7a/w[1118]", "w[1118]/FM7a; +; +"),
+    # lines of the trade of which it is known where they sit; the place between semicolons counts more
+    ("w[*]; P{w[+mW.hs]=GawB}OK107", "w[*]; +; +; GawB@OK107"),
+    ("w; tubP-GAL80[ts]@20", "w; tubP-GAL80[ts]@20; +"),
     # a superscript that was lost behind a mapped gene
     ("w; nubK51/+", "w; nub[K51]/+; +"),
     # sex
