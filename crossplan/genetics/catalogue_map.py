@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import re
 from collections.abc import Iterable, Mapping
-from dataclasses import replace
 from typing import Final
 
 from crossplan.errors import InputError
@@ -84,38 +83,25 @@ class GeneticMap:
 
     def _add(self, row: Row) -> None:
         where = f"locus {row['locus']}"
-        locus = Locus(
-            gene=row["locus"],
-            chromosome=row["chromosome"],
-            cM=number(row["cM"], where),
-            band=row["band"],
-            source=row["source"],
-            kind=row["kind"],
-        )
-        if locus.cM is None and locus.band:
-            locus = self._placed_by_band(locus)
+        locus = self._locus(row["locus"], row, number(row["cM"], where), where)
         for name in (locus.gene, *parts(row["synonyms"])):
             refuse_twice(name, self._loci.setdefault(name, locus).gene, locus.gene)
 
-    def _placed_by_band(self, locus: Locus) -> Locus:
-        place = self.band_of_chromosome(locus.chromosome, locus.band, f"locus {locus.gene}")
-        source = f"{locus.source}; place in cM worked out from the band {locus.band}"
-        return replace(locus, cM=place, source=source)
+    def _locus(self, gene: str, row: Row, cM: float | None, where: str) -> Locus:
+        """Return the locus of a row, placed by its band where it has no place in cM."""
+        band, source = row["band"], row["source"]
+        if cM is None and band:
+            cM = self.band_of_chromosome(row["chromosome"], band, where)
+            source = f"{source}; place in cM worked out from the band {band}"
+        return Locus(gene=gene, chromosome=row["chromosome"], cM=cM, band=band, source=source, kind=row["kind"])
 
     def _named_by_band(self, gene: str) -> Locus | None:
         match = _NAMED_BY_BAND.fullmatch(gene)
         arm = arm_of_band(match["division"]) if match else ""
         if match is None or not arm:
             return None
-        named = Locus(
-            gene=gene,
-            chromosome=CHROMOSOME_OF_ARM[arm],
-            cM=None,
-            source=NAMED_BY_BAND_SOURCE,
-            band=match["division"],
-            kind="derived",
-        )
-        return self._placed_by_band(named)
+        row = {"chromosome": CHROMOSOME_OF_ARM[arm], "band": match["division"], "source": NAMED_BY_BAND_SOURCE}
+        return self._locus(gene, row | {"kind": "derived"}, None, f"locus {gene}")
 
 
 def arm_of_band(band: str) -> str:

@@ -2,11 +2,10 @@
 
 from __future__ import annotations
 
-from pathlib import Path
+import re
 
 import pytest
 
-from crossplan.errors import InputError
 from crossplan.genetics.appearance import WHITE_EYES
 from crossplan.genetics.catalogue import (
     ALLOWED,
@@ -18,7 +17,6 @@ from crossplan.genetics.catalogue import (
     read_tables,
     restored_gene,
 )
-from crossplan.genetics.catalogue_lab import load_catalogue
 from crossplan.genetics.catalogue_tables import parts
 from crossplan.genetics.chromosome import CHROMOSOME_OF_ARM
 from crossplan.genetics.element import PLAIN
@@ -48,7 +46,12 @@ def balancer(name: str) -> BalancerEntry:
         ("balancers", 40),
         ("landing_sites", 35),
         ("components", 25),
-        ("map", 100),
+        ("map", 700),
+        ("balancer_pairs", 15),
+        ("y_chromosomes", 6),
+        ("compounds", 8),
+        ("inversions", 15),
+        ("elements", 40),
     ],
 )
 def test_enough_rows(table: str, fewest: int) -> None:
@@ -481,89 +484,6 @@ def test_no_provenance_for_the_unknown(catalogue: Catalogue) -> None:
     assert catalogue.provenance("nonesuch") == ""
 
 
-# the lab's own entries
-
-
-def lab(folder: Path, text: str) -> Catalogue:
-    path = folder / "lab.toml"
-    path.write_text(text, encoding="utf-8")
-    return load_catalogue(path)
-
-
-def test_without_a_file_it_is_the_programs_own() -> None:
-    assert load_catalogue(None) is default_catalogue()
-
-
-def test_the_lab_corrects_one_cell(tmp_path: Path) -> None:
-    own = lab(tmp_path, '[[balancer]]\nname = "TM3"\nassumed = ["Ser[1]"]\nassumed_reason = "ours are Ser"\n')
-    entry = own.balancer("TM3")
-    assert entry is not None
-    assert entry.traits_assumed.dominant == ("notched wings",)
-    assert entry.traits == balancer("TM3").traits
-    assert entry.kind == "lab"
-    assert balancer("TM3").assumed == ("Sb[1]",)
-
-
-def test_the_lab_adds_entries(tmp_path: Path) -> None:
-    own = lab(
-        tmp_path,
-        '[[site]]\nname = "attP-east"\narm = "2R"\nband = "57F"\n'
-        '[[sign]]\nsign = "blue eyes"\nopposite = "brick red eyes"\npart = "eye"\nstage = "adult"\n'
-        'ease = "easy"\n'
-        '[[marker]]\ngene = "Blu"\nchromosome = "2"\ndominance = "dominant"\nsign = "blue eyes"\n'
-        'homozygote = "lethal"\n'
-        '[[component]]\nname = "ours"\nclass = "effector"\npattern = "^UAS-CsChrimson$"\ncarries = ["v+"]\n',
-    )
-    site, marker, part = own.site("attPeast"), own.marker("Blu", "7"), own.component("UAS-CsChrimson")
-    assert site is not None
-    assert site.map_cM == own.band_to_cM("2R", "57F")
-    assert marker is not None
-    assert marker.traits.dominant == ("blue eyes",)
-    assert marker.traits.lethal == {"Blu"}
-    assert part is not None
-    assert part.carries == ("v+",)
-
-
-def test_a_new_band_moves_a_known_site(tmp_path: Path) -> None:
-    own = lab(tmp_path, '[[site]]\nname = "attP2"\nband = "70A"\n')
-    site = own.site("attP2")
-    assert site is not None
-    assert site.map_cM == own.band_to_cM("3L", "70A")
-
-
-@pytest.mark.parametrize(
-    ("text", "message", "hint"),
-    [
-        ("[[balancer]\n", "not TOML", "quotes"),
-        ("[[fly]]\nname = 1\n", "[[fly]]", "[[sign]]"),
-        ('[sign]\nsign = "curly wings"\n', "[[sign]]", "brackets"),
-        ('[[balancer]]\nname = "TM3"\nasumed = "Sb"\n', "asumed", "assumed"),
-        ('[[balancer]]\nname = "TM3"\nassumed = "Sbb[1]"\n', "Sbb[1]", "Sb"),
-        ('[[balancer]]\nname = "TM3"\ncover = "all"\n', "all", "5.1-98.9"),
-        ('[[balancer]]\nname = "Own3"\nchromosome = "3"\n', "lethal_groups", '""'),
-        ('[[sign]]\nsign = "curly wings"\nease = "eazy"\n', "eazy", "easy"),
-        ('[[sign]]\nsign = "curly wings"\nhidden_by = ["stub wing"]\n', "stub wing", "stub wings"),
-        ('[[sign]]\nsign = "curly wings"\nunreliable_below_C = "cold"\n', "cold", "12.5"),
-        ('[[site]]\nname = "s"\narm = "5L"\n', "5L", "2L"),
-        ('[[site]]\nname = "s"\narm = "2L"\nband = "68A"\n', "68A", "68A4 on 3L"),
-        ('[[site]]\nname = "s"\narm = "2L"\nsynonyms = ["VK5"]\n', "VK00005", "another synonym"),
-        ('[[component]]\nname = "c"\nclass = "AD"\npattern = "(("\ncarries = ""\n', "((", "UAS"),
-        ('[[marker]]\ngene = "Sb"\nsign = { a = 1 }\n', "sign", "list"),
-    ],
-)
-def test_faults_in_the_labs_file_say_what_and_where(tmp_path: Path, text: str, message: str, hint: str) -> None:
-    with pytest.raises(InputError) as caught:
-        lab(tmp_path, text)
-    assert "lab.toml" in caught.value.message
-    assert message in caught.value.message
-    assert hint in caught.value.hint
-
-
-def test_a_file_that_is_not_there(tmp_path: Path) -> None:
-    with pytest.raises(InputError, match=r"none\.toml"):
-        load_catalogue(tmp_path / "none.toml")
-
-
 def test_every_locus_has_its_band_on_its_chromosome(catalogue: Catalogue) -> None:
     rows = read_tables()["map"]
     placed = 0
@@ -619,3 +539,82 @@ def test_a_place_worked_out_from_a_band_says_so(catalogue: Catalogue) -> None:
     assert locus.cM == catalogue.band_to_cM("X", "14D")
     assert unknown is not None
     assert unknown.cM is None
+
+
+@pytest.mark.parametrize(
+    ("symbol", "told"),
+    [
+        ("TM3", "Miller et al. 2020"),
+        ("attP2", "van der Graaf et al. 2022"),
+        ("para", "worked out from the band 14D"),
+        ("para[ts1]", "worked out from the band 14D"),
+        ("Or47b", "named by their band"),
+        ("In(2L)t", "Lemeunier & Aulard 1992"),
+        ("B[S]Y", "Lindsley & Zimm 1992"),
+        ("C(2)EN", "Lindsley & Zimm 1992"),
+        ("OK107", "from memory"),
+        ("AD-K12@attP40", "attP40: van der Graaf et al. 2022"),
+        ("AD-K12@attP40", "AD-K12: Aso et al. 2014"),
+    ],
+)
+def test_every_sort_of_fact_tells_its_source(catalogue: Catalogue, symbol: str, told: str) -> None:
+    assert told in catalogue.provenance(symbol)
+
+
+def test_source_and_kind_in_words(catalogue: Catalogue) -> None:
+    assert catalogue.provenance("Sb[1]").endswith("(published)")
+    assert catalogue.provenance("CyO-GFP") == "common practice, no source"
+    assert catalogue.provenance("OK107").count("from memory") == 1
+
+
+def test_genes_named_by_a_band_lie_there(catalogue: Catalogue) -> None:
+    """`Act88F`, `Stat92E`: the band stands in the name, apart from the column."""
+    checked = 0
+    for name in catalogue.genes():
+        written = re.search(r"(\d{2,3}[A-F])[a-z]?$", name)
+        locus = catalogue.locus(name)
+        if written is not None and locus is not None and not name.startswith(("Gr", "Or", "Ir", "Obp")):
+            assert CHROMOSOME_OF_ARM[arm_of_band(written[1])] == locus.chromosome, name
+            checked += 1
+    assert checked >= 20
+
+
+def test_every_named_lethal_lies_on_the_chromosome_in_its_name(catalogue: Catalogue) -> None:
+    for name in catalogue.genes():
+        numbered = re.match(r"(?:l|fs|M|su|mal)\(([1-4])\)", name)
+        locus = catalogue.locus(name)
+        if numbered is not None and locus is not None:
+            assert locus.chromosome == {"1": "X"}.get(numbered[1], numbered[1]), name
+
+
+@pytest.mark.parametrize(
+    ("name", "chromosome", "lethal"), [("M(2)53", "2", True), ("M(3)95A", "3", True), ("M(1)15D", "X", True)]
+)
+def test_minutes_are_known_by_their_name(catalogue: Catalogue, name: str, chromosome: str, lethal: bool) -> None:
+    marker = catalogue.marker(name)
+    assert marker is not None
+    assert marker.chromosome == chromosome
+    assert marker.traits.dominant == ("slender bristles",)
+    assert (name in marker.traits.lethal) is lethal
+
+
+def test_temperature_of_single_markers(catalogue: Catalogue) -> None:
+    """Bl and Cy fail at opposite ends, though the sign of Bl is that of Sb, which never fails."""
+    bristle, curly, stubble = catalogue.marker("Bl"), catalogue.marker("Cy"), catalogue.marker("Sb")
+    assert bristle is not None
+    assert curly is not None
+    assert stubble is not None
+    assert bristle.sign == stubble.sign
+    assert bristle.unreliable_above_C == 24
+    assert curly.unreliable_below_C == 20
+    assert stubble.unreliable_above_C is None
+
+
+def test_what_one_sex_alone_shows_is_hard_to_sort_by(catalogue: Catalogue) -> None:
+    limited = [s for s in catalogue.signs.values() if s.sex]
+    assert [s.name for s in limited] == ["extra sex combs"]
+    assert all(s.ease == "hard" for s in limited)
+
+
+def test_no_error_rate_that_nobody_counted(catalogue: Catalogue) -> None:
+    assert {s.error_rate for s in catalogue.signs.values()} == {None}

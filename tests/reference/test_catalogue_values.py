@@ -202,3 +202,83 @@ def test_shibire_acts_at_30_degrees(catalogue: Catalogue) -> None:
     entry = catalogue.component("UAS-shi[ts1]")
     assert entry is not None
     assert entry.test_C == 30
+
+
+@pytest.mark.parametrize(
+    ("gene", "chromosome", "arm_and_band"),
+    [
+        # citations from memory; each paper places the gene
+        ("per", "X", "3B"),  # Konopka & Benzer 1971, PNAS 68:2112: three alleles on the X
+        ("Sh", "X", "16F"),  # Papazian et al. 1987, Science 237:749
+        ("eag", "X", "13A"),  # Warmke et al. 1991, Science 252:1560
+        ("para", "X", "14D"),  # Loughney et al. 1989, Cell 58:1143
+        ("shi", "X", "14A"),  # van der Bliek & Meyerowitz 1991, Nature 351:411
+        ("norpA", "X", "4B"),  # Bloomquist et al. 1988, Cell 54:723
+        ("dnc", "X", "3D"),  # Byers et al. 1981, Nature 289:79
+        ("rut", "X", "12F"),  # Livingstone et al. 1984, Cell 37:205
+        ("N", "X", "3C7"),  # Artavanis-Tsakonas et al. 1983, PNAS 80:1977
+        ("Sxl", "X", "6F"),  # Bell et al. 1988, Cell 55:1037
+        ("elav", "X", "1B"),  # Robinow & White 1988, Dev. Biol. 126:294
+        ("cac", "X", "10F"),  # Smith et al. 1996, J. Neurosci. 16:7868
+        ("acj6", "X", "13C"),  # Clyne et al. 1999, Neuron 22:339
+        ("tim", "2", "23F"),  # Sehgal et al. 1994, Science 263:1603
+        ("dpp", "2", "22F"),  # St Johnston et al. 1990, Genes Dev. 4:1114
+        ("eya", "2", "26E"),  # Bonini et al. 1993, Cell 72:379
+        ("dac", "2", "36A"),  # Mardon et al. 1994, Development 120:3473
+        ("eve", "2", "46C"),  # Macdonald et al. 1986, Cell 47:721
+        ("Egfr", "2", "57F"),  # Livneh et al. 1985, Cell 40:599
+        ("Dll", "2", "60E"),  # Cohen et al. 1989, Nature 338:432
+        ("trp", "3", "99C"),  # Montell & Rubin 1989, Neuron 2:1313
+        ("ninaE", "3", "92B"),  # O'Tousa et al. 1985, Cell 40:839
+        ("Rdl", "3", "66F"),  # ffrench-Constant et al. 1991, PNAS 88:7209
+        ("Clk", "3", "66A"),  # Allada et al. 1998, Cell 93:791
+        ("cyc", "3", "76D"),  # Rutila et al. 1998, Cell 93:805
+        ("cry", "3", "91F"),  # Emery et al. 1998, Cell 95:669
+        ("Pdf", "3", "97B"),  # Park & Hall 1998, J. Biol. Rhythms 13:219
+        ("fru", "3", "91B"),  # Ryner et al. 1996, Cell 87:1079
+        ("dsx", "3", "84E"),  # Burtis & Baker 1989, Cell 56:997
+        ("Gad1", "3", "64A"),  # Jackson et al. 1990, J. Neurochem. 54:1068
+        ("ChAT", "3", "91C"),  # Greenspan 1980, J. Comp. Physiol. 137:83
+        ("repo", "3", "90F"),  # Xiong et al. 1994, Genes Dev. 8:981
+        ("hh", "3", "94E"),  # Mohler 1988, Genetics 120:1061
+        ("dally", "3", "66E"),  # Nakato et al. 1995, Development 121:3687
+        ("Orco", "3", "83A"),  # Larsson et al. 2004, Neuron 43:703 (Or83b)
+        ("toy", "4", ""),  # Czerny et al. 1999, Mol. Cell 3:297
+    ],
+)
+def test_places_of_genes_met_in_genotypes(catalogue: Catalogue, gene: str, chromosome: str, arm_and_band: str) -> None:
+    locus = catalogue.locus(gene)
+    assert locus is not None
+    assert (locus.chromosome, locus.band) == (chromosome, arm_and_band)
+
+
+@pytest.mark.parametrize(
+    ("site", "chromosome"),
+    [
+        # counted in the chromosome columns of one laboratory's stock list: 3 in 476 of 476 rows, 2 in 213 of 213, and so on
+        ("attP2", "3"), ("attP40", "2"), ("VK5", "3"), ("su(Hw)attP5", "2"), ("su(Hw)attP1", "3"),
+        ("su(Hw)attP8", "X"), ("attP18", "X"), ("attP3", "X"), ("attP16", "2"), ("VK00018", "2"), ("VK00022", "2"),
+        ("VK00020", "3"), ("VK00033", "3"), ("VK00040", "3"), ("VIE-260B", "2"),
+    ],
+)  # fmt: skip
+def test_chromosomes_of_sites_as_a_laboratory_keeps_them(catalogue: Catalogue, site: str, chromosome: str) -> None:
+    found = catalogue.site(site)
+    assert found is not None
+    assert found.chromosome == chromosome
+
+
+@pytest.mark.parametrize(
+    ("name", "chromosome"),
+    [
+        # Connolly et al. 1996, Science 274:2104 (OK107 is on the fourth), from memory
+        ("OK107", "4"),
+        # Lin & Goodman 1994, Neuron 13:507 (C155 is in elav), from memory
+        ("C155", "X"),
+        # Mahr & Aberle 2006, Gene Expr. Patterns 6:299 (OK371 is in VGlut), from memory
+        ("OK371", "2"),
+    ],
+)
+def test_lines_of_known_place(catalogue: Catalogue, name: str, chromosome: str) -> None:
+    found = catalogue.known_element(name)
+    assert found is not None
+    assert found.chromosome == chromosome
