@@ -192,3 +192,11 @@ def test_balancers_cover_from_the_outermost_breakpoint_of_their_inversions(
     assert cover_of(entry)[0] == pytest.approx(min(c.start for c in ends), abs=0.3)
     if name != "TM6B":
         assert cover_of(entry)[1] == pytest.approx(max(c.end for c in ends), abs=0.3)
+
+
+def test_xa_alone_is_the_translocation(catalogue: Catalogue) -> None:
+    """The marker is on no other chromosome in use (Lindsley & Zimm 1992, from memory)."""
+    found = catalogue.balancer("Xa")
+    assert found is not None
+    assert found.name == "T(2;3)ap[Xa]"
+    assert catalogue.marker("ap", "Xa") is not None
