@@ -139,7 +139,11 @@ class AlleleReader(SymbolReader):
         element = Element(
             symbol, Kind.ALLELE, chromosome, position_cM=locus.cM if locus else None, gene=gene, traits=traits
         )
-        return Word(element, said(chromosome, f"the gene {gene}"), problems)
+        evidence = said(chromosome, f"the gene {gene}")
+        if not allele and not traits.lethal:
+            # the bare name of a gene without a look is often short for a driver of that gene
+            evidence = tuple(replace(e, rank=Rank.HINT) for e in evidence)
+        return Word(element, evidence, problems)
 
     def run_on_locus(self, item: Item) -> Word | None:
         """Read a mapped gene with its allele run on to it: `parats1`, `cacTS2`, `kluR51`.

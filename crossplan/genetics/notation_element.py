@@ -144,6 +144,9 @@ class WordReader(SymbolReader):
         evidence = (Evidence("X", "the Y"),)
         if text == "Y":
             return Word(Y_ELEMENT, evidence)
+        known = self.catalogue.y_chromosome(text)
+        if known is not None:
+            return Word(Element(text, Kind.Y, "Y", traits=known.traits), evidence)
         match = _Y_FORMS.fullmatch(text)
         if match is None:
             return None
@@ -335,10 +338,11 @@ class WordReader(SymbolReader):
 
     def _aberration_word(self, item: Item, kind: str, names: list[str]) -> Word:
         text = item.text
-        autosomes = [n for n in names if n not in ("X", "Y")]
-        if kind == "C" and autosomes:
-            return self.fault(item, "compound-autosome", f"{text}: compound autosomes are not handled",
-                               "leave this stock out of the list that you plan with")  # fmt: skip
+        if kind == "C" and set(names) != {"X"}:
+            known = self.catalogue.compound(text)
+            return self.fault(item, "compound", f"{text}: compounds other than the attached-X are not handled"
+                              + (f" ({known.outcome})" if known is not None else ""),
+                              "leave this stock out of the list that you plan with")  # fmt: skip
         if kind == "C":
             compound = Element(text, Kind.BALANCER, "X", traits=Traits(compound=True))
             return Word(compound, (Evidence("X", f"the attached-X {text}"),))
@@ -351,7 +355,10 @@ class WordReader(SymbolReader):
                              " on one of them, and unbalanced gametes are not foreseen", severity=Severity.WARNING)  # fmt: skip
             return Word(Element(text, Kind.ABERRATION, place), (Evidence(place, text),), (note,))
         if kind != "Df":
-            return Word(Element(text, Kind.ABERRATION, place), (Evidence("X" if place == "Y" else place, text),))
+            inversion = self.catalogue.inversion(text) if kind == "In" else None
+            traits = inversion.traits if inversion is not None else PLAIN
+            evidence = (Evidence("X" if place == "Y" else place, text),)
+            return Word(Element(text, Kind.ABERRATION, place, traits=traits), evidence)
         note = self.say(item, "assumed-lethal", f"{text} is taken to be lethal over itself, as most deficiencies are")
         element = Element(text, Kind.ABERRATION, place, traits=Traits(lethal=frozenset({text})))
         return Word(element, (Evidence(place, text),), (note,))

@@ -157,6 +157,8 @@ REFUSED = [
     ("w; AD-K1@attP40 UAS-kx@attP40/CyO", "same-site", ""),
     ("w; kx-GAL4 (III)/CyO", "chromosomes-disagree", ""),
     ("w; +; UAS-kx/Y", "y-on-autosome", ""),
+    ("C(1;Y)1, y w; +; +", "compound", "C(1;Y)1"),
+    ("w; C(2)EN, bw; +", "compound", "C(2)EN"),
     ("Y/Y; +; +", "sex-chromosomes", ""),
     ("w/Y/Y", "three-homologues", ""),
     ("w/y; +; +", "y-or-yellow", ""),
