@@ -32,6 +32,7 @@ from crossplan.genetics.notation import fly_json, format_genotype, read_fly, rea
 from crossplan.genetics.notation import reading_json as reading_json
 from crossplan.genetics.progeny import Progeny, cross
 from crossplan.genetics.progeny import ProgenyClass as ProgenyClass
+from crossplan.genetics.sorting import is_hidden
 
 if TYPE_CHECKING:
     from crossplan.logbook.day import DayReport as DayReport
@@ -127,7 +128,8 @@ class CrossResult:
         seen = frozenset[str]().union(*(c.signs for c in sex))
         signs = self.observer.catalogue.signs
         words = sorted(found.signs)
-        words += [signs[s].opposite for s in sorted(seen - found.signs) if s in signs and signs[s].opposite]
+        absent = (s for s in sorted(seen - found.signs) if not is_hidden(s, found.signs, self.observer.catalogue))
+        words += [signs[s].opposite for s in absent if s in signs and signs[s].opposite]
         return ", ".join(words) or "wild type"
 
     def causes_of_death(self) -> list[tuple[str, float]]:

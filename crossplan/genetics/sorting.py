@@ -41,7 +41,8 @@ def shortest_rule(kept: frozenset[str], others: Sequence[frozenset[str]], catalo
     """
     if not others:
         return ()
-    signs = sorted(frozenset(s for look in others for s in look ^ kept))
+    # what another sign of the wanted flies hides cannot be looked for on them; the hiding sign sets them apart as well
+    signs = sorted(s for s in frozenset(s for look in others for s in look ^ kept) if not is_hidden(s, kept, catalogue))
     tests = [Test(sign, sign in kept) for sign in signs]
     weight = {t: _weight(t, catalogue) for t in tests}
     if len(tests) > MOST_SIGNS:
@@ -55,6 +56,12 @@ def shortest_rule(kept: frozenset[str], others: Sequence[frozenset[str]], catalo
                     best = (cost, size, chosen)
     assert best is not None, "a class with the looks of another"
     return tuple(sorted(best[2], key=lambda t: (weight[t], t.sign)))
+
+
+def is_hidden(sign: str, look: frozenset[str], catalogue: Catalogue) -> bool:
+    """Return whether a fly of that look shows something that hides the sign: the colour of a tiny eye is not seen."""
+    known = catalogue.signs.get(sign)
+    return known is not None and any(s in look for s in known.hidden_by)
 
 
 def _weight(test: Test, catalogue: Catalogue) -> float:
