@@ -2,7 +2,8 @@
 
     read_genotypes, genotype, reading_json ...   genotypes and what was understood of them
     cross_flies, progeny_json                    one cross
-    read_stocks, audit_stocks, audit_json        the shelf
+    read_stocks, list_settings, reading_report   the stock list, how to read it, and what was understood
+    audit_stocks, audit_json                     the shelf
     plan_screen, plan_json, load_plan            a screen
     write_plan, write_labels, write_calendar     what people hold
     log_entry, day_report, day_json              what really happened, and what it changes
@@ -21,7 +22,7 @@ from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
 from crossplan import __version__
-from crossplan.errors import InputError, Problem, Severity
+from crossplan.errors import InputError, OutputError, Problem, Severity
 from crossplan.genetics.appearance import Means, Observer
 from crossplan.genetics.catalogue_lab import load_catalogue
 from crossplan.genetics.element import Element, Kind
@@ -42,7 +43,9 @@ if TYPE_CHECKING:
     from crossplan.schemes.batch import Answer
     from crossplan.schemes.screen_plan import ScreenPlanner
     from crossplan.stocks.audit import Finding
-    from crossplan.stocks.shelf import Shelf
+    from crossplan.stocks.reading_report import ReadingReport as ReadingReport
+    from crossplan.stocks.settings import ListSettings as ListSettings
+    from crossplan.stocks.shelf import Shelf as Shelf
 
 Progress = Callable[[str, int, int], None]
 
@@ -214,7 +217,7 @@ def progeny_json(result: CrossResult) -> dict[str, Any]:
 # -- the shelf ---------------------------------------------------------------------------------------------------
 
 
-def read_stocks(path: Path, *, sheet: str | None = None, lab_file: Path | None = None) -> Shelf:
+def read_stocks(path: Path, *, settings: ListSettings | None = None, lab_file: Path | None = None) -> Shelf:
     """Return the stock list with everything that was and was not understood.
 
     Raises:
@@ -222,7 +225,80 @@ def read_stocks(path: Path, *, sheet: str | None = None, lab_file: Path | None =
     """
     from crossplan.stocks.shelf import read_stocks as read
 
-    return read(path, sheet=sheet, catalogue=load_catalogue(lab_file))
+    return read(path, settings=settings, catalogue=load_catalogue(lab_file))
+
+
+def list_settings(
+    file: Path | None, *, sheet: str | None = None, all_sheets: bool = False, columns: Iterable[str] = ()
+) -> ListSettings:
+    """Return how to read a stock list: what the settings file says, and what is said beside it (`genotype=Geno`).
+
+    Raises:
+        InputError: the file cannot be used, or what is said contradicts itself.
+    """
+    from crossplan.stocks.settings import ListSettings, column_of, read_settings
+
+    from_file = read_settings(file) if file is not None else ListSettings()
+    return from_file.changed(sheet, all_sheets, dict(map(column_of, columns)))
+
+
+def reading_report(shelf: Shelf) -> ReadingReport:
+    """Return how many rows of a stock list were understood, and what they leave open, each question once."""
+    from crossplan.stocks.reading_report import reading_report as report
+
+    return report(shelf)
+
+
+def reading_report_json(report: ReadingReport) -> dict[str, Any]:
+    """Return the report of a reading as one JSON document."""
+    return {
+        "stocks": len(report.shelf.stocks),
+        "counts": dict(report.counts),
+        "columns": dict(report.shelf.columns),
+        "sheets": list(report.shelf.sheets),
+        "questions": [{"symbol": q.symbol, "asks": q.asks, "rows": list(q.rows)} for q in report.questions],
+        "problems": [
+            {"severity": str(p.severity), "code": p.code, "row": p.line, "column": p.column, "message": p.message,
+             "hint": p.hint}
+            for p in report.shelf.problems
+        ],
+    }  # fmt: skip
+
+
+def write_reading_report(report: ReadingReport, place: Path, *, all_rows: bool = False) -> Path:
+    """Write the rows that need an eye as a CSV table, to correct the list by; whole or not at all.
+
+    Raises:
+        OutputError: the file cannot be written.
+    """
+    from crossplan.stocks.reading_report import report_table
+
+    return _write_text(place, report_table(report, all_rows), protect=report.shelf.path)
+
+
+def remember_settings(settings: ListSettings, place: Path) -> Path:
+    """Write how a stock list is read, for the next time.
+
+    Raises:
+        OutputError: the file cannot be written.
+    """
+    from crossplan.stocks.settings import settings_text
+
+    return _write_text(place, settings_text(settings))
+
+
+def _write_text(place: Path, text: str, protect: str = "") -> Path:
+    from crossplan.bench.plan_folder import write_files
+
+    if protect and place.resolve() == Path(protect).resolve():
+        raise OutputError(f"{place} is the stock list itself, which is never written to", "give another name")
+    try:
+        write_files(place.parent, {place.name: text.encode()})
+    except OSError as error:
+        raise OutputError(
+            f"cannot write {place}: {error.strerror or error}", "check the folder and your rights"
+        ) from error
+    return place
 
 
 @dataclass(frozen=True)
@@ -254,17 +330,17 @@ def audit_stocks(
     screen: Path | None = None,
     *,
     today: dt.date,
-    sheet: str | None = None,
+    settings: ListSettings | None = None,
     lab_file: Path | None = None,
 ) -> Audited:
     """Return what is wrong with a stock list, and for a screen which targets it cannot make and why."""
     from crossplan.stocks.audit import audit
 
-    shelf = read_stocks(stocks, sheet=sheet, lab_file=lab_file)
+    shelf = read_stocks(stocks, settings=settings, lab_file=lab_file)
     findings = audit(shelf, today)
     if screen is None:
         return Audited(shelf, findings)
-    planned = plan_screen(screen, stocks, today=today, sheet=sheet, lab_file=lab_file, with_calendar=False)
+    planned = plan_screen(screen, stocks, today=today, settings=settings, lab_file=lab_file, with_calendar=False)
     return Audited(shelf, findings, planned.plan)
 
 
@@ -326,7 +402,7 @@ def plan_screen(
     *,
     today: dt.date,
     start: dt.date | None = None,
-    sheet: str | None = None,
+    settings: ListSettings | None = None,
     lab_file: Path | None = None,
     progress: Progress | None = None,
     with_calendar: bool = True,
@@ -338,7 +414,7 @@ def plan_screen(
         stocks: the stock list.
         today: the day on which work can begin when neither `start` nor the screen file says.
         start: first day of work.
-        sheet: the sheet of a workbook.
+        settings: how to read the stock list.
         lab_file: the lab's own catalogue entries.
         progress: called with what is being done, how much is done, and of how much.
         with_calendar: whether days are planned too (an audit does not need them).
@@ -355,7 +431,7 @@ def plan_screen(
     tell = progress or (lambda what, done, total: None)
     request = read_screen(screen)
     tell("reading stocks", 0, 0)
-    shelf = read_stocks(stocks, sheet=sheet, lab_file=lab_file)
+    shelf = read_stocks(stocks, settings=settings, lab_file=lab_file)
     catalogue = load_catalogue(lab_file)
     planner = ScreenPlanner(sources_of(shelf), request.screen, catalogue)
     answers = list(planner.answer([Asked(t) for t in request.targets], lambda n, of: tell("finding schemes", n, of)))

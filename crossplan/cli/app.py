@@ -12,7 +12,7 @@ from typing import Annotated
 import typer
 
 from crossplan import __version__
-from crossplan.cli import audit, calendar, count, demo, labels, log, plan, progeny, read, rear, today
+from crossplan.cli import audit, calendar, count, demo, labels, log, plan, progeny, read, rear, shelf, today
 from crossplan.cli.render import report_error
 from crossplan.errors import CrossplanError, PlanCheckError
 
@@ -26,7 +26,7 @@ app = typer.Typer(
     context_settings={"help_option_names": ["-h", "--help"]},
 )
 
-for module in (plan, progeny, read, audit, labels, calendar, today, log, rear, count, demo):
+for module in (plan, progeny, read, shelf, audit, labels, calendar, today, log, rear, count, demo):
     module.register(app)
 
 #: what the shell expects of a program that was stopped with Ctrl-C

@@ -24,6 +24,7 @@ def audit(
     stocks: Annotated[Path, typer.Option("--stocks", help="Stock list: CSV, TSV, XLSX or ODS.")],
     screen: Annotated[Path | None, typer.Option("--screen", help="Screen file: what is missing for it?")] = None,
     sheet: Annotated[str | None, typer.Option(help="Sheet of a workbook with several.")] = None,
+    settings: Annotated[Path | None, typer.Option(help="How to read the list (written by 'crossplan read').")] = None,
     today: Annotated[str | None, typer.Option(help="Judge dates as of this day (YYYY-MM-DD).")] = None,
     notes: Annotated[bool, typer.Option("--notes", help="Show notes too, not only errors and warnings.")] = False,
     lab_file: Annotated[Path | None, typer.Option("--lab", help="The lab's own catalogue entries (TOML).")] = None,
@@ -33,7 +34,9 @@ def audit(
     from crossplan import api
 
     day = api.parse_day(today) if today else dt.date.today()
-    audited = api.audit_stocks(stocks, screen, today=day, sheet=sheet, lab_file=lab_file)
+    audited = api.audit_stocks(
+        stocks, screen, today=day, settings=api.list_settings(settings, sheet=sheet), lab_file=lab_file
+    )
     if as_json:
         print_json(api.audit_json(audited))
     else:

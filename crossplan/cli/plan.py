@@ -30,6 +30,7 @@ def plan(
         str | None, typer.Option(help="First day of work (YYYY-MM-DD); the screen file's start, or today, otherwise.")
     ] = None,
     sheet: Annotated[str | None, typer.Option(help="Sheet of a workbook with several.")] = None,
+    settings: Annotated[Path | None, typer.Option(help="How to read the list (written by 'crossplan read').")] = None,
     lab_file: Annotated[Path | None, typer.Option("--lab", help="The lab's own catalogue entries (TOML).")] = None,
     as_json: Annotated[bool, typer.Option("--json", help="Print the plan as one JSON document.")] = False,
 ) -> None:
@@ -39,7 +40,13 @@ def plan(
     first_day = api.parse_day(start) if start else None
     with _progress(quiet=as_json) as report:
         planned = api.plan_screen(
-            screen, stocks, today=dt.date.today(), start=first_day, sheet=sheet, lab_file=lab_file, progress=report
+            screen,
+            stocks,
+            today=dt.date.today(),
+            start=first_day,
+            settings=api.list_settings(settings, sheet=sheet),
+            lab_file=lab_file,
+            progress=report,
         )
         written = api.write_plan(planned.plan, out) if out is not None else ()
     if as_json:

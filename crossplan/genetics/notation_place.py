@@ -247,8 +247,7 @@ class Placer:
                 name, because = next(iter(found.items()))
                 if not self._possible(field, name):
                     continue
-                severity = Severity.NOTE if rank is Rank.OTHER_ROWS else Severity.WARNING
-                self._say("assumed-chromosome", severity, f"{field.symbols()} is taken to be on chromosome {name}, by"
+                self._say("assumed-chromosome", Severity.WARNING, f"{field.symbols()} is taken to be on chromosome {name}, by"
                           f" {because}", field, f"write ({_ROMAN[name]}) behind it, or all fields")  # fmt: skip
                 return name
         return ""

@@ -72,7 +72,7 @@ def _chromosomes(by_lower: Mapping[str, str]) -> dict[str, str]:
 
 
 def _no_genotype(path: str, headings: Sequence[str]) -> StockListError:
-    near = get_close_matches("genotype", [h.lower() for h in headings], n=1, cutoff=0.5)
+    near = get_close_matches("genotype", [h.lower() for h in headings], n=1, cutoff=0.75)
     hint = (
         f"'{next(h for h in headings if h.lower() == near[0])}' may be it: rename it 'genotype'"
         if near

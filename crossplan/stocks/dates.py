@@ -8,11 +8,12 @@ from collections.abc import Iterable, Sequence
 from typing import Literal
 
 Order = Literal["day first", "month first"]
+ORDERS: tuple[Order, ...] = ("day first", "month first")
 
 _ISO = re.compile(r"(\d{4})[-/.](\d{1,2})[-/.](\d{1,2})")
-_NAMED = re.compile(r"(\d{1,2})[\s.-]*([A-Za-z]{3,9})[\s.,-]*(\d{2,4})")
-_NAMED_FIRST = re.compile(r"([A-Za-z]{3,9})[\s.]*(\d{1,2})[\s,]+(\d{2,4})")
-_NUMBERS = re.compile(r"(\d{1,2})[-/.](\d{1,2})[-/.](\d{2,4})")
+_NAMED = re.compile(r"(\d{1,2})[\s.-]*([A-Za-z]{3,9})[\s.,-]*(\d{4}|\d{2})")
+_NAMED_FIRST = re.compile(r"([A-Za-z]{3,9})[\s.]*(\d{1,2})[\s,]+(\d{4}|\d{2})")
+_NUMBERS = re.compile(r"(\d{1,2})[-/.](\d{1,2})[-/.](\d{4}|\d{2})")
 _MONTHS = ("jan", "feb", "mar", "apr", "may", "jun", "jul", "aug", "sep", "oct", "nov", "dec")
 
 

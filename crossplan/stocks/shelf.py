@@ -8,7 +8,7 @@ from __future__ import annotations
 
 import datetime as dt
 import re
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field, replace
 from functools import cached_property
 from pathlib import Path
@@ -17,9 +17,10 @@ from crossplan.errors import Problem, Severity, StockListError
 from crossplan.genetics.catalogue import Catalogue, default_catalogue
 from crossplan.genetics.element import Element
 from crossplan.genetics.notation import Reading, read_genotype
-from crossplan.stocks.columns import guess_columns
-from crossplan.stocks.dates import order_of, possible_days, read_day
-from crossplan.stocks.table import Row, Table, read_table
+from crossplan.stocks.columns import NAMES, guess_columns
+from crossplan.stocks.dates import Order, order_of, possible_days, read_day
+from crossplan.stocks.settings import ListSettings
+from crossplan.stocks.table import Row, Table, read_all_tables, read_table
 
 #: words in the status column that take a stock out of use
 OUT_OF_USE = ("dead", "lost", "retired", "discarded", "gone", "quarantine")
@@ -45,6 +46,7 @@ class Stock:
     source: str = ""
     status: str = ""
     notes: str = ""
+    sheet: str = ""
 
     @property
     def location(self) -> str:
@@ -60,12 +62,13 @@ class Stock:
 
 @dataclass(frozen=True)
 class Shelf:
-    """A whole stock list. `columns` says which heading was taken for what."""
+    """A whole stock list. `columns` says which heading was taken for what, `sheets` which sheets of a workbook were read."""
 
     path: str
     stocks: tuple[Stock, ...]
     problems: tuple[Problem, ...]
     columns: Mapping[str, str] = field(default_factory=dict)
+    sheets: tuple[str, ...] = ()
 
     @property
     def rows_read(self) -> int:
@@ -97,30 +100,24 @@ class Shelf:
         return self._elements
 
 
-def read_stocks(
-    path: Path,
-    *,
-    columns: Mapping[str, str] | None = None,
-    sheet: str | None = None,
-    catalogue: Catalogue | None = None,
-) -> Shelf:
+def read_stocks(path: Path, *, settings: ListSettings | None = None, catalogue: Catalogue | None = None) -> Shelf:
     """Return the shelf that a stock list describes; rows that cannot be read are kept with their problems.
 
     Args:
         path: CSV, TSV, XLSX or ODS.
-        columns: heading for a kind of column (`genotype`, `stock`, `last_transfer`, ...) where a guess would be wrong.
-        sheet: sheet of a workbook.
+        settings: sheet, order of dates, and headings where a guess would be wrong.
         catalogue: facts to read genotypes with; the shipped ones by default.
 
     Raises:
         StockListError: the file cannot be read at all.
     """
-    table = read_table(path, ["genotype", *(columns or {}).values()], sheet)
-    found = guess_columns(table.headings, columns, table.path)
-    if not table.rows:
+    how = settings or ListSettings()
+    needed = [*how.columns.values()] if "genotype" in how.columns else [*NAMES["genotype"], *how.columns.values()]
+    tables = read_all_tables(path, needed) if how.all_sheets else (read_table(path, needed, how.sheet),)
+    sheets = [(table, guess_columns(table.headings, how.columns, table.path)) for table in tables]
+    if not any(table.rows for table in tables):
         raise StockListError(f"{path} has column names but no stocks under them", "check that the list was saved")
-    reader = _ShelfReader(table, found, catalogue or default_catalogue())
-    return reader.read()
+    return _ShelfReader(str(path), sheets, how.date_order, catalogue or default_catalogue()).read()
 
 
 #: what other rows of the list may settle
@@ -128,26 +125,34 @@ _QUESTIONS_OF_PLACE = frozenset(("assumed-place", "assumed-chromosome", "which-c
 
 
 class _ShelfReader:
-    def __init__(self, table: Table, columns: Mapping[str, str], catalogue: Catalogue) -> None:
-        self.table = table
-        self.columns = columns
+    def __init__(
+        self, path: str, sheets: Sequence[tuple[Table, dict[str, str]]], order: Order | None, catalogue: Catalogue
+    ) -> None:
+        self.path = path
+        self.sheets = sheets
+        self.given_order = order
         self.catalogue = catalogue
-        self.problems: list[Problem] = list(table.problems)
+        self.problems: list[Problem] = [p for table, _ in sheets for p in table.problems]
         self._readings: dict[str, Reading] = {}
-        self._names = {self._cell(row, "stock") for row in table.rows}
+        self.table, self.columns = sheets[0]
+        self._names = {_cell(row, columns, "stock") for table, columns in sheets for row in table.rows}
 
     def read(self) -> Shelf:
-        texts = [self._genotype(row) for row in self.table.rows]
-        for text in texts:
-            if text not in self._readings:
-                self._readings[text] = read_genotype(text, self.catalogue)
+        texts = [[_genotype(row, columns) for row in table.rows] for table, columns in self.sheets]
+        for text in dict.fromkeys(t for sheet in texts for t in sheet):
+            self._readings[text] = read_genotype(text, self.catalogue)
         self._second_pass()
-        order = order_of([self._cell(row, "last_transfer") for row in self.table.rows])
-        stocks = []
+        stocks: list[Stock] = []
         seen: dict[str, int] = {}
-        for row, text in zip(self.table.rows, texts, strict=True):
-            stocks.append(self._stock(row, text, order, seen))
-        return Shelf(self.table.path, tuple(stocks), tuple(self.problems), dict(self.columns))
+        for (table, columns), of_sheet in zip(self.sheets, texts, strict=True):
+            self.table, self.columns = table, columns
+            order = self.given_order or order_of([self._cell(row, "last_transfer") for row in table.rows])
+            for row, text in zip(table.rows, of_sheet, strict=True):
+                stocks.append(self._stock(row, text, order, seen))
+        return Shelf(
+            self.path, tuple(stocks), tuple(self.problems), dict(self.sheets[0][1]),
+            tuple(t.sheet for t, _ in self.sheets if t.sheet),
+        )  # fmt: skip
 
     def _second_pass(self) -> None:
         known: dict[str, Element] = {}
@@ -164,16 +169,9 @@ class _ShelfReader:
                     self._readings[text] = again
 
     def _cell(self, row: Row, kind: str) -> str:
-        heading = self.columns.get(kind)
-        return row.cells.get(heading, "") if heading else ""
+        return _cell(row, self.columns, kind)
 
-    def _genotype(self, row: Row) -> str:
-        if "genotype" in self.columns:
-            return self._cell(row, "genotype")
-        fields = [self._cell(row, c) or "+" for c in ("X", "2", "3", "4")]
-        return "; ".join(fields if fields[3] != "+" else fields[:3])
-
-    def _stock(self, row: Row, text: str, order: object, seen: dict[str, int]) -> Stock:
+    def _stock(self, row: Row, text: str, order: Order | None, seen: dict[str, int]) -> Stock:
         reading = self._readings[text]
         for p in reading.problems:
             self.problems.append(
@@ -197,7 +195,7 @@ class _ShelfReader:
             name, text, reading, row.number,
             tray=self._cell(row, "tray"), vial=self._cell(row, "vial"),
             copies=self._number(row, "copies"), temperature_C=self._temperature(row),
-            last_transfer=self._date(row, order), who=self._cell(row, "who"), source=self._cell(row, "source"),
+            last_transfer=self._date(row, order), sheet=self.table.sheet, who=self._cell(row, "who"), source=self._cell(row, "source"),
             status=self._cell(row, "status"), notes=self._cell(row, "notes"),
         )  # fmt: skip
 
@@ -226,11 +224,11 @@ class _ShelfReader:
             )
         return 22.0 if text.upper() in ("RT", "ROOM") else None
 
-    def _date(self, row: Row, order: object) -> dt.date | None:
+    def _date(self, row: Row, order: Order | None) -> dt.date | None:
         text = self._cell(row, "last_transfer")
         if not text:
             return None
-        day = read_day(text, order)  # type: ignore[arg-type]
+        day = read_day(text, order)
         if day is None:
             two = possible_days(text)
             meant = " or ".join(d.isoformat() for d in two)
@@ -239,3 +237,16 @@ class _ShelfReader:
                 "write it as 2026-11-03 (year-month-day)",
             )  # fmt: skip
         return day
+
+
+def _cell(row: Row, columns: Mapping[str, str], kind: str) -> str:
+    heading = columns.get(kind)
+    return row.cells.get(heading, "") if heading else ""
+
+
+def _genotype(row: Row, columns: Mapping[str, str]) -> str:
+    """Return the genotype of a row, put together where each chromosome has a column of its own."""
+    if "genotype" in columns:
+        return _cell(row, columns, "genotype")
+    fields = [_cell(row, columns, c) or "+" for c in ("X", "2", "3", "4")]
+    return "; ".join(fields if fields[3] != "+" else fields[:3])

@@ -1,25 +1,22 @@
 """A spreadsheet as rows of text, whatever the file: CSV and its kin in any delimiter and encoding, XLSX, ODS.
 
 The file is read, never written. Row numbers are those that the spreadsheet program shows, from 1. Title rows above the
-header, blank rows, rows that begin with `#` and repeated headers are left out.
+header, blank rows, remarks (rows that begin with `#`, unless a number follows at once, as in the stock #12) and repeated
+headers are left out; how many remarks there were is said.
 """
 
 from __future__ import annotations
 
-import csv
-import datetime as dt
-import io
-import zipfile
+import re
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 from difflib import get_close_matches
 from pathlib import Path
-from typing import Literal
 
 from crossplan.errors import Problem, Severity, StockListError
+from crossplan.stocks.text_table import Grid, read_text
+from crossplan.stocks.workbook import KINDS, read_sheets
 
-WORKBOOKS = {".xlsx": "xlsx", ".xlsm": "xlsx", ".ods": "ods"}
-DELIMITERS = ",\t;|"
 #: how far down the header may stand
 DEEPEST_HEADER = 20
 #: words by which a header row is known (see columns.py for the full list of names)
@@ -36,12 +33,16 @@ class Row:
 
 @dataclass(frozen=True)
 class Table:
-    """A sheet: headings in order, the rows under them, and what was odd about the file."""
+    """A sheet: headings in order, the rows under them, and what was odd about the file.
+
+    `sheet` is its name in a workbook, empty for a text file; `path` names the sheet too where several are read.
+    """
 
     path: str
     headings: tuple[str, ...]
     rows: tuple[Row, ...]
     problems: tuple[Problem, ...] = ()
+    sheet: str = ""
 
 
 def read_table(path: Path, needed: Sequence[str] = (), sheet: str | None = None) -> Table:
@@ -50,11 +51,57 @@ def read_table(path: Path, needed: Sequence[str] = (), sheet: str | None = None)
     Args:
         path: the file.
         needed: headings of which at least one marks the header row.
-        sheet: the sheet of a workbook; the first one that holds something otherwise.
+        sheet: the sheet of a workbook; otherwise the first that has one of the needed headings, or else the first filled.
 
     Raises:
         StockListError: the file is missing, is no table, or holds no rows.
     """
+    sheets, problems = _grids(path)
+    words = {n.lower() for n in needed} | HEADER_WORDS
+    name = sheet if sheet is not None else _likeliest(sheets, {n.lower() for n in needed}, words)
+    if name not in sheets:
+        raise StockListError(f"{path} has no sheet '{name}'", f"its sheets: {', '.join(sheets)}")
+    others = [n for n, grid in sheets.items() if n != name and any(map(any, grid))]
+    if others and sheet is None:
+        problems.append(
+            Problem(
+                "other-sheets",
+                Severity.NOTE,
+                f"only the sheet '{name}' was read, not {', '.join(others)}",
+                "name the sheet, or ask for all of them",
+                str(path),
+            )  # fmt: skip
+        )
+    return _as_table(str(path), sheets[name], problems, words, name)
+
+
+def read_all_tables(path: Path, needed: Sequence[str]) -> tuple[Table, ...]:
+    """Return a table for each sheet that has one of the needed headings; sheets without are named in a note.
+
+    Raises:
+        StockListError: the file cannot be read, or no sheet has such a heading.
+    """
+    sheets, problems = _grids(path)
+    needed_words = {n.lower() for n in needed}
+    words = needed_words | HEADER_WORDS
+    wanted = [n for n, grid in sheets.items() if _has_heading(grid, needed_words, words)]
+    if not wanted:
+        return (read_table(path, needed),)
+    left = [n for n, grid in sheets.items() if n not in wanted and any(map(any, grid))]
+    if left:
+        problems.append(
+            Problem("other-sheets", Severity.NOTE, f"without such a column, and not read: {', '.join(left)}", "",
+                    str(path))
+        )  # fmt: skip
+    several = len(wanted) > 1
+    return tuple(
+        _as_table(f"{path}, sheet {n}" if several else str(path), sheets[n], problems if i == 0 else [], words, n)
+        for i, n in enumerate(wanted)
+    )
+
+
+def _grids(path: Path) -> tuple[dict[str, Grid], list[Problem]]:
+    """Return the sheets of a file by name (one without a name for a text file), and what was odd about it."""
     if path.is_dir():
         raise StockListError(f"{path} is a folder, not a stock list", "give the file inside it")
     if not path.exists():
@@ -64,18 +111,29 @@ def read_table(path: Path, needed: Sequence[str] = (), sheet: str | None = None)
         )
     if path.stat().st_size == 0:
         raise StockListError(f"{path} is empty", "export the list again from the spreadsheet")
-    problems: list[Problem] = []
+    kind = KINDS.get(path.suffix.lower())
     try:
-        kind = WORKBOOKS.get(path.suffix.lower())
-        if kind is not None:
-            grid = _read_workbook(path, kind, sheet)
-        else:
-            grid, problems = _read_text(path)
+        if kind is None:
+            grid, problems = read_text(path, HEADER_WORDS)
+            return {"": grid}, problems
+        sheets = read_sheets(path, kind)
     except OSError as error:
         raise StockListError(
             f"cannot read {path}: {error.strerror or error}", "check your rights to the file"
         ) from error
-    return _as_table(path, grid, problems, needed)
+    if not any(any(map(any, grid)) for grid in sheets.values()):
+        raise StockListError(f"{path} holds no filled sheet", "check that the list was saved")
+    return sheets, []
+
+
+def _has_heading(grid: Grid, needed: set[str], words: set[str]) -> bool:
+    at = _header_row(grid, words)
+    return at is not None and bool(needed & {c.strip().lower() for c in grid[at]})
+
+
+def _likeliest(sheets: dict[str, Grid], needed: set[str], words: set[str]) -> str:
+    filled = [n for n, grid in sheets.items() if any(map(any, grid))]
+    return next((n for n in filled if _has_heading(sheets[n], needed, words)), filled[0] if filled else "")
 
 
 def _near_files(path: Path) -> str:
@@ -85,133 +143,51 @@ def _near_files(path: Path) -> str:
     return ", ".join(get_close_matches(path.name, sorted(names), n=3, cutoff=0.5))
 
 
-# -- text files --------------------------------------------------------------------------------------------------
-
-
-def _read_text(path: Path) -> tuple[list[list[str]], list[Problem]]:
-    text, problems = _decoded(path)
-    lines = [line for line in io.StringIO(text, newline=None) if line.strip()]
-    if not lines:
-        raise StockListError(f"{path} holds only blank lines", "export the list again from the spreadsheet")
-    delimiter = _delimiter(lines)
-    csv.field_size_limit(1_000_000)
-    # only CR and LF end a row; a cell with line breaks is one row, as the spreadsheet program numbers it
-    reader = csv.reader(io.StringIO(text, newline=""), delimiter=delimiter)
-    try:
-        grid = list(reader)
-    except csv.Error as error:
-        raise StockListError(f"{path}, line {reader.line_num}: {error}", "check the quotes on that line") from error
-    return grid, problems
-
-
-def _decoded(path: Path) -> tuple[str, list[Problem]]:
-    data = path.read_bytes()
-    if data.startswith((b"\xff\xfe", b"\xfe\xff")):
-        return data.decode("utf-16", errors="replace"), []
-    if data.startswith(b"PK"):
-        raise StockListError(
-            f"{path} is a workbook or an archive under a wrong ending", "name it .xlsx or .ods, or export CSV"
-        )
-    if b"\x00" in data[:4096]:
-        raise StockListError(f"{path} is not a text file", "export the list as CSV, or give the XLSX or ODS file")
-    try:
-        return data.decode("utf-8-sig"), []
-    except UnicodeDecodeError as error:
-        number = data.count(b"\n", 0, error.start) + 1
-        note = Problem(
-            "encoding", Severity.WARNING, "the file is not UTF-8; it was read as Windows-1252",
-            "look at Greek letters and names; export as UTF-8 if they are wrong", str(path), number,
-        )  # fmt: skip
-        return data.decode("cp1252", errors="replace"), [note]
-
-
-def _delimiter(lines: Sequence[str]) -> str:
-    """Return the delimiter that divides the first lines most evenly (a genotype is full of `;` and `,`)."""
-    head = lines[:30]
-
-    def evenness(delimiter: str) -> tuple[int, int]:
-        counts = [len(row) for row in csv.reader(head, delimiter=delimiter)]
-        most = max(set(counts), key=lambda n: (counts.count(n) if n > 1 else 0, n))
-        return (counts.count(most) if most > 1 else 0, most)
-
-    headed = [d for d in DELIMITERS if HEADER_WORDS & {c.strip().lower() for line in head for c in line.split(d)}]
-    candidates = headed if headed and len(headed) < len(DELIMITERS) else list(DELIMITERS)
-    return max(candidates, key=lambda d: (evenness(d), -DELIMITERS.index(d)))
-
-
-# -- workbooks ---------------------------------------------------------------------------------------------------
-
-
-def _read_workbook(path: Path, kind: str, sheet: str | None) -> list[list[str]]:
-    import pandas
-
-    engine: Literal["openpyxl", "odf"] = "openpyxl" if kind == "xlsx" else "odf"
-    try:
-        frames = pandas.read_excel(path, sheet_name=None, header=None, dtype=object, na_filter=False, engine=engine)
-    except (zipfile.BadZipFile, KeyError, ValueError, EOFError) as error:
-        raise StockListError(
-            f"{path} is no readable workbook ({error})", "open it and save it again, or export CSV"
-        ) from error
-    sheets = {str(name): [[_cell(v) for v in row] for row in frame.to_numpy()] for name, frame in frames.items()}
-    if sheet is not None:
-        if sheet not in sheets:
-            raise StockListError(f"{path} has no sheet '{sheet}'", f"its sheets: {', '.join(sheets)}")
-        return sheets[sheet]
-    filled = [grid for grid in sheets.values() if any(any(row) for row in grid)]
-    if not filled:
-        raise StockListError(f"{path} holds no filled sheet", "check that the list was saved")
-    return filled[0]
-
-
-def _cell(value: object) -> str:
-    """Return a cell as text: dates in ISO form, whole numbers without a point."""
-    if value is None or value != value:
-        return ""
-    if isinstance(value, dt.datetime):
-        return value.date().isoformat()
-    if isinstance(value, float) and value.is_integer():
-        return str(int(value))
-    return str(value)
-
-
 # -- rows under their headings -----------------------------------------------------------------------------------
 
 
-def _as_table(path: Path, grid: list[list[str]], problems: list[Problem], needed: Sequence[str]) -> Table:
-    at = _header_row(grid, {n.lower() for n in needed} | HEADER_WORDS)
+def _as_table(path: str, grid: Grid, problems: list[Problem], words: set[str], sheet: str) -> Table:
+    at = _header_row(grid, words)
     if at is None:
         raise StockListError(f"{path} holds no rows", "the first filled row must hold the column names")
     headings = _headings(grid[at])
-    rows = []
+    rows, remarks = [], 0
     for i, cells in enumerate(grid[at + 1 :], start=at + 2):
         texts = [c.strip() for c in cells]
-        if not any(texts) or _is_comment(texts) or _same(texts, grid[at]):
+        if _is_comment(texts):
+            remarks += 1
+            continue
+        if not any(texts) or _same(texts, grid[at]):
             continue
         if any(texts[len(headings) :]):
             problems.append(_too_many_cells(path, i, len(headings)))
         rows.append(Row(i, dict(zip(headings, texts + [""] * (len(headings) - len(texts)), strict=False))))
-    return Table(str(path), headings, tuple(rows), tuple(problems))
+    if remarks:
+        problems.append(
+            Problem("remarks", Severity.NOTE, f"{remarks} {'row begins' if remarks == 1 else 'rows begin'} with # and"
+                    " were left out as remarks", "take the # away where a row is a stock", path)
+        )  # fmt: skip
+    return Table(path, headings, tuple(rows), tuple(problems), sheet)
 
 
 def _is_comment(cells: Sequence[str]) -> bool:
-    """Whether a row is a remark; `#` alone is a usual heading for the number of a stock."""
-    first = cells[0].strip()
-    return first.startswith("#") and first != "#"
+    """Whether a row is a remark; `#` alone is a usual heading for the number of a stock, and `#12` is such a number."""
+    return bool(cells) and re.match(r"#(?=\S)(?!\d)|#\s+\S", cells[0].strip()) is not None
 
 
-def _too_many_cells(path: Path, row: int, columns: int) -> Problem:
+def _too_many_cells(path: str, row: int, columns: int) -> Problem:
     """Return the warning for a row that runs beyond the last column: most often a comma that should be in quotes."""
     return Problem(
         "too-many-cells",
         Severity.WARNING,
         f"the row has more cells than the {columns} columns, so cells may have slipped",
         'put a cell that holds the delimiter in quotes, such as "w; Sco/CyO; TM3, Sb/TM6B"',
-        str(path),
+        path,
         row,
     )
 
 
-def _header_row(grid: list[list[str]], words: set[str]) -> int | None:
+def _header_row(grid: Grid, words: set[str]) -> int | None:
     filled = [i for i, row in enumerate(grid) if any(c.strip() for c in row) and not _is_comment(row)]
     for i in filled[:DEEPEST_HEADER]:
         if words & {c.strip().lower() for c in grid[i]}:

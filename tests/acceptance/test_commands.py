@@ -201,3 +201,20 @@ def test_the_journal_follows_the_bench(tmp_path: Path) -> None:
     assert report["moved"]
     assert run("log", plan, "S99", "flies").returncode == 2
     assert run("log", plan, first, "vanished").returncode == 2
+
+
+def test_a_list_with_headings_of_its_own_is_read_as_remembered(tmp_path: Path) -> None:
+    stocks, how, table = tmp_path / "list.csv", tmp_path / "how.toml", tmp_path / "look.csv"
+    stocks.write_text("Line no.,Flies inside\n007,w; Sp/CyO\n008,w; kx-GAL4\n")
+    assert run("shelf", stocks).returncode == 2
+    done = run("shelf", stocks, "--column", "genotype=Flies inside", "--column", "stock=Line no.", "--remember", how,
+               "--report", table)  # fmt: skip
+    assert done.returncode == 1
+    assert "on which chromosome is kx-GAL4? (row 3)" in done.stdout
+    assert "008" in table.read_text()
+    report = document("shelf", stocks, "--settings", how)
+    assert report["counts"] == {"read": 1, "assumed": 0, "chromosome open": 1, "refused": 0}
+    assert run("shelf", stocks, "--settings", how, "--report", stocks).returncode == 2
+    assert stocks.read_text().startswith("Line no.")
+    audited = document("audit", "--stocks", stocks, "--settings", how)
+    assert audited["stocks"] == 2

@@ -10,13 +10,15 @@ import subprocess
 import sys
 from collections.abc import Callable
 from pathlib import Path
+from random import Random
 from statistics import median
 from time import perf_counter
-from typing import Any
+from typing import Any, get_args
 
 import pytest
 
 from crossplan import api
+from tests.reference.random_genotypes import Style, random_genotype
 
 ROOT = Path(__file__).resolve().parents[2]
 DEMO = ROOT / "demo_stocks"
@@ -66,6 +68,47 @@ def test_reading_a_thousand_rows(benchmark: Any, tmp_path: Path) -> None:
     table.write_text("\n".join([lines[0], *rows[:1000]]), encoding="utf-8")
     shelf = benchmark(api.read_stocks, table)
     assert shelf.rows_read == 1000
+
+
+def long_list(path: Path, rows: int) -> Path:
+    """Write a stock list of so many different rows, as three styles of writing give them."""
+    random = Random("long list")
+    styles = get_args(Style)
+    lines = ["stock\tgenotype\tcopies\ttemp\tlast flip"]
+    for n in range(rows):
+        text, _ = random_genotype(random, styles[n % len(styles)])
+        lines.append(f"{n:06d}\t{text.replace('UAS-kx', f'UAS-k{n}')}\t2\t18\t2026-11-{n % 28 + 1:02d}")
+    path.write_text("\n".join(lines), encoding="utf-8")
+    return path
+
+
+def test_a_list_of_a_hundred_thousand_rows(benchmark: Any, tmp_path: Path) -> None:
+    """Read, checked and indexed; the time and the memory of 100,000 rows against those of 10,000."""
+    import tracemalloc
+
+    sizes = (100, 1_000) if benchmark.disabled else (10_000, 100_000)
+    lists = [long_list(tmp_path / f"{n}.tsv", n) for n in sizes]
+
+    def both() -> list[tuple[float, int]]:
+        found = []
+        for path in lists:
+            start = perf_counter()
+            shelf = api.read_stocks(path)
+            found.append((perf_counter() - start, len(shelf.elements())))
+        return found
+
+    (few, _), (many, indexed) = benchmark.pedantic(both, rounds=1)
+    assert indexed > 0
+    memory = []
+    for path in lists:
+        tracemalloc.start()
+        shelf = api.read_stocks(path)
+        memory.append(tracemalloc.get_traced_memory()[0])
+        tracemalloc.stop()
+        assert shelf.rows_refused == 0
+    benchmark.extra_info |= {"seconds": round(many, 1), "times the tenth": round(many / few, 1),
+                             "MB": [round(m / 1e6) for m in memory]}  # fmt: skip
+    assert memory[1] <= 12 * memory[0]
 
 
 def test_one_unlinked_cross(benchmark: Any) -> None:

@@ -82,9 +82,6 @@ UNDERSTOOD = [
     ("w; +/CyO-ActGFP", "w; +/CyO-GFP; +"),
     ("w; +/CyO, Kr-GFP", "w; +/CyO, Kr-GFP; +"),
     ("FM7a/w[1118]", "w[1118]/FM7a; +; +"),
-    # lines of the trade of which it is known where they sit; the place between semicolons counts more
-    ("w[*]; P{w[+mW.hs]=GawB}OK107", "w[*]; +; +; GawB@OK107"),
-    ("w; tubP-GAL80[ts]@20", "w; tubP-GAL80[ts]@20; +"),
     # a superscript that was lost behind a mapped gene
     ("w; nubK51/+", "w; nub[K51]/+; +"),
     # sex
@@ -128,6 +125,9 @@ ASSUMED = [
     ("w; kx-GAL4BDSC:12345; +", "w; kx-GAL4; +", "stock-number"),
     ("w; +; UAS-kx in VK00005_UAS-q in attP2/TM6B, Tb", "w; +; UAS-q@attP2 UAS-kx@VK00005/TM6B, Tb", "underscore"),
     ("w; kx-GAL4 (or q-GAL4); +", "w; kx-GAL4; +", "choice"),
+    # lines of the trade of which it is known where they sit; the place between semicolons counts more
+    ("w[*]; P{w[+mW.hs]=GawB}OK107", "w[*]; +; +; GawB@OK107", "assumed-chromosome"),
+    ("w; tubP-GAL80[ts]@20", "w; tubP-GAL80[ts]@20; +", "assumed-chromosome"),
     ("HA-nub/+", "+; HA-nub/+; +", "assumed-chromosome"),
     ("egts2/+", "+; +; egts2/+", "assumed-chromosome"),
 ]

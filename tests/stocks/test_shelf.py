@@ -8,6 +8,7 @@ from pathlib import Path
 import pytest
 
 from crossplan.errors import Severity, StockListError
+from crossplan.stocks.settings import ListSettings
 from crossplan.stocks.shelf import Shelf, read_stocks
 
 
@@ -182,5 +183,5 @@ def test_a_list_without_genotypes_is_refused_with_its_columns(tmp_path: Path) ->
 def test_a_given_column_is_used(tmp_path: Path) -> None:
     path = tmp_path / "stocks.csv"
     path.write_text("code|flies inside\nA|w; Sco/CyO\n", encoding="utf-8")
-    stocks = read_stocks(path, columns={"genotype": "flies inside", "stock": "code"})
+    stocks = read_stocks(path, settings=ListSettings(columns={"genotype": "flies inside", "stock": "code"}))
     assert [(s.name, s.genotype) for s in stocks.stocks] == [("A", "w; Sco/CyO")]

@@ -8,6 +8,7 @@ from pathlib import Path
 import pytest
 
 from crossplan.errors import StockListError
+from crossplan.stocks.settings import ListSettings
 from crossplan.stocks.shelf import read_stocks
 
 ROWS = [
@@ -77,4 +78,65 @@ def test_a_broken_workbook_is_refused(tmp_path: Path) -> None:
 def test_a_sheet_that_is_not_there_is_refused(tmp_path: Path) -> None:
     write_xlsx(tmp_path / "list.xlsx")
     with pytest.raises(StockListError, match="has no sheet 'other'"):
-        read_stocks(tmp_path / "list.xlsx", sheet="other")
+        read_stocks(tmp_path / "list.xlsx", settings=ListSettings("other"))
+
+
+def test_a_cell_that_is_merged_downwards_counts_for_its_rows(tmp_path: Path) -> None:
+    import openpyxl
+
+    book = openpyxl.Workbook()
+    sheet = book.active
+    assert sheet is not None
+    for row in (["tray", "stock", "genotype"], ["T1", "A", "w"], [None, "B", "w"], [None, "C", "w"], ["T2", "D", "w"]):
+        sheet.append(row)
+    sheet.merge_cells("A2:A4")
+    book.save(tmp_path / "list.xlsx")
+    assert [s.tray for s in read_stocks(tmp_path / "list.xlsx").stocks] == ["T1", "T1", "T1", "T2"]
+
+
+def test_noughts_that_only_the_number_format_shows_are_kept(tmp_path: Path) -> None:
+    import openpyxl
+
+    book = openpyxl.Workbook()
+    sheet = book.active
+    assert sheet is not None
+    sheet.append(["stock", "genotype"])
+    sheet.append([7, "w"])
+    sheet["A2"].number_format = "0000"
+    book.save(tmp_path / "list.xlsx")
+    assert [s.name for s in read_stocks(tmp_path / "list.xlsx").stocks] == ["0007"]
+
+
+def write_three_sheets(path: Path) -> None:
+    import openpyxl
+
+    book = openpyxl.Workbook()
+    first = book.active
+    assert first is not None
+    first.title = "people"
+    first.append(["who", "telephone"])
+    first.append(["Ida", 12])
+    for title, names in (("cold room", "AB"), ("warm room", "CA")):
+        sheet = book.create_sheet(title)
+        sheet.append(["stock", "genotype"])
+        for name in names:
+            sheet.append([name, "w; Sp/CyO"])
+    book.save(path)
+
+
+def test_the_sheet_with_genotypes_is_found_and_the_others_are_named(tmp_path: Path) -> None:
+    write_three_sheets(tmp_path / "list.xlsx")
+    shelf = read_stocks(tmp_path / "list.xlsx")
+    assert shelf.sheets == ("cold room",)
+    (note,) = [p for p in shelf.problems if p.code == "other-sheets"]
+    assert "people, warm room" in note.message
+
+
+def test_all_sheets_are_one_shelf(tmp_path: Path) -> None:
+    write_three_sheets(tmp_path / "list.xlsx")
+    shelf = read_stocks(tmp_path / "list.xlsx", settings=ListSettings(all_sheets=True))
+    assert shelf.sheets == ("cold room", "warm room")
+    assert [(s.sheet, s.name) for s in shelf.stocks][:3] == [("cold room", "A"), ("cold room", "B"), ("warm room", "C")]
+    assert shelf.stocks[3].name == "A (row 3)"
+    (twice,) = [p for p in shelf.problems if p.code == "name-twice"]
+    assert "sheet warm room" in twice.path
