@@ -21,6 +21,7 @@ from __future__ import annotations
 import re
 from collections.abc import Mapping
 from dataclasses import dataclass, replace
+from functools import lru_cache
 from typing import Any, Final
 
 from crossplan.errors import GenotypeError, Problem, Severity
@@ -32,10 +33,10 @@ from crossplan.genetics.notation_clean import MOST_SHOWN, Cleaned, clean, proble
 from crossplan.genetics.notation_element import WordReader
 from crossplan.genetics.notation_flies import build_flies, homologue_of
 from crossplan.genetics.notation_items import Symbols, join_items
-from crossplan.genetics.notation_place import Placer, ReadField, ReadHalf
+from crossplan.genetics.notation_place import Content, Placer, ReadField, ReadHalf
 from crossplan.genetics.notation_shared import share_balancers
 from crossplan.genetics.notation_split import Field, Half, Item, split_genotype
-from crossplan.genetics.notation_word import Word
+from crossplan.genetics.notation_word import Word, remember
 from crossplan.genetics.notation_write import fly_json as fly_json
 from crossplan.genetics.notation_write import format_genotype as format_genotype
 from crossplan.genetics.notation_write import format_homologues
@@ -104,12 +105,20 @@ def read_genotype(text: str, catalogue: Catalogue | None = None, known: Mapping[
     return _Reader(text, catalogue or default_catalogue(), known or {}).read()
 
 
+@lru_cache(maxsize=8)
+def _contents_of(catalogue: Catalogue) -> dict[tuple[str, bool, bool], Content]:
+    """Return the homologues that were read without a problem with this catalogue: they recur all through a list."""
+    return {}
+
+
 class _Reader:
     def __init__(self, text: str, catalogue: Catalogue, known: Mapping[str, Element]) -> None:
         self.text = text
         self.catalogue = catalogue
         self.cleaned: Cleaned = clean(text)
         self.words = WordReader(catalogue, known, self.cleaned.text)
+        #: homologues that were read without a word to be said; what other rows know could change them
+        self.contents = {} if known else _contents_of(catalogue)
         #: with places in the cleaned text; those of the cleaning itself are in the original already
         self.problems: list[Problem] = []
 
@@ -178,15 +187,25 @@ class _Reader:
 
     def _field(self, field: Field, index: int) -> ReadField:
         halves: list[ReadHalf] = []
+        alone = len(field.halves) == 1
         for half in field.halves:
+            key = (self.cleaned.text[half.start : half.end], index == 2, alone)
+            content = self.contents.get(key)
+            if content is not None:
+                halves.append(ReadHalf(content, half.start, half.end))
+                continue
+            before = len(self.problems)
             symbols = join_items(half.items, self.catalogue, self.cleaned.text)
             self.problems += symbols.problems
-            halves.append(self._half(half, symbols, index, len(field.halves) == 1))
+            read = self._half(half, symbols, index, alone)
+            halves.append(read)
             if half.items and not symbols.items and not symbols.or_y:
-                self._remark_only(half, len(field.halves) == 1 and index > 0)
-            if symbols.floating and len(field.halves) == 1:
+                self._remark_only(half, alone and index > 0)
+            if symbols.floating and alone:
                 across = Half(symbols.floating, symbols.floating[0].start, symbols.floating[-1].end)
                 halves.append(self._half(across, Symbols(list(symbols.floating)), index, False))
+            if len(self.problems) == before and not self.words.known:
+                remember(self.contents, key, read.content)
         return ReadField(field, tuple(halves), index)
 
     def _remark_only(self, half: Half, whole_field: bool) -> None:
@@ -211,7 +230,7 @@ class _Reader:
         if balancer is not None and balancer_item is not None:
             words = self._with_balancer(words, balancer, balancer_item, index)
         self._check(half, words, alone)
-        return ReadHalf(tuple(words), half.start, half.end, symbols.or_y)
+        return ReadHalf(Content(tuple(words), symbols.or_y), half.start, half.end)
 
     def _with_balancer(self, words: list[Word], balancer: Element, item: Item, index: int) -> list[Word]:
         """Give an unmarked balancer its usual marker, and a translocation balancer in field 3 its part there."""

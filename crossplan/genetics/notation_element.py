@@ -33,7 +33,7 @@ from crossplan.genetics.notation_insertion import (
     markers_and_name,
 )
 from crossplan.genetics.notation_split import Item
-from crossplan.genetics.notation_word import Evidence, Rank, SymbolReader, Word, said
+from crossplan.genetics.notation_word import Evidence, Rank, SymbolReader, Word, remember, said
 
 _LABEL = re.compile(
     r"(?P<base>.+)\((?:chr(?:omosome)?\.? ?)?(?P<name>X|[1-5](?:L|R|LR)?|I|II|III|IV|V)\)", re.IGNORECASE
@@ -58,7 +58,6 @@ _Y_FORMS = re.compile(
 )
 #: the longest real symbols known to us have some 130 characters
 _LONGEST_SYMBOL: Final = 400
-_MOST_REMEMBERED: Final = 20_000
 _STOCK_NUMBER = re.compile(r"(?:BDSC|DGRC|VDRC|DGGR)[:_# ]?\d{3,}")
 _GLUED_CROSS = re.compile(r"(?i)(?:dbd|ad|gal4)x(?:\d*x?uas|uas)")
 _MOST_UNDERSCORES: Final = 2
@@ -95,9 +94,7 @@ class WordReader(SymbolReader):
         if words is None:
             words = self._read(item, balancer)
             if not any(w.problems for w in words):
-                if len(self._memory) >= _MOST_REMEMBERED:
-                    self._memory.clear()
-                self._memory[key] = words
+                remember(self._memory, key, words)
         return words
 
     def _read(self, item: Item, balancer: Element | None) -> list[Word]:

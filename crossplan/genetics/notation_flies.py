@@ -38,10 +38,12 @@ class Flies:
 
 def homologue_of(half: ReadHalf, name: str = "") -> Homologue:
     """Return the homologue that was read, with its elements on chromosome `name`."""
-    elements = [w.element for w in half.words if w.element is not None]
-    if not elements:
-        return WILD_TYPE
-    return Homologue.of(*dict.fromkeys(_on(e, name) for e in elements))
+    made = half.content.homologues.get(name)
+    if made is None:
+        elements = [w.element for w in half.words if w.element is not None]
+        made = Homologue.of(*dict.fromkeys(_on(e, name) for e in elements)) if elements else WILD_TYPE
+        half.content.homologues[name] = made
+    return made
 
 
 def _on(element: Element, name: str) -> Element:
@@ -177,7 +179,7 @@ class _Builder:
         if ys:
             return (xs[0], xs[0]), (xs[0], y), MALE
         first, second = xs[0], xs[-1]
-        if field is not None and any(h.or_y for h in field.halves):
+        if field is not None and any(h.content.or_y for h in field.halves):
             self._say("or-y", Severity.NOTE, "read as two flies: a female with both X, a male with the first", "X")
             return (first, second), (first, Y), None
         if len(xs) == 2 and field is not None:

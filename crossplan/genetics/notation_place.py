@@ -13,13 +13,16 @@ only the 4th; that is stated as an assumption. A field of which nothing says the
 
 from __future__ import annotations
 
+import dataclasses
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
+from functools import cached_property
 from typing import Final
 
 from crossplan.errors import Problem, Severity
 from crossplan.genetics.chromosome import PAIRS
 from crossplan.genetics.element import Kind
+from crossplan.genetics.fly import Homologue
 from crossplan.genetics.notation_clean import problem
 from crossplan.genetics.notation_split import Field
 from crossplan.genetics.notation_word import Rank, Word
@@ -28,26 +31,53 @@ _ROMAN: Final = {"X": "I", "2": "II", "3": "III", "4": "IV"}
 _FOURTH: Final = 4
 
 
-@dataclass(frozen=True)
-class ReadHalf:
-    """One homologue as it was read: its words, in the order of writing; `or_y`: it says `or Y`."""
+@dataclass(frozen=True, eq=False)
+class Content:
+    """What one homologue holds, wherever it stands: its words, in the order of writing; `or_y`: it says `or Y`.
+
+    Lists repeat the same homologues in row after row, so what follows from the words is worked out once: `homologues` keeps
+    those that were made of it, by chromosome.
+    """
 
     words: tuple[Word, ...]
-    start: int
-    end: int
     or_y: bool = False
+    homologues: dict[str, Homologue] = dataclasses.field(default_factory=dict)
 
-    @property
+    @cached_property
     def has_y(self) -> bool:
         return any(w.kind is Kind.Y for w in self.words)
 
-    @property
+    @cached_property
     def is_wild_type(self) -> bool:
         return all(w.element is None for w in self.words)
 
+    @cached_property
+    def evidence(self) -> Mapping[Rank, Mapping[str, str]]:
+        """Return for each rank the chromosomes that the words speak for, and what says so.
+
+        Markers on a balancer do not count: `CyO` may carry Tb, which lies on chromosome 3 elsewhere.
+        """
+        balanced = any(w.kind is Kind.BALANCER for w in self.words)
+        found: dict[Rank, dict[str, str]] = {rank: {} for rank in Rank}
+        for word in self.words:
+            if balanced and word.kind not in (Kind.BALANCER, Kind.ABERRATION) and not _sited(word):
+                continue
+            for one in word.evidence:
+                found[one.rank].setdefault(one.chromosome, one.because)
+        return found
+
+
+@dataclass(frozen=True, slots=True)
+class ReadHalf:
+    """One homologue as it was read, and where it stands."""
+
+    content: Content
+    start: int
+    end: int
+
     @property
-    def has_balancer(self) -> bool:
-        return any(w.kind is Kind.BALANCER for w in self.words)
+    def words(self) -> tuple[Word, ...]:
+        return self.content.words
 
 
 @dataclass(frozen=True)
@@ -60,31 +90,20 @@ class ReadField:
 
     @property
     def is_plus(self) -> bool:
-        return all(h.is_wild_type for h in self.halves)
+        return all(h.content.is_wild_type for h in self.halves)
 
     @property
     def has_y(self) -> bool:
-        return any(h.has_y or h.or_y for h in self.halves)
+        return any(h.content.has_y or h.content.or_y for h in self.halves)
 
-    def evidence(self, rank: Rank) -> dict[str, str]:
-        """Return the chromosomes that the words speak for with this rank, and what says so.
-
-        Markers on a balancer do not count: `CyO` may carry Tb, which lies on chromosome 3 elsewhere.
-        """
+    def evidence(self, rank: Rank) -> Mapping[str, str]:
+        """Return the chromosomes that the words speak for with this rank, and what says so."""
+        if len(self.halves) == 1:
+            return self.halves[0].content.evidence[rank]
         found: dict[str, str] = {}
         for half in self.halves:
-            balanced = half.has_balancer
-            for word in half.words:
-                if (
-                    balanced
-                    and word.kind is not Kind.BALANCER
-                    and word.kind is not Kind.ABERRATION
-                    and not _sited(word)
-                ):
-                    continue
-                for one in word.evidence:
-                    if one.rank is rank:
-                        found.setdefault(one.chromosome, one.because)
+            for chromosome, because in half.content.evidence[rank].items():
+                found.setdefault(chromosome, because)
         return found
 
     def symbols(self) -> str:
@@ -288,7 +307,7 @@ class Placer:
         self._say("one-homologue", Severity.WARNING, f"the sites {' and '.join(sites)} are both on chromosome {names[0]};"
                   " the insertions are read as standing on one homologue", second,
                   "write a comma between them, or a slash if they stand on different homologues")  # fmt: skip
-        half = ReadHalf(words, first.halves[0].start, second.halves[0].end)
+        half = ReadHalf(Content(words), first.halves[0].start, second.halves[0].end)
         self.fields = [ReadField(first.field, (half,), 0)]
         return True
 

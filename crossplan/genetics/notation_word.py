@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from enum import IntEnum
+from typing import Final, TypeVar
 
 from crossplan.errors import Problem, Severity
 from crossplan.genetics.catalogue import Catalogue
@@ -46,6 +47,19 @@ class Word:
 def said(chromosome: str, because: str) -> tuple[Evidence, ...]:
     """Return strong evidence for a chromosome; none where it is not known."""
     return (Evidence(chromosome, because),) if chromosome else ()
+
+
+#: how many readings of one kind are kept at most
+_MOST_REMEMBERED: Final = 20_000
+_Key = TypeVar("_Key")
+_Read = TypeVar("_Read")
+
+
+def remember(memory: dict[_Key, _Read], key: _Key, read: _Read) -> None:
+    """Keep a reading for the next time; a memory that is full is emptied first."""
+    if len(memory) >= _MOST_REMEMBERED:
+        memory.clear()
+    memory[key] = read
 
 
 class SymbolReader:
