@@ -7,8 +7,10 @@ afterwards, and settle rows that leave it open.
 from __future__ import annotations
 
 import datetime as dt
+import gc
 import re
-from collections.abc import Mapping, Sequence
+from collections.abc import Iterator, Mapping, Sequence
+from contextlib import contextmanager
 from dataclasses import dataclass, field, replace
 from functools import cached_property
 from pathlib import Path
@@ -138,6 +140,10 @@ class _ShelfReader:
         self._names = {_cell(row, columns, "stock") for table, columns in sheets for row in table.rows}
 
     def read(self) -> Shelf:
+        with _no_search_for_cycles():
+            return self._read()
+
+    def _read(self) -> Shelf:
         texts = [[_genotype(row, columns) for row in table.rows] for table, columns in self.sheets]
         for text in dict.fromkeys(t for sheet in texts for t in sheet):
             self._readings[text] = read_genotype(text, self.catalogue)
@@ -237,6 +243,18 @@ class _ShelfReader:
                 "write it as 2026-11-03 (year-month-day)",
             )  # fmt: skip
         return day
+
+
+@contextmanager
+def _no_search_for_cycles() -> Iterator[None]:
+    """Let Python not look for cycles meanwhile: a long list makes many values and no cycle, and looking costs a third."""
+    looked = gc.isenabled()
+    gc.disable()
+    try:
+        yield
+    finally:
+        if looked:
+            gc.enable()
 
 
 def _cell(row: Row, columns: Mapping[str, str], kind: str) -> str:
