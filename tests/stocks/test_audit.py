@@ -9,7 +9,9 @@ import pytest
 
 from crossplan.errors import Severity
 from crossplan.stocks import audit as rules
-from crossplan.stocks.audit import Finding, audit
+from crossplan.stocks.audit import FAMILIES, Finding, View, audit
+from crossplan.stocks.audit_codes import CODES
+from crossplan.stocks.audit_keeping import check_wanted_out_of_use
 from crossplan.stocks.shelf import read_stocks
 
 TODAY = dt.date(2026, 12, 1)
@@ -85,7 +87,7 @@ CASES = [
         id="a lethal twice",
     ),
     pytest.param(
-        "sterile", Severity.NOTE, "stock|genotype", ["A|sn[X2]"], "A", "female sterile: sn[X2]", ["A|sn[3]"],
+        "sterile", Severity.ERROR, "stock|genotype", ["A|sn[X2]"], "A", "female sterile: sn[X2]", ["A|sn[3]"],
         id="sterile",
     ),
     pytest.param(
@@ -147,6 +149,159 @@ CASES = [
         "no-place", Severity.NOTE, "stock|genotype|tray", ["A|w|T1", "B|y|"], "B", "1 stock(s) have no tray: B",
         ["A|w|", "B|y|"], id="no tray",
     ),
+    pytest.param(
+        "two-places", Severity.NOTE, "stock|genotype", ["A|w; UAS-Zap/CyO", "B|w;; UAS-Zap/TM3, Sb"], "A",
+        "on 2: A; on 3: B", ["A|w; UAS-Zap/CyO", "B|w; UAS-Zap/SM6a"], id="one name on two chromosomes",
+    ),
+    pytest.param(
+        "cannot-live", Severity.ERROR, "stock|genotype", ["A|w;; TM3, Sb/MKRS"], "A", "Sb", ["A|w;; TM3, Ser/MKRS"],
+        id="Sb from both balancers",
+    ),
+    pytest.param(
+        "cannot-live", Severity.ERROR, "stock|genotype", ["A|l(1)zap[1]"], "A", "l(1)zap", ["A|l(1)zap[1]/FM7c"],
+        id="a lethal of the X without a balancer",
+    ),
+    pytest.param(
+        "no-balancer", Severity.WARNING, "stock|genotype", ["A|w; l(2)ka[1]/l(2)kb[1]"], "A", "nothing stops exchange",
+        ["A|w; l(2)ka[1]/CyO"], id="two lethals without a balancer",
+    ),
+    pytest.param(
+        "not-fixed", Severity.WARNING, "stock|genotype", ["A|w; UAS-GFP@VK00018/+"], "A", "does not breed true",
+        ["A|w; UAS-GFP@VK00018", "B|w[1118]/w[1]; Sco/CyO"], id="an insertion over wild type",
+    ),
+    pytest.param(
+        "balancer-takes-over", Severity.NOTE, "stock|genotype", ["A|l(1)zap[1]/FM7a"], "A", "can replace",
+        ["A|l(1)zap[1]/FM7c"], id="a fertile X balancer",
+    ),
+    pytest.param(
+        "outside-cover", Severity.NOTE, "stock|genotype", ["A|w;; UAS-GFP@VK00031/TM3, Sb"], "A", "UAS-GFP@VK00031",
+        ["A|w;; UAS-GFP@VK00005/TM3, Sb"], id="an insertion outside TM3",
+    ),
+    pytest.param(
+        "partial-balancer", Severity.WARNING, "stock|genotype", ["A|w;; l(3)zap[1]/MKRS"], "A", "only a part",
+        ["A|w;; l(3)zap[1]/TM3, Sb"], id="MKRS as a full balancer",
+    ),
+    pytest.param(
+        "insertion-on-balancer", Severity.NOTE, "stock|genotype", ["A|w; Sco/CyO, UAS-Zap"], "A", "sits on CyO",
+        ["A|w; Sco/CyO, P{w[+mC]=ActGFP}JMR1", "B|w; UAS-Zap/CyO"], id="an insertion on the balancer",
+    ),
+    pytest.param(
+        "not-told-apart", Severity.WARNING, "stock|genotype", ["A|w; UAS-Zap@VK00018/UAS-Zop@VK00037"], "A",
+        "all give eye colour", ["A|w; UAS-Zap@VK00018/CyO; UAS-Zop@attP2/TM3, Sb"], id="two coloured insertions",
+    ),
+    pytest.param(
+        "unseen-marker", Severity.NOTE, "stock|genotype",
+        ["A|w; P{v[+t1.8] y[+t7.7]=UAS-zap.IR}VK00018/CyO"], "A", "A (UAS-zap.IR@VK00018",
+        ["A|y v; P{v[+t1.8] y[+t7.7]=UAS-zap.IR}VK00018/CyO"], id="vermilion sought on white eyes",
+    ),
+    pytest.param(
+        "near-symbol", Severity.WARNING, "stock|genotype",
+        ["A|w; UAS-Chrimson@VK00018", "B|w; UAS-Chrimson@VK00018/CyO", "C|w; UAS-Chrmison@VK00018"], "C",
+        "differ by one letter", ["A|w; UAS-Chrimson@VK00018", "B|w; UAS-Chrimson@VK00037/CyO", "C|w; AD-K12@attP40",
+        "D|w; AD-L12@attP40"], id="one construct, two spellings",
+    ),
+    pytest.param(
+        "repressor-of-split", Severity.WARNING, "stock|genotype",
+        ["A|w; AD-K12@attP40/CyO; tubP-GAL80ts@attP2/TM3, Sb"], "A", "does not stop",
+        ["A|w; kx-GAL4@attP40/CyO; tubP-GAL80ts@attP2/TM3, Sb"], id="GAL80 against a split driver",
+    ),
+    pytest.param(
+        "warmth-twice", Severity.WARNING, "stock|genotype",
+        ["A|w; UAS-dTrpA1@VK00018/CyO; tubP-GAL80ts@attP2/TM3, Sb"], "A", "both answer to warmth",
+        ["A|w; UAS-Kir2.1@VK00018/CyO; tubP-GAL80ts@attP2/TM3, Sb"], id="GAL80ts with TrpA1",
+    ),
+    pytest.param(
+        "lethal-together", Severity.WARNING, "stock|genotype",
+        ["A|w; elav-GAL4/CyO; UAS-CsChrimson@VK00005/TM6B, Tb"], "A", "is lethal",
+        ["A|w; kx-GAL4/CyO; UAS-CsChrimson@VK00005/TM6B, Tb"], id="CsChrimson with elav-GAL4",
+    ),
+    pytest.param(
+        "jumps", Severity.WARNING, "stock|genotype", ["A|w; UAS-Zap/CyO; Delta2-3/TM6B, Tb"], "A", "moves transposons",
+        ["A|w; Sco/CyO; Delta2-3/TM6B, Tb"], id="transposase beside a transposon",
+    ),
+    pytest.param(
+        "cuts", Severity.WARNING, "stock|genotype", ["A|w; vas-Cas9@VK00018/CyO; U6-zap-gRNA@attP2/TM6B, Tb"], "A",
+        "cut its chromosomes", ["A|w; vas-Cas9@VK00018/CyO; Sb/TM6B, Tb"], id="Cas9 beside its guide",
+    ),
+    pytest.param(
+        "balancer-drives", Severity.WARNING, "stock|genotype", ["A|w; UAS-Kir2.1@VK00018/CyO, Kr-GFP"], "A",
+        "made with a GAL4", ["A|w; UAS-Kir2.1@VK00018/CyO, ActGFP"], id="a GAL4 in the balancer",
+    ),
+    pytest.param(
+        "green-twice", Severity.NOTE, "stock|genotype", ["A|w; UAS-mCD8-GFP@VK00018/CyO, ActGFP"], "A", "glows green",
+        ["A|w; UAS-tdTomato@VK00018/CyO, ActGFP"], id="green twice",
+    ),
+    pytest.param(
+        "too-warm", Severity.WARNING, "stock|genotype|temp",
+        ["A|w; kx-GAL4@VK00018; tubP-GAL80ts@attP2|25"], "A", "kept at 25 C",
+        ["A|w; kx-GAL4@VK00018; tubP-GAL80ts@attP2|18", "B|w;; tubP-GAL80ts@attP2|25"], id="kept too warm",
+    ),
+    pytest.param(
+        "caution", Severity.NOTE, "stock|genotype", ["A|w[1118]/FM7c"], "A", "sn[X2]", ["A|w[1118]/FM0"],
+        id="the catalogue warns",
+    ),
+    pytest.param(
+        "half-missing", Severity.WARNING, "stock|genotype|notes", ["A|w; AD-K12@attP40|split line, walking"], "A",
+        "no DBD half", ["A|w; AD-K12@attP40; DBD-Q01@attP2|split line", "B|w; AD-K12@attP40|half of a pair"],
+        id="a split line with one half",
+    ),
+    pytest.param(
+        "sign-twice", Severity.NOTE, "stock|genotype", ["A|w; Sco/CyTb; TM2/TM6B, Tb"], "A", "tubby pupae",
+        ["A|w; Sco/CyO; TM2/TM6B, Tb"], id="two Tubby sources",
+    ),
+    pytest.param(
+        "unmarked-balancer", Severity.WARNING, "stock|genotype", ["A|w;; l(3)zap[1]/TM3-GFP"], "A",
+        "shows nothing on adult", ["A|w;; l(3)zap[1]/TM3, Sb"], id="a balancer without an adult marker",
+    ),
+    pytest.param(
+        "cold-sign", Severity.NOTE, "stock|genotype|temp", ["A|w; UAS-Zap/CyO|18"], "A", "unsure there",
+        ["A|w; UAS-Zap/CyO|25", "B|w; Sco/CyO|18", "C|w;; UAS-Zip/TM3, Sb|18"], id="Curly in the cold",
+    ),
+    pytest.param(
+        "looks-contradict", Severity.WARNING, "stock|genotype|notes", ["A|w[1118]; Sco/CyO|red eyes"], "A",
+        "the notes say 'red eyes'", ["A|w[1118]; UAS-Zap/CyO|orange eyes", "B|w; Sco/CyO|red eyes?"],
+        id="notes against the genotype",
+    ),
+    pytest.param(
+        "looks-contradict", Severity.WARNING, "stock|genotype|notes", ["A|w[1118]; UAS-Zap/+; +|curly wings"], "A",
+        "do not show it", ["A|w[1118]; UAS-Zap/CyO; +|curly wings"], id="a sign that nothing gives",
+    ),
+    pytest.param(
+        "lethal-not-written", Severity.WARNING, "stock|genotype|notes", ["A|w; UAS-Zap/CyO|homozygous lethal"], "A",
+        "no lethal", ["A|w; UAS-Zap, l(2)zap[1]/CyO|homozygous lethal"], id="a lethal in the notes only",
+    ),
+    pytest.param(
+        "near-name", Severity.WARNING, "stock|genotype", ["KO1|w", "K01|y"], "K01", "easily taken for 'KO1'",
+        ["K1|w", "K2|y", "AD-K12|w; Sco/CyO", "AD-K13|w; If/CyO"], id="names that look alike",
+    ),
+    pytest.param(
+        "near-name", Severity.WARNING, "stock|genotype", ["Ptarmigan|w", "Ptarmigen|y"], "Ptarmigen", "taken for",
+        ["Ptarmigan|w", "Plover|y"], id="names a letter apart",
+    ),
+    pytest.param(
+        "no-source", Severity.NOTE, "stock|genotype|source", ["A|w|made here", "B|y|"], "B", "1 stock does not say",
+        ["A|w|made here", "B|y|old"], id="no source",
+    ),
+    pytest.param(
+        "odd-temperature", Severity.WARNING, "stock|genotype|temp", ["A|w|8"], "A", "kept at 8 C", ["A|w|18"],
+        id="a temperature for no fly",
+    ),
+    pytest.param(
+        "place-twice", Severity.WARNING, "stock|genotype|tray|vial", ["A|w|T1|1", "B|y|T1|1"], "B", "where A stands",
+        ["A|w|T1|1", "B|y|T1|2"], id="two stocks at one place",
+    ),
+    pytest.param(
+        "quarantine", Severity.NOTE, "stock|genotype|status", ["A|w|quarantine"], "A", "in quarantine: A", ["A|w|ok"],
+        id="in quarantine",
+    ),
+    pytest.param(
+        "quarantine-tray", Severity.WARNING, "stock|genotype|tray|status", ["A|w|T1|quarantine", "B|y|T1|ok"], "A",
+        "beside stocks in use (B)", ["A|w|Q1|quarantine", "B|y|T1|ok"], id="a newcomer among the others",
+    ),
+    pytest.param(
+        "unwell", Severity.WARNING, "stock|genotype|status", ["A|w|sick"], "A", "calls it 'sick'", ["A|w|ok"],
+        id="a sick stock",
+    ),
 ]  # fmt: skip
 
 
@@ -182,25 +337,28 @@ def test_a_landing_site_that_nobody_knows_is_said(tmp_path: Path) -> None:
 
 
 def test_every_rule_of_the_module_is_asked() -> None:
-    written = {f for name, f in vars(rules).items() if name.startswith("check_")}
-    assert written == set(rules.RULES)
-    assert len(rules.RULES) == len(written)
+    files = {p.stem for p in Path(rules.__file__).parent.glob("audit_*.py")} - {"audit_codes"}
+    assert files == {family.__name__.rpartition(".")[2] for family in FAMILIES}
+    written = [f for family in FAMILIES for name, f in vars(family).items() if name.startswith("check_")]
+    assert sorted(written, key=id) == sorted(rules.RULES, key=id)
+    assert len(set(written)) == len(written)
 
 
 def test_every_rule_finds_something_in_one_of_the_cases(tmp_path: Path) -> None:
-    silent = set(rules.RULES)
+    silent = set(rules.RULES) - {check_wanted_out_of_use}
     facts = rules.default_catalogue()
     for case in CASES:
         _, _, head, faulty, *_ = case.values
         findings(tmp_path, faulty, head)  # type: ignore[arg-type]
         shelf = read_stocks(tmp_path / "stocks.csv")
-        silent -= {rule for rule in silent if any(True for _ in rule(shelf, TODAY, facts))}
+        silent -= {rule for rule in silent if any(True for _ in rule(View(shelf, TODAY, facts)))}
     assert silent == set()
 
 
 def test_a_sound_shelf_has_no_findings(tmp_path: Path) -> None:
     rows = ["A|w[1118]; Sco/CyO|2|2026-11-20|18|T1", "B|w[1118]; +; UAS-GFP@attP2|3|2026-11-25|25|T1"]
-    assert findings(tmp_path, rows, "stock|genotype|copies|last flip|temp|tray") == ()
+    found = findings(tmp_path, rows, "stock|genotype|copies|last flip|temp|tray")
+    assert {f.code for f in found} <= {"caution"}
 
 
 def test_stocks_out_of_use_are_not_judged(tmp_path: Path) -> None:
@@ -214,6 +372,45 @@ def test_errors_come_first_then_rows_in_order(tmp_path: Path) -> None:
     assert [(f.code, f.row) for f in found] == [
         ("unbalanced-lethal", 3), ("cannot-live", 5), ("single-copy", 2), ("single-copy", 4),
     ]  # fmt: skip
+
+
+def test_a_screen_makes_findings_graver(tmp_path: Path) -> None:
+    path = tmp_path / "stocks.csv"
+    rows = [
+        "A|w; AD-K1@attP40|1|",
+        "B|w; AD-K2@attP40|2|retired",
+        "C|w; AD-K3@attP40|2|dead",
+        "D|w; AD-K3@attP40/CyO|2|",
+    ]
+    path.write_text("\n".join(("stock|genotype|copies|status", *rows)) + "\n", encoding="utf-8")
+    wanted = {"AD-K1@attP40": ("t-1", "t-2"), "AD-K2@attP40": ("t-3",), "AD-K3@attP40": ("t-4",)}
+    found = audit(read_stocks(path), TODAY, wanted=wanted)
+    out = [(f.stock, f.severity) for f in found if f.code == "wanted-out-of-use"]
+    assert out == [("B", Severity.ERROR)]
+    assert "2 targets of the screen" in next(f.message for f in found if f.code == "single-copy")
+
+
+def test_an_open_chromosome_is_asked_once_for_each_element(tmp_path: Path) -> None:
+    found = findings(tmp_path, ["A|w; UAS-Zap", "B|y w; UAS-Zap", "C|w; UAS-Zop"])
+    asked = [f for f in found if f.code == "which-chromosome"]
+    assert [f.stocks for f in asked] == [("A", "B"), ("C",)]
+    assert "UAS-Zap" in asked[0].message
+
+
+def test_every_finding_says_why_and_what_to_do(tmp_path: Path) -> None:
+    for case in CASES:
+        code, _, head, faulty, *_ = case.values
+        for f in findings(tmp_path, faulty, head):  # type: ignore[arg-type]
+            assert f.why, code
+            assert f.suggestion, f
+            assert f.stock in f.stocks
+            assert f.row > 1
+
+
+def test_every_kind_of_finding_has_a_case() -> None:
+    cases = {case.values[0] for case in CASES}
+    elsewhere = {"encoding", "too-many-cells", "unknown-site", "wanted-out-of-use"}
+    assert set(CODES) - cases - elsewhere == set()
 
 
 # -- the demo shelf ----------------------------------------------------------------------------------------------
