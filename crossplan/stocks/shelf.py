@@ -266,5 +266,8 @@ def _genotype(row: Row, columns: Mapping[str, str]) -> str:
     """Return the genotype of a row, put together where each chromosome has a column of its own."""
     if "genotype" in columns:
         return _cell(row, columns, "genotype")
-    fields = [_cell(row, columns, c) or "+" for c in ("X", "2", "3", "4")]
+    written = [_cell(row, columns, c) for c in ("X", "2", "3", "4")]
+    if not any(written):
+        return ""
+    fields = [text or "+" for text in written]
     return "; ".join(fields if fields[3] != "+" else fields[:3])

@@ -56,12 +56,23 @@ def cell_text(value: object, number_format: str = "") -> str:
 def _xlsx(path: Path) -> dict[str, Grid]:
     import openpyxl
 
-    book = openpyxl.load_workbook(path, data_only=True)
-    return {sheet.title: _xlsx_grid(sheet) for sheet in book.worksheets}
+    book = openpyxl.load_workbook(path)
+    values: Any = None
+    grids = {}
+    for sheet in book.worksheets:
+        formulas = [(c.row, c.column) for row in sheet.iter_rows() for c in row if c.data_type == "f"]
+        if formulas and values is None:
+            values = openpyxl.load_workbook(path, data_only=True)
+        grids[sheet.title] = _xlsx_grid(sheet, {at: values[sheet.title].cell(*at).value for at in formulas})
+    return grids
 
 
-def _xlsx_grid(sheet: Any) -> Grid:
+def _xlsx_grid(sheet: Any, results: dict[tuple[int, int], object]) -> Grid:
+    """Return the cells of a sheet; a formula stands for its result, or for itself where none was saved."""
     grid = [[cell_text(c.value, c.number_format or "") for c in row] for row in sheet.iter_rows()]
+    for (row, column), result in results.items():
+        if result is not None:
+            grid[row - 1][column - 1] = cell_text(result, sheet.cell(row, column).number_format or "")
     for merged in sheet.merged_cells.ranges:
         _spread(grid, merged.min_row - 1, merged.max_row - 1, merged.min_col - 1)
     return grid

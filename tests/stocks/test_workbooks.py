@@ -140,3 +140,24 @@ def test_all_sheets_are_one_shelf(tmp_path: Path) -> None:
     assert shelf.stocks[3].name == "A (row 3)"
     (twice,) = [p for p in shelf.problems if p.code == "name-twice"]
     assert "sheet warm room" in twice.path
+
+
+def test_a_formula_without_a_saved_result_is_not_taken_for_wild_type(tmp_path: Path) -> None:
+    import openpyxl
+
+    book = openpyxl.Workbook()
+    sheet = book.active
+    assert sheet is not None
+    for row in (["stock", "genotype"], ["A", "=B9"], ["B", "w"]):
+        sheet.append(row)
+    book.save(tmp_path / "list.xlsx")
+    first, second = read_stocks(tmp_path / "list.xlsx").stocks
+    assert [p.code for p in first.reading.problems] == ["formula"]
+    assert second.reading.ok
+
+
+def test_a_row_without_any_chromosome_is_not_wild_type(tmp_path: Path) -> None:
+    (tmp_path / "list.csv").write_text("stock,X,2,3\nA,w,,\nB,,,\n")
+    first, second = read_stocks(tmp_path / "list.csv").stocks
+    assert first.reading.canonical == "w; +; +"
+    assert [p.code for p in second.reading.problems] == ["empty"]
