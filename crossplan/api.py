@@ -266,14 +266,16 @@ def reading_report_json(report: ReadingReport) -> dict[str, Any]:
 
 
 def write_reading_report(report: ReadingReport, place: Path, *, all_rows: bool = False) -> Path:
-    """Write the rows that need an eye as a CSV table, to correct the list by; whole or not at all.
+    """Write the rows that need an eye as a table (XLSX by its ending, else CSV), to correct the list by.
 
     Raises:
         OutputError: the file cannot be written.
     """
-    from crossplan.stocks.reading_report import report_table
+    from crossplan.stocks.reading_report import report_table, report_workbook
 
-    return _write_text(place, report_table(report, all_rows), protect=report.shelf.path)
+    as_workbook = place.suffix.lower() == ".xlsx"
+    content = report_workbook(report, all_rows) if as_workbook else report_table(report, all_rows).encode()
+    return _write_file(place, content, protect=report.shelf.path)
 
 
 def remember_settings(settings: ListSettings, place: Path) -> Path:
@@ -284,16 +286,16 @@ def remember_settings(settings: ListSettings, place: Path) -> Path:
     """
     from crossplan.stocks.settings import settings_text
 
-    return _write_text(place, settings_text(settings))
+    return _write_file(place, settings_text(settings).encode())
 
 
-def _write_text(place: Path, text: str, protect: str = "") -> Path:
+def _write_file(place: Path, content: bytes, protect: str = "") -> Path:
     from crossplan.bench.plan_folder import write_files
 
     if protect and place.resolve() == Path(protect).resolve():
         raise OutputError(f"{place} is the stock list itself, which is never written to", "give another name")
     try:
-        write_files(place.parent, {place.name: text.encode()})
+        write_files(place.parent, {place.name: content})
     except OSError as error:
         raise OutputError(
             f"cannot write {place}: {error.strerror or error}", "check the folder and your rights"

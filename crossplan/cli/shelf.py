@@ -36,7 +36,9 @@ def shelf(
     ] = None,
     settings: Annotated[Path | None, typer.Option(help="How to read the list, as remembered.")] = None,
     remember: Annotated[Path | None, typer.Option(help="Write how the list was read into this file.")] = None,
-    report: Annotated[Path | None, typer.Option(help="Write the rows that need an eye into this CSV file.")] = None,
+    report: Annotated[
+        Path | None, typer.Option(help="Write the rows that need an eye into this file (CSV or XLSX).")
+    ] = None,
     all_rows: Annotated[bool, typer.Option("--all-rows", help="Write all rows into it.")] = False,
     lab_file: Annotated[Path | None, typer.Option("--lab", help="The lab's own catalogue entries (TOML).")] = None,
     as_json: Annotated[bool, typer.Option("--json", help="Print one JSON document.")] = False,

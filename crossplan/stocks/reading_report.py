@@ -87,18 +87,30 @@ def _in_order(rows: Iterable[int]) -> tuple[int, ...]:
 
 
 def report_table(report: ReadingReport, all_rows: bool = False) -> str:
-    """Return the report as a CSV table: the rows that need an eye, or all of them.
-
-    A cell that a spreadsheet would take for a formula begins with a blank.
-    """
+    """Return the report as CSV: the rows that need an eye, or all of them."""
     text = io.StringIO()
     writer = csv.writer(text, lineterminator="\n")
     writer.writerow(COLUMNS)
+    writer.writerows(_rows(report, all_rows))
+    return text.getvalue()
+
+
+def report_workbook(report: ReadingReport, all_rows: bool = False) -> bytes:
+    """Return the same table as an XLSX workbook."""
+    import pandas
+
+    content = io.BytesIO()
+    table = pandas.DataFrame(list(_rows(report, all_rows)), columns=list(COLUMNS))
+    table.to_excel(content, index=False, sheet_name="reading", engine="openpyxl")
+    return content.getvalue()
+
+
+def _rows(report: ReadingReport, all_rows: bool) -> Iterator[tuple[str, ...]]:
+    """Yield the rows; a cell that a spreadsheet would take for a formula begins with a blank."""
     for stock in report.shelf.stocks:
         if all_rows or outcome_of(stock.reading) != "read":
             for line in _lines(stock):
-                writer.writerow([f" {c}" if c.startswith(_FORMULA_SIGNS) else c for c in line])
-    return text.getvalue()
+                yield tuple(f" {c}" if c.startswith(_FORMULA_SIGNS) else c for c in line)
 
 
 def _lines(stock: Stock) -> Iterator[tuple[str, ...]]:

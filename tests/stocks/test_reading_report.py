@@ -4,7 +4,7 @@ import csv
 import io
 from pathlib import Path
 
-from crossplan.stocks.reading_report import ReadingReport, reading_report, report_table
+from crossplan.stocks.reading_report import ReadingReport, reading_report, report_table, report_workbook
 from crossplan.stocks.shelf import read_stocks
 
 ROWS = """stock|genotype
@@ -51,3 +51,13 @@ def test_no_cell_begins_like_a_formula(tmp_path: Path) -> None:
     rows = list(csv.reader(io.StringIO(report_table(report_of(tmp_path), all_rows=True))))
     assert {r[2] for r in rows[1:]} == set("ABCDEFG")
     assert not any(cell[:1] in ("=", "+", "-", "@") for row in rows for cell in row if cell)
+
+
+def test_the_workbook_holds_the_same_table(tmp_path: Path) -> None:
+    import openpyxl
+
+    report = report_of(tmp_path)
+    sheet = openpyxl.load_workbook(io.BytesIO(report_workbook(report))).active
+    assert sheet is not None
+    as_text = [[str(v or "") for v in row] for row in sheet.iter_rows(values_only=True)]
+    assert as_text == list(csv.reader(io.StringIO(report_table(report))))
