@@ -8,6 +8,8 @@ from __future__ import annotations
 
 import csv
 import io
+import re
+import zipfile
 from collections.abc import Iterable, Iterator
 from dataclasses import dataclass
 from typing import Literal
@@ -102,6 +104,18 @@ def report_workbook(report: ReadingReport, all_rows: bool = False) -> bytes:
     content = io.BytesIO()
     table = pandas.DataFrame(list(_rows(report, all_rows)), columns=list(COLUMNS))
     table.to_excel(content, index=False, sheet_name="reading", engine="openpyxl")
+    return _without_clock(content.getvalue())
+
+
+def _without_clock(workbook: bytes) -> bytes:
+    """Return a workbook without the hour at which it was made, so that the same table is the same bytes."""
+    content = io.BytesIO()
+    with zipfile.ZipFile(io.BytesIO(workbook)) as old, zipfile.ZipFile(content, "w", zipfile.ZIP_DEFLATED) as new:
+        for name in old.namelist():
+            part = old.read(name)
+            if name == "docProps/core.xml":
+                part = re.sub(rb"\d{4}-\d\d-\d\dT\d\d:\d\d:\d\dZ", b"1980-01-01T00:00:00Z", part)
+            new.writestr(zipfile.ZipInfo(name), part, zipfile.ZIP_DEFLATED)
     return content.getvalue()
 
 

@@ -2,7 +2,10 @@ from __future__ import annotations
 
 import csv
 import io
+import zipfile
 from pathlib import Path
+
+import pytest
 
 from crossplan.stocks.reading_report import ReadingReport, reading_report, report_table, report_workbook
 from crossplan.stocks.shelf import read_stocks
@@ -61,3 +64,11 @@ def test_the_workbook_holds_the_same_table(tmp_path: Path) -> None:
     assert sheet is not None
     as_text = [[str(v or "") for v in row] for row in sheet.iter_rows(values_only=True)]
     assert as_text == list(csv.reader(io.StringIO(report_table(report))))
+
+
+def test_the_same_table_is_the_same_bytes(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
+    report = report_of(tmp_path)
+    first = report_workbook(report)
+    monkeypatch.setattr("time.localtime", lambda *_: (2031, 5, 5, 5, 5, 5, 0, 1, 0))
+    assert report_workbook(report) == first
+    assert b"1980-01-01T00:00:00Z" in zipfile.ZipFile(io.BytesIO(first)).read("docProps/core.xml")
