@@ -80,9 +80,9 @@ def short_form(reading: Reading) -> str:
     return reading.canonical
 
 
-def reading_rows(reading: Reading) -> list[tuple[str, str, str, str, str]]:
+def reading_rows(reading: Reading, lab_file: Path | None = None) -> list[tuple[str, str, str, str, str]]:
     """Return a row for each element understood: chromosome, homologue, symbol, kind, source of its facts."""
-    catalogue = load_catalogue(None)
+    catalogue = load_catalogue(lab_file)
     fly = reading.female or reading.male
     if fly is None:
         return [

@@ -38,14 +38,14 @@ def read(
         print_json({"readings": [api.reading_json(r) for r in readings]})
     else:
         for reading in readings:
-            _show(reading, len(readings) > 20)
+            _show(reading, len(readings) > 20, lab_file)
         if len(readings) > 1:
             _summary(readings)
     if any(not r.ok or r.is_open for r in readings):
         raise typer.Exit(NEEDS_A_PERSON)
 
 
-def _show(reading: Reading, only_problems: bool) -> None:
+def _show(reading: Reading, only_problems: bool, lab_file: Path | None) -> None:
     from rich.text import Text
 
     from crossplan import api
@@ -55,7 +55,7 @@ def _show(reading: Reading, only_problems: bool) -> None:
         return
     out.print(Text(reading.text if len(reading.text) <= 300 else reading.text[:297] + "...", style="bold"))
     if reading.ok:
-        _chromosomes(reading)
+        _chromosomes(reading, lab_file)
     else:
         out.print("  not understood", style="bold red")
     for problem in reading.problems:
@@ -67,7 +67,7 @@ def _show(reading: Reading, only_problems: bool) -> None:
         out.print(Text(f"  written short: {api.short_form(reading)}", style="dim"))
 
 
-def _chromosomes(reading: Reading) -> None:
+def _chromosomes(reading: Reading, lab_file: Path | None) -> None:
     from rich.table import Table
 
     from crossplan import api
@@ -75,7 +75,7 @@ def _chromosomes(reading: Reading) -> None:
     table = Table(box=None, pad_edge=True, header_style="bold", padding=(0, 2, 0, 2))
     for heading in ("chromosome", "homologue", "carries", "what it is"):
         table.add_column(heading, overflow="fold")
-    rows = api.reading_rows(reading)
+    rows = api.reading_rows(reading, lab_file)
     for row in rows:
         table.add_row(*row[:4])
     console().print(table)

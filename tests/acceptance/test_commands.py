@@ -218,3 +218,13 @@ def test_a_list_with_headings_of_its_own_is_read_as_remembered(tmp_path: Path) -
     assert stocks.read_text().startswith("Line no.")
     audited = document("audit", "--stocks", stocks, "--settings", how)
     assert audited["stocks"] == 2
+
+
+def test_the_lab_settles_a_line_and_is_named_as_the_source(tmp_path: Path) -> None:
+    lab = tmp_path / "lab.toml"
+    lab.write_text('[[element]]\nname = "kx-GAL4"\nchromosome = "2"\n')
+    assert run("read", "w; kx-GAL4").returncode == 1
+    done = run("read", "w; kx-GAL4", "--lab", lab)
+    assert done.returncode == 0
+    assert "written short: w; kx-GAL4; +" in done.stdout
+    assert "the lab's own catalogue file" in done.stdout
