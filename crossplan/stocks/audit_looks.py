@@ -9,7 +9,8 @@ from crossplan.errors import Severity
 from crossplan.genetics.appearance import WHITE_EYES, Means, Observer
 from crossplan.genetics.chromosome import PAIRS
 from crossplan.genetics.fly import Fly
-from crossplan.genetics.survival import cause_of_death, lethal_groups
+from crossplan.genetics.survival import lethal_groups
+from crossplan.stocks.checklist import viable_homozygotes
 from crossplan.stocks.finding import Finding, View, found_among, found_in, listed, number_of, opposites
 from crossplan.stocks.shelf import Stock
 
@@ -47,14 +48,13 @@ def check_unmarked_balancer(view: View) -> Iterator[Finding]:
     """A balancer that shows nothing on adults: flies with it cannot be picked."""
     observer = Observer(view.catalogue, Means())
     unmarked: dict[str, list[Stock]] = {}
-    for stock, fly in view.flies:
-        for _, one, other in opposites(fly):
-            balancer = other.balancer
-            if balancer is None or one.balancer is not None:
-                continue
-            signs = {s for e in other.elements for s in e.traits.dominant}
-            if not any((known := view.catalogue.signs.get(s)) is None or observer.means.uses(known) for s in signs):
-                unmarked.setdefault(balancer.symbol, []).append(stock)
+    for stock, _, _, one, other in view.facing:
+        balancer = other.balancer
+        if balancer is None or one.balancer is not None:
+            continue
+        signs = {s for e in other.elements for s in e.traits.dominant}
+        if not any((known := view.catalogue.signs.get(s)) is None or observer.means.uses(known) for s in signs):
+            unmarked.setdefault(balancer.symbol, []).append(stock)
     for symbol, stocks in sorted(unmarked.items()):
         yield found_among(
             stocks, "unmarked-balancer", Severity.WARNING,
@@ -137,21 +137,9 @@ def _looks(stock: Stock, view: View) -> tuple[frozenset[str], frozenset[str]]:
     for fly in (stock.reading.female, stock.reading.male):
         if fly is None:
             continue
-        for kind in (fly, *_homozygous_kinds(fly)):
+        for kind in (fly, *viable_homozygotes(fly)):
             kinds.append(view.observer.signs(kind))
     return frozenset().union(*kinds), frozenset.intersection(*kinds)
-
-
-def _homozygous_kinds(fly: Fly) -> Iterator[Fly]:
-    """Yield the flies of a stock that are homozygous for one homologue of each pair, where they live."""
-    for i, (one, other) in enumerate(fly.pairs):
-        if one == other or one.is_y or other.is_y or one.is_compound or other.is_compound:
-            continue
-        for homologue in (one, other):
-            pairs = tuple((homologue, homologue) if k == i else p for k, p in enumerate(fly.pairs))
-            kind = Fly(fly.sex, (pairs[0], pairs[1], pairs[2], pairs[3]))
-            if cause_of_death(kind) is None:
-                yield kind
 
 
 def check_notes_say_lethal(view: View) -> Iterator[Finding]:

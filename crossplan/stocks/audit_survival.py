@@ -8,8 +8,8 @@ from crossplan.errors import Severity
 from crossplan.genetics.chromosome import PAIRS
 from crossplan.genetics.element import Element, Kind
 from crossplan.genetics.fly import Fly, Homologue, Pair
-from crossplan.genetics.survival import cause_of_death, exposed_lethals, lethal_groups, sterile_because
-from crossplan.stocks.finding import Finding, View, found_among, found_in, listed, number_of, opposites, words_of
+from crossplan.genetics.survival import exposed_lethals, lethal_groups, sterile_because
+from crossplan.stocks.finding import Finding, View, found_among, found_in, listed, number_of, words_of
 from crossplan.stocks.shelf import Stock
 
 #: how far in cM an element must lie outside the stretch that a balancer holds before it is said: places worked out from
@@ -21,11 +21,10 @@ PARTIAL_CM = 30.0
 
 def check_dead(view: View) -> Iterator[Finding]:
     """A genotype that cannot live: one balancer twice, two balancers or two lethals that die together."""
-    for stock in view.usable:
-        flies = [f for f in (stock.reading.female, stock.reading.male) if f is not None]
-        cause = next((c for f in flies if (c := cause_of_death(f))), None)
+    for stock, cause, _ in view.lives:
         if cause is None:
             continue
+        flies = [f for f in (stock.reading.female, stock.reading.male) if f is not None]
         twice = next((b.symbol for f in flies for a, c in f.pairs if a == c and (b := a.balancer) is not None), None)
         code = "balancer-twice" if twice else "cannot-live"
         yield found_in(stock, code, Severity.ERROR, f"flies as written die: {cause}",
@@ -34,31 +33,26 @@ def check_dead(view: View) -> Iterator[Finding]:
 
 def check_sterile(view: View) -> Iterator[Finding]:
     """Flies as written that are sterile: the stock cannot be kept by them."""
-    for stock in view.usable:
-        flies = [f for f in (stock.reading.female, stock.reading.male) if f is not None]
-        if any(cause_of_death(f) for f in flies):
-            continue
-        why = next((w for f in flies if (w := sterile_because(f))), None)
-        if why:
+    for stock, dead, why in view.lives:
+        if why and not dead:
             yield found_in(stock, "sterile", Severity.ERROR, f"flies as written are sterile ({why})",
                            "write the balancer or the fertile homologue opposite that keeps the stock")  # fmt: skip
 
 
 def check_unbalanced_lethal(view: View) -> Iterator[Finding]:
     """A recessive lethal opposite a homologue that does not balance it: it is lost when nobody selects."""
-    for stock, fly in view.flies:
-        for name, carrier, opposite in opposites(fly):
-            groups = lethal_groups(carrier)
-            if not groups or carrier.balancer is not None or opposite.balancer is not None:
-                continue
-            if lethal_groups(opposite) - groups or exposed_lethals((carrier, opposite), name, fly.sex):
-                continue
-            yield found_in(
-                stock, "unbalanced-lethal", Severity.ERROR,
-                f"{words_of(carrier)} is lethal with itself and stands over {words_of(opposite)}:"
-                " nothing keeps it in the stock",
-                f"cross to a balancer of chromosome {name} and keep the balanced flies",
-            )  # fmt: skip
+    for stock, fly, name, carrier, opposite in view.facing:
+        groups = lethal_groups(carrier)
+        if not groups or carrier.balancer is not None or opposite.balancer is not None:
+            continue
+        if lethal_groups(opposite) - groups or exposed_lethals((carrier, opposite), name, fly.sex):
+            continue
+        yield found_in(
+            stock, "unbalanced-lethal", Severity.ERROR,
+            f"{words_of(carrier)} is lethal with itself and stands over {words_of(opposite)}:"
+            " nothing keeps it in the stock",
+            f"cross to a balancer of chromosome {name} and keep the balanced flies",
+        )  # fmt: skip
 
 
 def check_no_balancer(view: View) -> Iterator[Finding]:
@@ -108,10 +102,9 @@ def _drifts(one: Homologue, other: Homologue) -> bool:
 def check_floating_balancer(view: View) -> Iterator[Finding]:
     """Balancers over a homologue that can be homozygous: lost unless somebody selects them. Said once for the list."""
     floating: list[tuple[Stock, str]] = []
-    for stock, fly in view.flies:
-        for _, one, other in opposites(fly):
-            if one.balancer is None and other.balancer is not None and not lethal_groups(one) and one.elements:
-                floating.append((stock, f"{stock.name} ({other.balancer.symbol})"))
+    for stock, _, _, one, other in view.facing:
+        if one.balancer is None and other.balancer is not None and not lethal_groups(one) and one.elements:
+            floating.append((stock, f"{stock.name} ({other.balancer.symbol})"))
     if floating:
         yield found_among(
             [stock for stock, _ in floating], "floating-balancer", Severity.NOTE,
@@ -124,19 +117,18 @@ def check_floating_balancer(view: View) -> Iterator[Finding]:
 
 def check_balancer_takes_over(view: View) -> Iterator[Finding]:
     """A lethal over a balancer whose own homozygotes live and breed: the balancer can replace it."""
-    for stock, fly in view.flies:
-        for name, carrier, opposite in opposites(fly):
-            balancer = opposite.balancer
-            if balancer is None or not lethal_groups(carrier) or carrier.balancer is not None:
-                continue
-            if lethal_groups(opposite) or _sterile_twice(opposite, name):
-                continue
-            yield found_in(
-                stock, "balancer-takes-over", Severity.NOTE,
-                f"{words_of(opposite)} lives and breeds when homozygous, so it can replace {words_of(carrier)}",
-                f"at each transfer take mothers with one copy of {balancer.symbol}; or change to a balancer that is lethal"
-                " or sterile when homozygous",
-            )  # fmt: skip
+    for stock, _, name, carrier, opposite in view.facing:
+        balancer = opposite.balancer
+        if balancer is None or not lethal_groups(carrier) or carrier.balancer is not None:
+            continue
+        if lethal_groups(opposite) or _sterile_twice(opposite, name):
+            continue
+        yield found_in(
+            stock, "balancer-takes-over", Severity.NOTE,
+            f"{words_of(opposite)} lives and breeds when homozygous, so it can replace {words_of(carrier)}",
+            f"at each transfer take mothers with one copy of {balancer.symbol}; or change to a balancer that is lethal"
+            " or sterile when homozygous",
+        )  # fmt: skip
 
 
 def _sterile_twice(homologue: Homologue, chromosome: str) -> bool:
@@ -148,18 +140,17 @@ def _sterile_twice(homologue: Homologue, chromosome: str) -> bool:
 def check_cover(view: View) -> Iterator[Finding]:
     """What lies outside the stretch that its balancer holds: it can be exchanged onto the balancer, or be lost."""
     loose: dict[str, list[tuple[Stock, Element]]] = {}
-    for stock, fly in view.flies:
-        for _, carrier, opposite in opposites(fly):
-            balancer = opposite.balancer
-            if balancer is None or carrier.balancer is not None or not balancer.traits.cover:
+    for stock, _, _, carrier, opposite in view.facing:
+        balancer = opposite.balancer
+        if balancer is None or carrier.balancer is not None or not balancer.traits.cover:
+            continue
+        for element in carrier.elements:
+            if not _outside(element, balancer):
                 continue
-            for element in carrier.elements:
-                if not _outside(element, balancer):
-                    continue
-                if element.traits.lethal:
-                    yield _lethal_outside(stock, element, balancer)
-                elif element.kind is Kind.INSERTION:
-                    loose.setdefault(balancer.symbol, []).append((stock, element))
+            if element.traits.lethal:
+                yield _lethal_outside(stock, element, balancer)
+            elif element.kind is Kind.INSERTION:
+                loose.setdefault(balancer.symbol, []).append((stock, element))
     for symbol, cases in sorted(loose.items()):
         told = listed(f"{stock.name} ({element.symbol})" for stock, element in cases)
         yield found_among(
@@ -186,17 +177,16 @@ def _outside(element: Element, balancer: Element) -> bool:
 
 def check_partial_balancer(view: View) -> Iterator[Finding]:
     """Something kept over a balancer that holds only a part of the chromosome, at a place that is not known."""
-    for stock, fly in view.flies:
-        for name, carrier, opposite in opposites(fly):
-            balancer = opposite.balancer
-            if balancer is None or carrier.balancer is not None or not balancer.traits.cover:
-                continue
-            held = sum(c.end - c.start for c in balancer.traits.cover)
-            unplaced = [e for e in carrier.elements if e.position_cM is None and e.traits.lethal]
-            if held < PARTIAL_CM and unplaced:
-                yield found_in(
-                    stock, "partial-balancer", Severity.WARNING,
-                    f"{balancer.symbol} holds only a part of chromosome {name}, and where"
-                    f" {' '.join(e.symbol for e in unplaced)} lies is not known",
-                    "move it over a full balancer",
-                )  # fmt: skip
+    for stock, _, name, carrier, opposite in view.facing:
+        balancer = opposite.balancer
+        if balancer is None or carrier.balancer is not None or not balancer.traits.cover:
+            continue
+        held = sum(c.end - c.start for c in balancer.traits.cover)
+        unplaced = [e for e in carrier.elements if e.position_cM is None and e.traits.lethal]
+        if held < PARTIAL_CM and unplaced:
+            yield found_in(
+                stock, "partial-balancer", Severity.WARNING,
+                f"{balancer.symbol} holds only a part of chromosome {name}, and where"
+                f" {' '.join(e.symbol for e in unplaced)} lies is not known",
+                "move it over a full balancer",
+            )  # fmt: skip

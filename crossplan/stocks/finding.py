@@ -12,6 +12,7 @@ from crossplan.genetics.appearance import Means, Observer
 from crossplan.genetics.catalogue import Catalogue
 from crossplan.genetics.chromosome import PAIRS
 from crossplan.genetics.fly import Fly, Homologue
+from crossplan.genetics.survival import cause_of_death, sterile_because
 from crossplan.stocks.shelf import Shelf, Stock
 
 #: a finding that concerns many stocks names so many of them in its message (all are in `stocks`)
@@ -70,6 +71,21 @@ class View:
         """Each usable stock with its female, or its male where it has no female."""
         both = ((s, s.reading.female or s.reading.male) for s in self.usable)
         return tuple((s, fly) for s, fly in both if fly is not None)
+
+    @cached_property
+    def facing(self) -> tuple[tuple[Stock, Fly, str, Homologue, Homologue], ...]:
+        """Every homologue that faces a different one: stock, fly, chromosome, homologue, the homologue opposite."""
+        return tuple((stock, fly, *pair) for stock, fly in self.flies for pair in opposites(fly))
+
+    @cached_property
+    def lives(self) -> tuple[tuple[Stock, str | None, str | None], ...]:
+        """Each usable stock with why its flies as written die, and why they are sterile; None where they are not."""
+        told = []
+        for stock in self.usable:
+            flies = [f for f in (stock.reading.female, stock.reading.male) if f is not None]
+            dead = next((c for f in flies if (c := cause_of_death(f))), None)
+            told.append((stock, dead, dead or next((w for f in flies if (w := sterile_because(f))), None)))
+        return tuple(told)
 
     @cached_property
     def observer(self) -> Observer:
