@@ -7,13 +7,13 @@ from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from typing import Protocol
 
-from crossplan.bench.pdf_page import ASCENT, MM_PER_POINT, Pages, line_height
+from crossplan.bench.pdf_page import ASCENT, MM_PER_POINT, Line, Pages, line_height
 
 MARGIN = 14.0
 FOOT = 10.0
 #: Edge of a box to tick, and height and width of a cell to write a number in, in mm.
 TICK = 3.6
-CELL_HEIGHT = 6.5
+CELL_HEIGHT = 6.0
 CELL_WIDTH = 13.0
 
 
@@ -73,6 +73,11 @@ class Ticks:
             x += takes
         return places
 
+    def span(self, pages: Pages) -> float:
+        """Return the width in mm of all of it in one row."""
+        lead = pages.width_of(f"{self.lead}  ", self.size) if self.lead else 0.0
+        return lead + sum(TICK + 5.0 + pages.width_of(label, self.size) for label in self.labels)
+
     def height(self, pages: Pages, width: float) -> float:
         return self._places(pages, width)[-1][1] + TICK + 1.6 if self.labels else 0.0
 
@@ -86,38 +91,41 @@ class Ticks:
 
 
 @dataclass(frozen=True, slots=True)
-class Counts:
-    """Empty cells to write numbers in: one column for each of `columns`, one row for each of `rows`."""
+class Blanks:
+    """Empty cells to write a number in, side by side, each with its label in front."""
 
-    rows: tuple[str, ...]
-    columns: tuple[str, ...]
-    size: float = 8.0
+    labels: tuple[str, ...]
+    lead: str = ""
+    size: float = 9.0
 
-    def _stub(self, pages: Pages) -> float:
-        return max(pages.width_of(row, self.size) for row in self.rows) + 2.0
+    def _places(self, pages: Pages, width: float) -> list[tuple[float, float]]:
+        places = []
+        x = start = pages.width_of(f"{self.lead}  ", self.size, bold=True) if self.lead else 0.0
+        y = 0.0
+        for label in self.labels:
+            takes = pages.width_of(label, self.size) + 1.5 + CELL_WIDTH + 4.0
+            if x + takes - 4.0 > width and x > start:
+                x, y = start, y + CELL_HEIGHT + 1.0
+            places.append((x, y))
+            x += takes
+        return places
 
-    def _blocks(self, pages: Pages, width: float) -> list[tuple[str, ...]]:
-        most = max(1, int((width - self._stub(pages)) / CELL_WIDTH))
-        return [self.columns[i : i + most] for i in range(0, len(self.columns), most)]
-
-    def _block_height(self) -> float:
-        return line_height(self.size) + CELL_HEIGHT * len(self.rows) + 1.5
+    def span(self, pages: Pages) -> float:
+        """Return the width in mm of all of it in one row."""
+        lead = pages.width_of(f"{self.lead}  ", self.size, bold=True) if self.lead else 0.0
+        return lead + sum(pages.width_of(label, self.size) + 5.5 + CELL_WIDTH for label in self.labels)
 
     def height(self, pages: Pages, width: float) -> float:
-        return len(self._blocks(pages, width)) * self._block_height()
+        return self._places(pages, width)[-1][1] + CELL_HEIGHT + 0.6 if self.labels else 0.0
 
     def draw(self, pages: Pages, x: float, y: float, width: float) -> None:
-        stub = self._stub(pages)
-        for block in self._blocks(pages, width):
-            top = y + line_height(self.size)
-            for at, column in enumerate(block):
-                left = x + stub + at * CELL_WIDTH
-                pages.text(left + CELL_WIDTH / 2, top - 0.9, column, self.size, align="middle")
-                for row in range(len(self.rows)):
-                    pages.box(left, top + row * CELL_HEIGHT, CELL_WIDTH, CELL_HEIGHT, 0.15)
-            for row, name in enumerate(self.rows):
-                pages.text(x, top + (row + 0.65) * CELL_HEIGHT, name, self.size)
-            y += self._block_height()
+        base = 0.4 + 0.66 * CELL_HEIGHT
+        if self.lead:
+            pages.text(x, y + base, self.lead, self.size, bold=True)
+        for label, (dx, dy) in zip(self.labels, self._places(pages, width), strict=True):
+            pages.text(x + dx, y + dy + base, label, self.size)
+            left = x + dx + pages.width_of(label, self.size) + 1.5
+            pages.box(left, y + dy + 0.4, CELL_WIDTH, CELL_HEIGHT, 0.15)
 
 
 @dataclass(frozen=True, slots=True)
@@ -150,29 +158,122 @@ class Gap:
 
 
 @dataclass(frozen=True, slots=True)
-class Job:
-    """A box to tick with a heading beside it, and pieces below; a thin line closes it."""
+class Stack:
+    """Pieces that stay on one page, below each other."""
 
-    heading: str
     pieces: tuple[Piece, ...]
-    size: float = 12.0
-    indent: float = 8.0
 
     def height(self, pages: Pages, width: float) -> float:
-        inner = sum(piece.height(pages, width - self.indent) for piece in self.pieces)
-        return self._heading_height(pages, width) + inner + 2.6
-
-    def _heading_height(self, pages: Pages, width: float) -> float:
-        return len(pages.wrap(self.heading, self.size, width - self.indent, bold=True)) * line_height(self.size)
+        return sum(piece.height(pages, width) for piece in self.pieces)
 
     def draw(self, pages: Pages, x: float, y: float, width: float) -> None:
-        pages.box(x + 0.5, y + 0.7, 4.6, 4.6, 0.35)
-        lines = pages.wrap(self.heading, self.size, width - self.indent, bold=True)
-        at = pages.lines(x + self.indent, y + 0.5, lines, self.size, bold=True)
         for piece in self.pieces:
+            piece.draw(pages, x, y, width)
+            y += piece.height(pages, width)
+
+
+class Row(Piece, Protocol):
+    """A piece that can stand beside others in one row."""
+
+    def span(self, pages: Pages) -> float:
+        """Return the width in mm of all of it in one row."""
+        ...
+
+
+@dataclass(frozen=True, slots=True)
+class Side:
+    """Two rows side by side, below each other where there is no room for that."""
+
+    left: Row
+    right: Row
+
+    def span(self, pages: Pages) -> float:
+        """Return the width in mm of both in one row."""
+        return self.left.span(pages) + self.right.span(pages)
+
+    def _fits(self, pages: Pages, width: float) -> bool:
+        return self.span(pages) <= width + 1e-6
+
+    def height(self, pages: Pages, width: float) -> float:
+        heights = (self.left.height(pages, width), self.right.height(pages, width))
+        return max(heights) if self._fits(pages, width) else sum(heights)
+
+    def draw(self, pages: Pages, x: float, y: float, width: float) -> None:
+        lower, upper = self.right.height(pages, width), self.left.height(pages, width)
+        self.left.draw(pages, x, y + max(0.0, lower - upper) / 2 if self._fits(pages, width) else y, width)
+        if self._fits(pages, width):
+            self.right.draw(pages, x + self.left.span(pages), y, width - self.left.span(pages))
+        else:
+            self.right.draw(pages, x, y + upper, width)
+
+
+@dataclass(frozen=True, slots=True)
+class Job:
+    """A box to tick with a heading beside it, `about` in ordinary type after it, `who` at the right, and pieces
+    below, the first of them (`beside`) on the line of the heading if it fits; a thin line closes it."""
+
+    heading: str
+    pieces: tuple[Piece, ...] = ()
+    about: str = ""
+    who: str = ""
+    beside: Row | None = None
+    size: float = 11.0
+    indent: float = 7.5
+
+    def height(self, pages: Pages, width: float) -> float:
+        inner = sum(piece.height(pages, width - self.indent) for piece in self._below(pages, width))
+        return self._top_height(pages, width) + inner + 1.8
+
+    def _room(self, pages: Pages, width: float) -> float:
+        return width - self.indent - (pages.width_of(self.who, 8.5) + 2.0 if self.who else 0.0)
+
+    def _used(self, pages: Pages) -> float:
+        """Width of heading and `about` on one line."""
+        heading = pages.width_of(f"{self.heading}  ", self.size, bold=True)
+        return heading + (pages.width_of(f"{self.about}   ", 9.0) if self.about else 0.0)
+
+    def _about_beside(self, pages: Pages, width: float) -> bool:
+        return self._used(pages) <= self._room(pages, width)
+
+    def _row_beside(self, pages: Pages, width: float) -> bool:
+        return self.beside is not None and self._used(pages) + self.beside.span(pages) <= self._room(pages, width)
+
+    def _below(self, pages: Pages, width: float) -> tuple[Piece, ...]:
+        lower = () if self.beside is None or self._row_beside(pages, width) else (self.beside,)
+        about = () if self._about_beside(pages, width) else (Words(self.about),)
+        return (*about, *lower, *self.pieces)
+
+    def _headings(self, pages: Pages, width: float) -> list[Line]:
+        return pages.wrap(self.heading, self.size, self._room(pages, width), bold=True)
+
+    def _top_height(self, pages: Pages, width: float) -> float:
+        own = len(self._headings(pages, width)) * line_height(self.size)
+        if self.beside is None or not self._row_beside(pages, width):
+            return own
+        return max(own, self.beside.height(pages, width))
+
+    def _drop(self, pages: Pages, width: float) -> float:
+        """How far the heading stands down, to be in the middle of a higher row beside it."""
+        own = len(self._headings(pages, width)) * line_height(self.size)
+        return max(0.0, self._top_height(pages, width) - own - 0.6) / 2
+
+    def draw(self, pages: Pages, x: float, y: float, width: float) -> None:
+        top, y = y, y + self._drop(pages, width)
+        pages.box(x + 0.5, y + 0.6, 4.2, 4.2, 0.35)
+        pages.lines(x + self.indent, y + 0.5, self._headings(pages, width), self.size, bold=True)
+        base = y + 0.5 + ASCENT * self.size * MM_PER_POINT
+        if self.about and self._about_beside(pages, width):
+            after = pages.width_of(f"{self.heading}  ", self.size, bold=True)
+            pages.text(x + self.indent + after, base, self.about, 9.0)
+        if self.beside is not None and self._row_beside(pages, width):
+            self.beside.draw(pages, x + self.indent + self._used(pages), top + 0.3, self.beside.span(pages))
+        if self.who:
+            pages.text(x + width, base, self.who, 8.5, align="right")
+        at = top + self._top_height(pages, width) + 0.4
+        for piece in self._below(pages, width):
             piece.draw(pages, x + self.indent, at, width - self.indent)
             at += piece.height(pages, width - self.indent)
-        pages.rule(x, at + 1.2, x + width, at + 1.2, 0.1)
+        pages.rule(x, at + 0.6, x + width, at + 0.6, 0.1)
 
 
 class Paper:
@@ -198,6 +299,18 @@ class Paper:
         """Begin a page under `header(again)`; `again` is false here, true on the pages that follow."""
         self._header = header
         self._new_page(again=False)
+
+    def go_on(self, header: Callable[[bool], Sequence[Piece]], pieces: Sequence[Piece]) -> None:
+        """Put pieces below their header, on the page that is begun if they all fit there, else on a new one."""
+        whole = [*header(False), *pieces]
+        if self.number and self.y + sum(p.height(self.pages, self.width) for p in whole) <= self.bottom:
+            self._header = header
+            for piece in whole:
+                self._put(piece)
+        else:
+            self.begin(header)
+            for piece in pieces:
+                self.add(piece)
 
     def _new_page(self, again: bool) -> None:
         self.end_page()

@@ -8,6 +8,7 @@ their identity and entries that are gone are cancelled.
 from __future__ import annotations
 
 import os
+import stat
 import tempfile
 from collections.abc import Mapping
 from pathlib import Path
@@ -70,18 +71,32 @@ def write_plan_folder(plan: Plan, folder: Path) -> tuple[Path, ...]:
 
 def write_files(folder: Path, files: Mapping[str, bytes]) -> tuple[Path, ...]:
     """Write all files beside their places first, then move each into its place; on failure nothing is left
-    behind."""
+    behind.
+
+    A file that is replaced keeps its permissions, and a link its aim; a new file has those that the umask leaves.
+    """
     beside: list[tuple[Path, Path]] = []
     try:
         for name, content in files.items():
-            handle, temporary = tempfile.mkstemp(dir=folder, prefix=f".{name}.", suffix=".part")
-            beside.append((Path(temporary), folder / name))
+            place = (folder / name).resolve() if (folder / name).is_symlink() else folder / name
+            handle, temporary = tempfile.mkstemp(dir=place.parent, prefix=f".{place.name}.", suffix=".part")
+            beside.append((Path(temporary), place))
             with os.fdopen(handle, "wb") as file:
                 file.write(content)
-            Path(temporary).chmod(0o644)
+            Path(temporary).chmod(_permissions(place))
         for temporary_path, place in beside:
             temporary_path.replace(place)
     finally:
         for temporary_path, _ in beside:
             temporary_path.unlink(missing_ok=True)
-    return tuple(place for _, place in beside)
+    return tuple(folder / name for name in files)
+
+
+def _permissions(place: Path) -> int:
+    """Return the permissions of the file there, or those of a new file."""
+    if place.exists():
+        return stat.S_IMODE(place.stat().st_mode)
+    # the mask can only be read by setting it
+    mask = os.umask(0o077)
+    os.umask(mask)
+    return 0o666 & ~mask

@@ -350,6 +350,28 @@ def example_plan() -> Plan:
     )
 
 
+def virgins_plan() -> Plan:
+    """Return the plan with virgins from one stock for three crosses on one day, for two people, and an expansion."""
+    plan = example_plan()
+    last = plan.steps[4]
+    plan.steps.append(last.model_copy(update={"id": "S06", "vials": 3, "person": "Ida"}))
+    note = "from stock CsChrimson attP18: empty its vials at 08:30, collect at 15:00; safe for 8 h"
+
+    def add(step: str, kind: str, time: str, note: str, person: str) -> None:
+        task_id = f"{step}-{kind}-1"
+        plan.tasks.append(
+            TaskRecord(id=task_id, date="2027-03-17", time=time, kind=kind, step=step, note=note, person=person,
+                       minutes=10)  # type: ignore[arg-type]
+        )  # fmt: skip
+
+    for step, person in (("S04", "Tomas"), ("S05", "Tomas"), ("S06", "Ida")):
+        add(step, "virgins", "15:00", note, person)
+        add(step, "expand", "08:30", f"put stock CsChrimson attP18 on fresh food, for virgins of {step}", person)
+    again = "empty the vials at 08:30; females that emerge from then on are virgins at 15:00 (safe for 8 h)"
+    add("S01", "collect", "15:00", again, "Ida")
+    return plan
+
+
 LONG_SYMBOLS = [f"P{{y[+t7.7] w[+mC]=made-up-{n:02d}-GAL4.DBD}}VK{n:05d}" for n in range(1, 8)]
 
 
