@@ -36,14 +36,19 @@ from crossplan.genetics.progeny import ProgenyClass as ProgenyClass
 from crossplan.genetics.sorting import is_hidden
 
 if TYPE_CHECKING:
+    from crossplan.genetics.catalogue import Catalogue
     from crossplan.logbook.day import DayReport as DayReport
     from crossplan.plan.model import Plan as Plan
     from crossplan.plan.model import TaskRecord
     from crossplan.plan.screen_file import ScreenRequest
     from crossplan.schemes.batch import Answer
+    from crossplan.schemes.gap_report import GapReport as GapReport
     from crossplan.schemes.screen_plan import ScreenPlanner
-    from crossplan.stocks.audit import Finding
+    from crossplan.stocks.audit import Finding as Finding
+    from crossplan.stocks.corrections import Correction as Correction
+    from crossplan.stocks.difference import Change as Change
     from crossplan.stocks.reading_report import ReadingReport as ReadingReport
+    from crossplan.stocks.rota import Transfer as Transfer
     from crossplan.stocks.settings import ListSettings as ListSettings
     from crossplan.stocks.shelf import Shelf as Shelf
 
@@ -305,26 +310,33 @@ def _write_file(place: Path, content: bytes, protect: str = "") -> Path:
 
 @dataclass(frozen=True)
 class Audited:
-    """The findings of an audit, and for a screen what cannot be made and what to obtain."""
+    """The findings of an audit, and for a screen what cannot be made and what to obtain.
+
+    `stale` says which accepted findings are no more, or have changed.
+    """
 
     shelf: Shelf
     findings: tuple[Finding, ...]
-    plan: Plan | None = None
+    day: dt.date
+    gaps: GapReport | None = None
+    stale: tuple[Problem, ...] = ()
 
     @property
-    def acquire(self) -> list[tuple[str, int]]:
-        """Return what would unlock targets, with the number of targets each unlocks, most first."""
-        counts: dict[str, int] = {}
-        for target in self.plan.targets if self.plan else ():
-            for what in dict.fromkeys(target.would_unlock):
-                counts[what] = counts.get(what, 0) + 1
-        return sorted(counts.items(), key=lambda item: (-item[1], item[0]))
+    def open(self) -> tuple[Finding, ...]:
+        """The findings that nobody has accepted."""
+        return tuple(f for f in self.findings if not f.accepted)
 
     @property
     def needs_a_person(self) -> bool:
-        """Whether there is an error or a warning, or a target that cannot be made."""
-        impossible = self.plan is not None and any(t.status == "impossible" for t in self.plan.targets)
-        return impossible or any(f.severity != Severity.NOTE for f in self.findings)
+        """Whether there is an open error or warning, or a target that cannot be made."""
+        return self.needs_a_person_for("warning")
+
+    def needs_a_person_for(self, severity: str) -> bool:
+        """Return whether there is an open finding of at least that severity, or a target that cannot be made."""
+        rank = ("error", "warning", "note", "never")
+        grave = rank[: rank.index(severity) + 1] if severity != "never" else ()
+        lacking = self.gaps is not None and self.gaps.needs_a_person and severity != "never"
+        return lacking or any(f.severity in grave for f in self.open)
 
 
 def audit_stocks(
@@ -334,16 +346,48 @@ def audit_stocks(
     today: dt.date,
     settings: ListSettings | None = None,
     lab_file: Path | None = None,
+    accepted: Path | None = None,
+    search: bool = True,
 ) -> Audited:
-    """Return what is wrong with a stock list, and for a screen which targets it cannot make and why."""
+    """Return what is wrong with a stock list, and for a screen which targets it cannot make and why.
+
+    Args:
+        stocks: the stock list.
+        screen: the screen file.
+        today: the day as of which dates are judged.
+        settings: how the list is read.
+        lab_file: the lab's own catalogue entries.
+        accepted: the file of accepted findings.
+        search: whether schemes are searched for the screen, beyond what the parts alone tell.
+    """
+    from crossplan.stocks.accepted import mark_accepted, read_accepted
     from crossplan.stocks.audit import audit
 
+    catalogue = load_catalogue(lab_file)
     shelf = read_stocks(stocks, settings=settings, lab_file=lab_file)
-    findings = audit(shelf, today)
-    if screen is None:
-        return Audited(shelf, findings)
-    planned = plan_screen(screen, stocks, today=today, settings=settings, lab_file=lab_file, with_calendar=False)
-    return Audited(shelf, findings, planned.plan)
+    gaps, wanted = (None, {}) if screen is None else _gaps_for(screen, shelf, catalogue, None, search, None)
+    findings = audit(shelf, today, catalogue, wanted)
+    stale: tuple[Problem, ...] = ()
+    if accepted is not None:
+        findings, stale = mark_accepted(findings, read_accepted(accepted), shelf, str(accepted))
+    return Audited(shelf, findings, today, gaps, stale)
+
+
+def _gaps_for(
+    screen: Path,
+    shelf: Shelf,
+    catalogue: Catalogue,
+    offers: Shelf | None,
+    search: bool,
+    progress: Callable[[int, int], None] | None,
+) -> tuple[GapReport, dict[str, tuple[str, ...]]]:
+    from crossplan.plan.screen_file import read_screen
+    from crossplan.schemes.gap_report import gap_report, wanted_elements
+
+    request = read_screen(screen)
+    report = gap_report(request.screen.screen.name, request.targets, shelf, request.screen, catalogue, offers, search,
+                        progress)  # fmt: skip
+    return report, wanted_elements(report.gaps, request.targets)
 
 
 def audit_json(audited: Audited) -> dict[str, Any]:
@@ -353,20 +397,235 @@ def audit_json(audited: Audited) -> dict[str, Any]:
         "findings": [
             {
                 "code": f.code, "severity": str(f.severity), "stock": f.stock, "row": f.row,
-                "message": f.message, "suggestion": f.suggestion,
+                "message": f.message, "suggestion": f.suggestion, "why": f.why, "stocks": list(f.stocks),
+                "accepted": f.accepted or None,
             }
             for f in audited.findings
         ],
         "gaps": [],
-        "acquire": [{"what": what, "unlocks": n} for what, n in audited.acquire],
+        "acquire": [],
     }  # fmt: skip
-    if audited.plan is not None:
+    if audited.gaps is not None:
+        whole = gap_report_json(audited.gaps)
         document["gaps"] = [
-            {"target": t.target, "missing": t.would_unlock, "reason": t.reason}
-            for t in audited.plan.targets
-            if t.status == "impossible"
+            {
+                "target": t["target"],
+                "reason": t["reason"],
+                "status": t["status"],
+                "missing": sorted({thing for clause in audited.gaps.needs.get(t["target"], ()) for thing in clause}),
+            }
+            for t in whole["targets"]
+            if t["status"] in ("lacking", "never")
         ]
-    return document
+        document["acquire"] = [
+            {"what": a["what"], "unlocks": len(a["needed_by"]), "unlocks_alone": a["unlocks"]} for a in whole["acquire"]
+        ]
+        document |= {k: whole[k] for k in ("least_sets", "most_targets", "base_stocks", "hangs_by", "helpers_lacking")}
+    return document  # fmt: skip
+
+
+def write_audit(audited: Audited, *, html: Path | None = None, table: Path | None = None) -> tuple[Path, ...]:
+    """Write an audit as an HTML report and as a CSV table, whole or not at all.
+
+    Raises:
+        OutputError: a file cannot be written.
+    """
+    from crossplan.bench.audit_report import audit_html, findings_csv
+
+    written = []
+    path = audited.shelf.path
+    if html is not None:
+        text = audit_html(path, len(audited.shelf.stocks), audited.day.isoformat(), audited.findings, audited.gaps)
+        written.append(_write_file(html, text.encode(), protect=path))
+    if table is not None:
+        written.append(_write_file(table, findings_csv(audited.findings).encode(), protect=path))
+    return tuple(written)
+
+
+def accept_finding(audited: Audited, file: Path, code: str, stock: str, reason: str) -> Path:
+    """Add a finding to the file of accepted ones, with the reason; it holds until its row changes.
+
+    Raises:
+        InputError: the audit has no such finding, or there is no reason.
+        OutputError: the file cannot be written.
+    """
+    from crossplan.stocks.accepted import accept, accepted_toml, read_accepted
+
+    entries = accept(read_accepted(file), audited.findings, audited.shelf, code, stock, reason)
+    return _write_file(file, accepted_toml(entries).encode(), protect=audited.shelf.path)
+
+
+def find_gaps(
+    stocks: Path,
+    screen: Path,
+    *,
+    offers: Path | None = None,
+    settings: ListSettings | None = None,
+    lab_file: Path | None = None,
+    search: bool = True,
+    progress: Callable[[int, int], None] | None = None,
+) -> GapReport:
+    """Return what a shelf lacks for a screen, and the least sets of stocks to obtain.
+
+    Args:
+        stocks: the stock list.
+        screen: the screen file, or a list of wishes in its form.
+        offers: a list of stocks that can be had elsewhere.
+        settings: how the stock list is read.
+        lab_file: the lab's own catalogue entries.
+        search: whether schemes are searched too.
+        progress: hears how many of how many searches are done.
+    """
+    catalogue = load_catalogue(lab_file)
+    shelf = read_stocks(stocks, settings=settings, lab_file=lab_file)
+    offered = read_stocks(offers, lab_file=lab_file) if offers is not None else None
+    return _gaps_for(screen, shelf, catalogue, offered, search, progress)[0]
+
+
+def gap_report_json(report: GapReport) -> dict[str, Any]:
+    """Return what a shelf lacks as one JSON document."""
+    from crossplan.schemes.gap_report import gap_json
+
+    return gap_json(report)
+
+
+def write_gaps(report: GapReport, *, html: Path | None = None, table: Path | None = None) -> tuple[Path, ...]:
+    """Write what a shelf lacks as an HTML report and as a CSV table.
+
+    Raises:
+        OutputError: a file cannot be written.
+    """
+    from crossplan.bench.audit_report import gap_sections, gaps_csv, page
+
+    written = []
+    if html is not None:
+        under = f"{len(report.gaps.targets)} targets"
+        written.append(
+            _write_file(html, page(f"What the shelf lacks for {report.name}", under, gap_sections(report)).encode())
+        )
+    if table is not None:
+        written.append(_write_file(table, gaps_csv(report).encode()))
+    return tuple(written)
+
+
+def compare_lists(old: Path, new: Path, *, lab_file: Path | None = None) -> tuple[Change, ...]:
+    """Return what changed between two versions of a stock list, in terms of flies.
+
+    Raises:
+        StockListError: one of them cannot be read.
+    """
+    from crossplan.stocks.difference import compare
+
+    return compare(read_stocks(old, lab_file=lab_file), read_stocks(new, lab_file=lab_file))
+
+
+def write_changes(changes: Iterable[Change], place: Path) -> Path:
+    """Write the differences of two stock lists as a CSV table.
+
+    Raises:
+        OutputError: the file cannot be written.
+    """
+    from crossplan.bench.audit_report import changes_csv
+
+    return _write_file(place, changes_csv(changes).encode())
+
+
+def propose_corrections(
+    stocks: Path, *, settings: ListSettings | None = None, lab_file: Path | None = None, out: Path | None = None
+) -> tuple[tuple[Correction, ...], tuple[Path, ...]]:
+    """Return proposed corrections of a stock list; with `out`, write the corrected table and the list of changes.
+
+    The changes stand beside the table as `NAME.changes.csv`. The lab's own file is never written.
+
+    Raises:
+        OutputError: `out` is the stock list itself, or cannot be written.
+    """
+    from crossplan.stocks.columns import guess_columns
+    from crossplan.stocks.corrections import corrected_csv, corrections_csv, propose, propose_cells
+    from crossplan.stocks.table import read_table
+
+    catalogue = load_catalogue(lab_file)
+    shelf = read_stocks(stocks, settings=settings, lab_file=lab_file)
+    table = read_table(stocks, [*shelf.columns.values()], settings.sheet if settings is not None else None)
+    columns = guess_columns(table.headings, shelf.columns, str(stocks))
+    found = sorted((*propose(shelf, catalogue), *propose_cells(table, columns, shelf)), key=lambda c: (c.row, c.column))
+    written: tuple[Path, ...] = ()
+    if out is not None:
+        changes = out.with_name(f"{out.stem}.changes.csv")
+        if stocks.resolve() in (out.resolve(), changes.resolve()):
+            raise OutputError(f"{out} is the stock list itself, which is never written to", "give another name")
+        written = (
+            _write_file(out, corrected_csv(table, found).encode()),
+            _write_file(changes, corrections_csv(found).encode()),
+        )
+    return tuple(found), written
+
+
+def transfer_rota(
+    stocks: Path,
+    *,
+    start: dt.date,
+    days: int,
+    people: Iterable[str] = (),
+    working_days: Iterable[str] = ("Mon", "Tue", "Wed", "Thu", "Fri"),
+    holidays: Iterable[dt.date] = (),
+    settings: ListSettings | None = None,
+    lab_file: Path | None = None,
+) -> tuple[Transfer, ...]:
+    """Return which stocks go on new food on which day, in whose hands.
+
+    Raises:
+        InputError: there is no working day, or the period is empty.
+    """
+    from crossplan.plan.screen import DAYS
+    from crossplan.stocks.rota import Week, make_rota
+
+    chosen = tuple(working_days)
+    unknown = [d for d in chosen if d not in DAYS]
+    if unknown or not chosen or days < 1:
+        raise InputError(f"'{unknown[0]}' is no day of the week" if unknown else "there is no working day to plan for",
+                         f"days are {', '.join(DAYS)}; the period is at least one day")  # fmt: skip
+    week = Week(tuple(DAYS.index(d) for d in chosen), frozenset(holidays), tuple(people))
+    return make_rota(read_stocks(stocks, settings=settings, lab_file=lab_file), start, days, week)
+
+
+def write_rota(
+    transfers: Sequence[Transfer], folder: Path, *, name: str, day: dt.date, plan: Path | None = None, page: str = "A4"
+) -> tuple[Path, ...]:
+    """Write the rota as a bench list (PDF), a calendar file and a CSV table; with a plan, what it asks of stocks too.
+
+    Raises:
+        OutputError: the folder cannot be written.
+    """
+    from crossplan.bench.plan_folder import write_files
+    from crossplan.bench.rota_sheet import rota_csv, rota_ics, rota_pdf, stock_tasks
+
+    tasks = stock_tasks(load_plan(plan)) if plan is not None else ()
+    files = {
+        "rota.pdf": rota_pdf(f"transfers, {name}", transfers, tasks, page),
+        "rota.ics": rota_ics(name, transfers, day),
+        "rota.csv": rota_csv(transfers).encode(),
+    }
+    try:
+        folder.mkdir(parents=True, exist_ok=True)
+        return write_files(folder, files)
+    except OSError as error:
+        raise OutputError(f"cannot write into {folder}: {error.strerror or error}", "choose another folder") from error
+
+
+def write_yearly_checks(
+    stocks: Path, place: Path, *, settings: ListSettings | None = None, lab_file: Path | None = None
+) -> Path:
+    """Write the yearly check list as a CSV table: what the flies of each stock must look like, and what to test.
+
+    Raises:
+        OutputError: the file cannot be written.
+    """
+    from crossplan.bench.audit_report import checks_csv
+    from crossplan.stocks.checklist import yearly_checks
+
+    shelf = read_stocks(stocks, settings=settings, lab_file=lab_file)
+    return _write_file(place, checks_csv(yearly_checks(shelf, load_catalogue(lab_file))).encode(), protect=str(stocks))
 
 
 # -- a screen ----------------------------------------------------------------------------------------------------

@@ -12,7 +12,23 @@ from typing import Annotated
 import typer
 
 from crossplan import __version__
-from crossplan.cli import audit, calendar, count, demo, labels, log, plan, progeny, read, rear, shelf, today
+from crossplan.cli import (
+    audit,
+    calendar,
+    compare,
+    count,
+    demo,
+    gaps,
+    keep,
+    labels,
+    log,
+    plan,
+    progeny,
+    read,
+    rear,
+    shelf,
+    today,
+)
 from crossplan.cli.render import report_error
 from crossplan.errors import CrossplanError, PlanCheckError
 
@@ -26,7 +42,7 @@ app = typer.Typer(
     context_settings={"help_option_names": ["-h", "--help"]},
 )
 
-for module in (plan, progeny, read, shelf, audit, labels, calendar, today, log, rear, count, demo):
+for module in (plan, progeny, read, shelf, audit, gaps, keep, compare, labels, calendar, today, log, rear, count, demo):
     module.register(app)
 
 #: what the shell expects of a program that was stopped with Ctrl-C

@@ -23,9 +23,20 @@ def check_copies(view: View) -> Iterator[Finding]:
     for stock in view.usable:
         if stock.copies is not None and stock.copies < FEWEST_COPIES:
             targets = view.targets_of(stock)
-            more = f"; {number_of(len(targets), 'target')} of the screen ask for what it carries" if targets else ""
+            more = (
+                f"; {number_of(len(targets), 'target')} of the screen depend{'s' if len(targets) == 1 else ''} on what it carries"
+                if targets
+                else ""
+            )
             yield found_in(stock, "single-copy", Severity.WARNING, f"one accident away from lost: only one copy{more}",
                            f"keep at least {FEWEST_COPIES} copies, staggered by half an interval")  # fmt: skip
+
+
+def _depending(targets: tuple[str, ...]) -> str:
+    if not targets:
+        return ""
+    verb = "depends" if len(targets) == 1 else "depend"
+    return f"; {number_of(len(targets), 'target')} of the screen {verb} on what it carries"
 
 
 def check_transfers(view: View) -> Iterator[Finding]:
@@ -121,7 +132,11 @@ def check_health(view: View) -> Iterator[Finding]:
         match = _WEAK.search(stock.status)
         if match:
             targets = view.targets_of(stock)
-            more = f"; {number_of(len(targets), 'target')} of the screen ask for what it carries" if targets else ""
+            more = (
+                f"; {number_of(len(targets), 'target')} of the screen depend{'s' if len(targets) == 1 else ''} on what it carries"
+                if targets
+                else ""
+            )
             yield found_in(stock, "unwell", Severity.WARNING, f"the list calls it '{match[0]}'{more}",
                            "expand it, clean it, or replace it before anything depends on it")  # fmt: skip
 

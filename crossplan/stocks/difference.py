@@ -81,8 +81,10 @@ def _renamed(lost: Iterable[Stock], gained: Iterable[Stock]) -> Iterator[tuple[s
     groups: dict[object, tuple[list[Stock], list[Stock]]] = {}
     for i, stocks in enumerate((lost, gained)):
         for stock in stocks:
-            if stock.reading.ok and stock.reading.elements:
-                key = (stock.reading.canonical, stock.reading.female, stock.reading.male)
+            # wild types differ in what no genotype says: they are one only where the words are the same
+            if stock.reading.ok:
+                words = "" if stock.reading.elements else stock.genotype
+                key = (stock.reading.canonical, stock.reading.female, stock.reading.male, words)
                 groups.setdefault(key, ([], []))[i].append(stock)
     for gone, new in groups.values():
         if len(gone) == 1 and len(new) == 1:

@@ -3,7 +3,7 @@
 Every stock is due an interval after its last transfer, by its temperature (`keeping`). A stock with several copies is
 flipped in two halves, half an interval apart, so that one bad batch of food does not meet both (Ashburner & Roote,
 Maintenance of a Drosophila laboratory, from memory). A transfer may be brought forward by a quarter of its interval, and
-is put off only where no working day is left before it is due; the day with the least work is taken, and the work of
+is put off only where no working day is left before it is due, by at most a working week; the day with the least work is taken, and the work of
 a day is shared out tray by tray, so that a tray stays in one pair of hands.
 """
 
@@ -19,6 +19,8 @@ from crossplan.stocks.shelf import Shelf, Stock
 
 #: how far a transfer may be brought forward, as a share of its interval (our choice)
 EARLIEST = 0.25
+#: over how many working days a backlog of due stocks is spread (our choice)
+MOST_DAYS_PUT_OFF = 5
 WORKING_DAYS = (0, 1, 2, 3, 4)
 
 
@@ -68,6 +70,7 @@ def make_rota(shelf: Shelf, start: dt.date, days: int, week: Week | None = None)
     planned: list[Transfer] = []
     # those with the least room first; a stock that is flipped twice in the period comes back with its next due day
     queue = sorted(wanted, key=lambda w: (w.latest, w.stock.row, w.half))
+    flipped: dict[str, dict[str, dt.date]] = {}
     while queue:
         batch, queue = queue, []
         for want in batch:
@@ -76,7 +79,9 @@ def make_rota(shelf: Shelf, start: dt.date, days: int, week: Week | None = None)
                 continue
             planned.append(transfer)
             load[transfer.day] += transfer.vials
-            queue.append(want.again(transfer.day))
+            halves = flipped.setdefault(want.stock.name, {})
+            halves[want.half] = transfer.day
+            queue.append(want.again(transfer.day, halves))
         queue.sort(key=lambda w: (w.latest, w.stock.row, w.half))
     return _shared_out(planned, calendar.people)
 
@@ -97,8 +102,11 @@ class _Wanted:
     def latest(self) -> dt.date:
         return self.due + dt.timedelta(days=int((OVERDUE_FACTOR - 1) * self.interval))
 
-    def again(self, day: dt.date) -> _Wanted:
-        return _Wanted(self.stock, self.half, self.vials, day + dt.timedelta(days=int(self.interval)), self.interval)
+    def again(self, day: dt.date, halves: Mapping[str, dt.date]) -> _Wanted:
+        """Return the next transfer; of two halves that met on one food the second comes back after half an interval."""
+        together = any(h < self.half and abs((d - day).days) < EARLIEST * self.interval for h, d in halves.items())
+        days = int(self.interval / 2) if together else int(self.interval)
+        return _Wanted(self.stock, self.half, self.vials, day + dt.timedelta(days=days), self.interval)
 
 
 def _halves(stock: Stock, start: dt.date) -> Iterable[_Wanted]:
@@ -127,10 +135,13 @@ def _place(want: _Wanted, open_days: Sequence[dt.date], last: dt.date, load: Map
     if on_time:
         day = min(on_time, key=lambda d: (load[d], d))
         return Transfer(day, want.stock, want.half, want.vials, want.due)
-    after = next((d for d in open_days if d > want.due), None)
-    if after is None:
+    after = [d for d in open_days if d > want.due]
+    if not after:
         return None
-    return Transfer(after, want.stock, want.half, want.vials, want.due, late=after > want.latest)
+    # due already: within a few days, so that a backlog is not one day's work; at once where it is overdue
+    soon = [d for d in after[:MOST_DAYS_PUT_OFF] if d <= want.latest] or after[:1]
+    day = min(soon, key=lambda d: (load[d], d))
+    return Transfer(day, want.stock, want.half, want.vials, want.due, late=day > want.latest)
 
 
 def _shared_out(transfers: Iterable[Transfer], people: Sequence[str]) -> tuple[Transfer, ...]:

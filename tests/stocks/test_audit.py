@@ -387,7 +387,7 @@ def test_a_screen_makes_findings_graver(tmp_path: Path) -> None:
     found = audit(read_stocks(path), TODAY, wanted=wanted)
     out = [(f.stock, f.severity) for f in found if f.code == "wanted-out-of-use"]
     assert out == [("B", Severity.ERROR)]
-    assert "2 targets of the screen" in next(f.message for f in found if f.code == "single-copy")
+    assert "2 targets of the screen depend on" in next(f.message for f in found if f.code == "single-copy")
 
 
 def test_an_open_chromosome_is_asked_once_for_each_element(tmp_path: Path) -> None:
