@@ -415,7 +415,7 @@ def audit_json(audited: Audited) -> dict[str, Any]:
                 "missing": sorted({thing for clause in audited.gaps.needs.get(t["target"], ()) for thing in clause}),
             }
             for t in whole["targets"]
-            if t["status"] in ("lacking", "never")
+            if t["status"] in ("lacking", "no scheme", "never")
         ]
         document["acquire"] = [
             {"what": a["what"], "unlocks": len(a["needed_by"]), "unlocks_alone": a["unlocks"]} for a in whole["acquire"]

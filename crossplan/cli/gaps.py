@@ -15,6 +15,7 @@ if TYPE_CHECKING:
 
 #: how many lines of a section the terminal shows; files and --json have all of them
 MOST_LINES = 8
+UNMADE = ("lacking", "no scheme", "never")
 
 
 def register(app: typer.Typer) -> None:
@@ -55,7 +56,7 @@ def show_gaps(report: GapReport) -> None:
     from crossplan import api
 
     document = api.gap_report_json(report)
-    _targets(report.name, document["targets"])
+    _targets(report.name, document["targets"], document["searched"])
     _to_obtain(document)
     _section("Base stocks to build", [
         f"{' and '.join(b['components'])} in one stock: {_shortened(b)}" for b in document["base_stocks"]
@@ -70,17 +71,16 @@ def show_gaps(report: GapReport) -> None:
     ])  # fmt: skip
 
 
-def _targets(name: str, targets: list[dict[str, object]]) -> None:
+def _targets(name: str, targets: list[dict[str, object]], searched: bool) -> None:
     from rich.text import Text
 
     out = console()
-    bad = [t for t in targets if t["status"] in ("lacking", "never")]
-    searched = any(t["generations"] is not None for t in targets)
+    bad = [t for t in targets if t["status"] in UNMADE]
     words = "can be made from this shelf" if searched else "have all their parts on this shelf"
     out.print(Text.assemble((name, "bold"), f": {len(targets) - len(bad)} of {len(targets)} targets {words}"))
     made = Counter(
         t["generations"] if t["generations"] is not None else t["at_least"]
-        for t in targets if t["status"] not in ("lacking", "never")
+        for t in targets if t["status"] not in UNMADE
     )  # fmt: skip
     for generations, number in sorted(made.items(), key=lambda item: str(item[0])):
         told = "in stock" if generations == 0 else f"{_counted(int(str(generations)), 'generation')}"
@@ -120,7 +120,7 @@ def _to_obtain(document: dict[str, object]) -> None:
 
 def _shortened(base: dict[str, list[str]]) -> str:
     if base["tried"]:
-        return f"{len(base['shorter'])} of {_counted(len(base['tried']), 'target')} tried became a generation shorter"
+        return f"{len(base['shorter'])} of {_counted(len(base['tried']), 'target')} tried became shorter, or possible"
     return f"may shorten {_counted(len(base['may_shorten']), 'target')}"
 
 

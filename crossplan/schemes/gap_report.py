@@ -48,7 +48,7 @@ class Unlocks:
 
 @dataclass(frozen=True)
 class TriedBase:
-    """A base stock that was put on the shelf and tried: targets tried, and those that took fewer generations."""
+    """A base stock that was put on the shelf and tried: targets tried, and those that it shortened or made possible."""
 
     base: BaseStock
     tried: tuple[str, ...]
@@ -192,7 +192,7 @@ def _tried(
         answers = [_made(a) for a in planner.answer([Asked(by_name[n]) for n in names])]
         shorter = tuple(
             n for n, a in zip(names, answers, strict=True)
-            if a.generations is not None and a.generations < (made[n].generations or 0)
+            if a.generations is not None and ((before := made[n].generations) is None or a.generations < before)
         )  # fmt: skip
         tried.append(TriedBase(base, tuple(names), shorter))
     return tuple(tried)
@@ -221,13 +221,14 @@ def with_search(gap: TargetGap, made: Made | None) -> TargetGap:
     """Return a target with what the search adds: one whose parts are there may be impossible all the same."""
     if made is None or made.generations is not None:
         return gap
-    return replace(gap, status="lacking", reason=made.reason)
+    return replace(gap, status="no scheme", reason=made.reason)
 
 
 def gap_json(report: GapReport) -> dict[str, object]:
     """Return the report as one JSON document."""
     return {
         "screen": report.name,
+        "searched": bool(report.made),
         "targets": [_target_json(t, report.made.get(t.target)) for t in report.gaps.targets],
         "least_sets": [list(a) for a in report.least.answers],
         "least_size": len(report.least.answers[0]) if report.least.answers else 0,

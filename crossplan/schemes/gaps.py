@@ -29,7 +29,7 @@ from crossplan.schemes.target import (
 from crossplan.schemes.wish import WantedSex, Wish
 from crossplan.stocks.audit_components import clashes
 
-Status = Literal["in stock", "parts there", "lacking", "never"]
+Status = Literal["in stock", "parts there", "lacking", "no scheme", "never"]
 
 
 @dataclass(frozen=True)
@@ -39,7 +39,7 @@ class TargetGap:
     Attributes:
         target: its name.
         status: `in stock`; `parts there` (every component is on the shelf); `lacking` (something must be obtained);
-            `never` (no stock would help: the wish contradicts itself, or the flies would die).
+            `no scheme` (a search found none, see `gap_report`); `never` (no stock would help: the wish contradicts itself, or the flies would die).
         components: symbols of the elements, as far as the shelf has them.
         at_least: generations that it takes at the least, the experimental cross counted; 0 when in stock, None when
             something is lacking.

@@ -183,12 +183,23 @@ def check_near_symbols(view: View) -> Iterator[Finding]:
             if element.kind in (Kind.INSERTION, Kind.UNKNOWN):
                 carriers.setdefault(element.symbol, []).append(stock)
                 elements.setdefault(element.symbol, element)
+    capitals: list[tuple[str, str]] = []
     for one, other in near_pairs(elements):
         if elements[one].site != elements[other].site:
             continue
         rare, usual = sorted((one, other), key=lambda s: (len(carriers[s]), -carriers[s][0].row))
+        if rare.lower() == usual.lower():
+            capitals.append((rare, usual))
+            continue
         yield found_in(
             carriers[rare][0], "near-symbol", Severity.WARNING,
-            f"{rare} (row {carriers[rare][0].row}) and {usual} (row {carriers[usual][0].row}) differ by one letter",
+            f"{rare} (row {carriers[rare][0].row}) is spelt almost like {usual} (row {carriers[usual][0].row})",
             "write both alike if they are one insertion",
+        )  # fmt: skip
+    if capitals:
+        told = listed(f"{rare} (row {carriers[rare][0].row}) and {usual}" for rare, usual in capitals)
+        yield found_among(
+            [carriers[rare][0] for rare, _ in capitals], "near-symbol", Severity.WARNING,
+            f"{number_of(len(capitals), 'name is', 'names are')} written with other capitals elsewhere: {told}",
+            "write them alike: capitals count in a genotype, and a plan takes them for two insertions",
         )  # fmt: skip

@@ -78,16 +78,19 @@ def _held(homologue: Homologue) -> bool:
 def check_not_fixed(view: View) -> Iterator[Finding]:
     """Two viable homologues that differ, and no balancer: the stock drifts to one of them."""
     for stock, fly in view.flies:
-        for name, (one, other) in zip(PAIRS, fly.pairs, strict=True):
-            if not _drifts(one, other):
-                continue
+        loose = [(name, pair) for name, pair in zip(PAIRS, fly.pairs, strict=True) if _drifts(*pair)]
+        if not loose:
+            continue
+        told = []
+        for _, (one, other) in loose:
             first, second = (one, other) if one.elements else (other, one)
-            yield found_in(
-                stock, "not-fixed", Severity.WARNING,
-                f"{words_of(first)} stands over {words_of(second)} without a balancer: the stock does not breed true and"
-                " loses one or the other",
-                f"make it homozygous, or keep it over a balancer of chromosome {name}",
-            )  # fmt: skip
+            told.append(f"{words_of(first)} over {words_of(second)}")
+        where = " and ".join(name for name, _ in loose)
+        yield found_in(
+            stock, "not-fixed", Severity.WARNING,
+            f"{'; '.join(told)}, without a balancer: the stock does not breed true and loses one or the other",
+            f"make it homozygous, or keep it over a balancer of chromosome {where}",
+        )  # fmt: skip
 
 
 def _drifts(one: Homologue, other: Homologue) -> bool:

@@ -21,6 +21,8 @@ from crossplan.stocks.shelf import Shelf, Stock
 EARLIEST = 0.25
 #: over how many working days a backlog of due stocks is spread (our choice)
 MOST_DAYS_PUT_OFF = 5
+#: the two halves of the copies are kept at least so far apart, as a share of the interval (our choice)
+APART = 0.25
 WORKING_DAYS = (0, 1, 2, 3, 4)
 
 
@@ -70,18 +72,18 @@ def make_rota(shelf: Shelf, start: dt.date, days: int, week: Week | None = None)
     planned: list[Transfer] = []
     # those with the least room first; a stock that is flipped twice in the period comes back with its next due day
     queue = sorted(wanted, key=lambda w: (w.latest, w.stock.row, w.half))
-    flipped: dict[str, dict[str, dt.date]] = {}
+    flipped: dict[tuple[str, str], list[dt.date]] = {}
     while queue:
         batch, queue = queue, []
         for want in batch:
-            transfer = _place(want, open_days, last, load)
+            others = flipped.get((want.stock.name, want.other_half), ())
+            transfer = _place(want, open_days, last, load, others)
             if transfer is None:
                 continue
             planned.append(transfer)
             load[transfer.day] += transfer.vials
-            halves = flipped.setdefault(want.stock.name, {})
-            halves[want.half] = transfer.day
-            queue.append(want.again(transfer.day, halves))
+            flipped.setdefault((want.stock.name, want.half), []).append(transfer.day)
+            queue.append(want.again(transfer.day, others))
         queue.sort(key=lambda w: (w.latest, w.stock.row, w.half))
     return _shared_out(planned, calendar.people)
 
@@ -102,10 +104,17 @@ class _Wanted:
     def latest(self) -> dt.date:
         return self.due + dt.timedelta(days=int((OVERDUE_FACTOR - 1) * self.interval))
 
-    def again(self, day: dt.date, halves: Mapping[str, dt.date]) -> _Wanted:
+    @property
+    def other_half(self) -> str:
+        return {"A": "B", "B": "A"}.get(self.half, "")
+
+    def is_apart(self, day: dt.date, others: Sequence[dt.date]) -> bool:
+        """Return whether a day is far enough from the transfers of the other half."""
+        return all(abs((other - day).days) >= APART * self.interval for other in others)
+
+    def again(self, day: dt.date, others: Sequence[dt.date]) -> _Wanted:
         """Return the next transfer; of two halves that met on one food the second comes back after half an interval."""
-        together = any(h < self.half and abs((d - day).days) < EARLIEST * self.interval for h, d in halves.items())
-        days = int(self.interval / 2) if together else int(self.interval)
+        days = int(self.interval) if self.is_apart(day, others) else int(self.interval / 2)
         return _Wanted(self.stock, self.half, self.vials, day + dt.timedelta(days=days), self.interval)
 
 
@@ -127,13 +136,18 @@ def _halves(stock: Stock, start: dt.date) -> Iterable[_Wanted]:
     )
 
 
-def _place(want: _Wanted, open_days: Sequence[dt.date], last: dt.date, load: Mapping[dt.date, int]) -> Transfer | None:
-    """Return the transfer on the open day before it is due that has the least work; failing that, the next open day."""
+def _place(
+    want: _Wanted, open_days: Sequence[dt.date], last: dt.date, load: Mapping[dt.date, int], others: Sequence[dt.date]
+) -> Transfer | None:
+    """Return the transfer on the open day before it is due that has the least work and is apart from the other half.
+
+    Failing that it is on one of the next open days.
+    """
     if want.due > last or not open_days:
         return None
     on_time = [d for d in open_days if want.earliest <= d <= want.due]
     if on_time:
-        day = min(on_time, key=lambda d: (load[d], d))
+        day = min(on_time, key=lambda d: (not want.is_apart(d, others), load[d], d))
         return Transfer(day, want.stock, want.half, want.vials, want.due)
     after = [d for d in open_days if d > want.due]
     if not after:
@@ -145,17 +159,19 @@ def _place(want: _Wanted, open_days: Sequence[dt.date], last: dt.date, load: Map
 
 
 def _shared_out(transfers: Iterable[Transfer], people: Sequence[str]) -> tuple[Transfer, ...]:
-    """Give each tray of a day to the person with the fewest vials that day; the heaviest trays first."""
+    """Give each tray of a day to the person with the fewest vials that day, and of equals so far; heavy trays first."""
     by_day: dict[dt.date, dict[str, list[Transfer]]] = {}
     for transfer in transfers:
         by_day.setdefault(transfer.day, {}).setdefault(transfer.stock.tray, []).append(transfer)
     shared: list[Transfer] = []
-    for trays in by_day.values():
+    so_far = dict.fromkeys(people, 0)
+    for _, trays in sorted(by_day.items()):
         hands = dict.fromkeys(people, 0)
         for tray in sorted(trays, key=lambda t: (-sum(x.vials for x in trays[t]), t)):
-            person = min(hands, key=lambda p: (hands[p], people.index(p))) if hands else ""
+            person = min(hands, key=lambda p: (hands[p], so_far[p], people.index(p))) if hands else ""
             if hands:
-                hands[person] += sum(x.vials for x in trays[tray])
+                hands[person] += (vials := sum(x.vials for x in trays[tray]))
+                so_far[person] += vials
             shared += [_handed(x, person) for x in trays[tray]]
     return tuple(
         sorted(shared, key=lambda t: (t.day, t.person, t.stock.tray, _place_in_tray(t.stock), t.stock.row, t.half))

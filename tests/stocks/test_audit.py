@@ -197,8 +197,14 @@ CASES = [
     pytest.param(
         "near-symbol", Severity.WARNING, "stock|genotype",
         ["A|w; UAS-Chrimson@VK00018", "B|w; UAS-Chrimson@VK00018/CyO", "C|w; UAS-Chrmison@VK00018"], "C",
-        "differ by one letter", ["A|w; UAS-Chrimson@VK00018", "B|w; UAS-Chrimson@VK00037/CyO", "C|w; AD-K12@attP40",
+        "spelt almost like UAS-Chrimson@VK00018 (row 2)", ["A|w; UAS-Chrimson@VK00018", "B|w; UAS-Chrimson@VK00037/CyO", "C|w; AD-K12@attP40",
         "D|w; AD-L12@attP40"], id="one construct, two spellings",
+    ),
+    pytest.param(
+        "near-symbol", Severity.WARNING, "stock|genotype",
+        ["A|w; UAS-Flp@VK00018", "B|w; UAS-FLP@VK00018/CyO", "C|w; AD-K1@attP16", "D|w; AD-k1@attP16/CyO"], "B",
+        "2 names are written with other capitals", ["A|w; UAS-Flp@VK00018", "B|w; UAS-Flp@VK00018/CyO"],
+        id="other capitals, said once",
     ),
     pytest.param(
         "repressor-of-split", Severity.WARNING, "stock|genotype",
