@@ -417,9 +417,8 @@ def audit_json(audited: Audited) -> dict[str, Any]:
             for t in whole["targets"]
             if t["status"] in ("lacking", "no scheme", "never")
         ]
-        document["acquire"] = [
-            {"what": a["what"], "unlocks": len(a["needed_by"]), "unlocks_alone": a["unlocks"]} for a in whole["acquire"]
-        ]
+        document["acquire"] = [{"what": a["what"], "unlocks": len(a["needed_by"])} for a in whole["acquire"]]
+        document["obtain"] = whole["acquire"]
         document |= {k: whole[k] for k in ("least_sets", "most_targets", "base_stocks", "hangs_by", "helpers_lacking")}
     return document  # fmt: skip
 

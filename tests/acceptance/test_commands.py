@@ -166,7 +166,7 @@ class TestAudit:
         assert result["stocks"] == 170
         codes = {f["code"] for f in result["findings"]}
         assert {"bracket", "balancer-typo", "unbalanced-lethal", "duplicate", "overdue", "single-copy"} <= codes
-        assert all({"code", "severity", "stock", "row", "message", "suggestion"} == set(f) for f in result["findings"])
+        assert all({"code", "severity", "stock", "row", "message", "suggestion"} <= set(f) for f in result["findings"])
 
     def test_gaps_of_a_screen(self, tmp_path: Path) -> None:
         (tmp_path / "screen.toml").write_text('[[target]]\ntarget="t"\ncomponents=["AD-nobody", "GAL4-W21@attP2"]\n')
