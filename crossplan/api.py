@@ -816,16 +816,37 @@ def write_labels(
     person: str | None = None,
     start_at: int = 1,
     copies: int = 1,
-) -> int:
-    """Write the vial labels of a plan as a PDF; return its size in bytes."""
-    from crossplan.bench.labels import labels_pdf
-    from crossplan.bench.sheet_layout import DEFAULT_LAYOUT, layout_named
+    vials: Sequence[int] | None = None,
+    outlines: bool = False,
+) -> tuple[int, tuple[str, ...]]:
+    """Write the vial labels of a plan as a PDF; return its size in bytes, and the steps whose labels are shortened."""
+    from crossplan.bench.labels import labels_pdf, shortened_labels
+    from crossplan.bench.sheet_layout import DEFAULT_LAYOUT, layout_of
 
-    content = labels_pdf(
-        load_plan(plan), layout_named(layout or DEFAULT_LAYOUT), steps=steps, dates=parse_days(dates),
-        person=person, start_at=start_at, copies=copies,
-    )  # fmt: skip
-    return _write(out, content)
+    made, sheet, days = load_plan(plan), layout_of(layout or DEFAULT_LAYOUT), parse_days(dates)
+    content = labels_pdf(made, sheet, steps, days, person, start_at, copies, outlines, vials)
+    return _write(out, content), shortened_labels(made, sheet, steps, days, person)
+
+
+def write_stock_labels(
+    shelf: Shelf,
+    out: Path,
+    *,
+    layout: str | None = None,
+    names: Sequence[str] | None = None,
+    start_at: int = 1,
+    copies: int = 1,
+    outlines: bool = False,
+) -> tuple[int, tuple[str, ...]]:
+    """Write stock labels as a PDF; return its size in bytes, and the stocks whose labels are shortened."""
+    from crossplan.bench.labels import shortened_stock_labels, stock_labels_pdf
+    from crossplan.bench.sheet_layout import DEFAULT_LAYOUT, layout_of
+    from crossplan.bench.stock_label import StockLabel
+
+    stocks = [StockLabel(s.name, s.genotype, s.location, s.temperature_C) for s in shelf.stocks]
+    sheet = layout_of(layout or DEFAULT_LAYOUT)
+    content = stock_labels_pdf(stocks, sheet, names, start_at, copies, outlines)
+    return _write(out, content), shortened_stock_labels(stocks, sheet, names)
 
 
 def write_calendar(

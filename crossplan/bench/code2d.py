@@ -9,6 +9,7 @@ from __future__ import annotations
 
 import re
 from dataclasses import dataclass
+from typing import Any
 
 from crossplan.bench.words import as_date
 
@@ -34,7 +35,7 @@ class VialCode:
 
 def read_vial_code(text: str) -> VialCode | None:
     """Return what a scanned text says, or None when it is no vial code of this form."""
-    match = re.fullmatch(r"crossplan/1 (.+) v(\d+)/(\d+) (\d{4}-\d\d-\d\d|undated)", text.strip())
+    match = re.fullmatch(r"crossplan/1 (?!stock: )(.+) v(\d+)/(\d+) (\d{4}-\d\d-\d\d|undated)", text.strip())
     if match is None:
         return None
     step, vial, vials, day = match.groups()
@@ -46,12 +47,33 @@ def read_vial_code(text: str) -> VialCode | None:
     return VialCode(step, int(vial), int(vials), "" if day == "undated" else day)
 
 
-def pattern(text: str) -> Pattern:
+def stock_code(name: str) -> str:
+    """Return the text of the code on a stock label: `crossplan/1 stock: PT025`."""
+    return f"crossplan/1 stock: {name}"
+
+
+def read_stock_code(text: str) -> str | None:
+    """Return the name of the stock that a scanned text says, or None when it is no stock code of this form."""
+    match = re.fullmatch(r"crossplan/1 stock: (.+)", text.strip())
+    return match.group(1) if match else None
+
+
+def pattern(text: str, mask: int | None = None) -> Pattern:
     """Return the modules of the smallest QR code that holds `text`, without its white border; True is dark.
 
-    Error correction is raised as far as it goes without making the code larger.
+    Error correction is raised as far as it goes without making the code larger. `mask` (0 to 7) is the pattern laid
+    over the code to break up large areas; None for the best by the score of ISO/IEC 18004. A reader takes any.
     """
+    return tuple(tuple(bool(module) for module in row) for row in _code(text, mask).matrix)
+
+
+def best_mask(text: str) -> int:
+    """Return the mask of the best score for `text`. Finding it takes most of the time of making a code, and it is
+    good for the other vials of a cross too, whose codes differ in a digit or two."""
+    return int(_code(text, None).mask)
+
+
+def _code(text: str, mask: int | None) -> Any:
     import segno
 
-    code = segno.make(text, error="l", micro=False, boost_error=True)
-    return tuple(tuple(bool(module) for module in row) for row in code.matrix)
+    return segno.make(text, error="l", micro=False, boost_error=True, mask=mask)

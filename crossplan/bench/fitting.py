@@ -45,39 +45,50 @@ def fit(
     run_on: str = "",
     leading: float = LEADING,
     prose: bool = False,
+    first: float | None = None,
 ) -> Fitted:
     """Fit paragraphs into a box of `width` x `height` mm, in type of `largest` down to `smallest` points.
 
     First choice is one line a paragraph, in the largest type that does it; then lines are broken, again in
     the largest type that does it; then the paragraphs run on, as `run_on` if that is given; at last the
-    text is cut at the end and ends with a mark. A box without room for one line of the smallest type still
+    text is cut at the end and ends with a mark. `prose` is one text without lines of its own; its first line may be
+    narrower, `first` mm. A box without room for one line of the smallest type still
     gets that line.
     """
     sizes = [largest - STEP * i for i in range(int((largest - smallest) / STEP) + 1)]
+    # widths grow with the size of the type, so they are measured once
+    ones = [pages.width_of(p, 1.0, bold) for p in paragraphs]
     for size in [] if prose else sizes:
-        one_each = all(pages.width_of(p, size, bold) <= width for p in paragraphs)
+        one_each = max(ones) * size <= width
         if one_each and len(paragraphs) * line_height(size, leading) <= height + 1e-6:
             return Fitted(size, tuple(pages.wrap(p, size, width, bold)[0] for p in paragraphs), True, leading)
     flowing = run_on or " ".join(paragraphs)
+    ways = [(list(paragraphs), sum(ones)), ([flowing], pages.width_of(flowing, 1.0, bold))]
+    longest = [max(pages.longest_word(t, 1.0, bold) for t in texts) for texts, _ in ways]
+    blank = pages.width_of(" ", 1.0, bold)
     for whole_words in (True, False):
-        for texts in (list(paragraphs), [flowing]):
+        for (texts, total), word in zip(ways, longest, strict=True):
             for size in sizes:
-                if whole_words and any(pages.longest_word(t, size, bold) > width for t in texts):
+                room = int((height + 1e-6) / line_height(size, leading))
+                # a blank at the end of each line takes no room
+                if (whole_words and word * size > width) or (total - room * blank) * size > room * width:
                     continue
-                lines = [line for text in texts for line in pages.wrap(text, size, width, bold)]
-                if len(lines) * line_height(size, leading) <= height + 1e-6:
+                lines = [line for text in texts for line in pages.wrap(text, size, width, bold, first)]
+                if len(lines) <= room:
                     return Fitted(size, tuple(lines), True, leading)
-    return _cut(pages, flowing, width, height, sizes[-1], bold, leading)
+    return _cut(pages, flowing, width, height, sizes[-1], bold, leading, first)
 
 
-def _cut(pages: Pages, text: str, width: float, height: float, size: float, bold: bool, leading: float) -> Fitted:
+def _cut(
+    pages: Pages, text: str, width: float, height: float, size: float, bold: bool, leading: float, first: float | None
+) -> Fitted:
     """Keep as many characters as leave room for the mark; the kept part is found by halving."""
     room = max(1, int((height + 1e-6) / line_height(size, leading)))
     takes = pages.width_of(CUT_MARK, size, bold)
     mark = CUT_MARK if takes <= min(width, 0.2 * width * room) else SHORT_CUT_MARK
 
     def lines(kept: int) -> list[Line]:
-        return pages.wrap(_open_ended(text[:kept]) + mark, size, width, bold)
+        return pages.wrap(_open_ended(text[:kept]) + mark, size, width, bold, first)
 
     low, high = 0, len(text)
     while high - low > 1:

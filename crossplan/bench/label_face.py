@@ -14,7 +14,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
 
-from crossplan.bench.code2d import QUIET_ZONE, VialCode, pattern
+from crossplan.bench.code2d import QUIET_ZONE, VialCode, best_mask, pattern
 from crossplan.bench.fitting import SHORT_CUT_MARK, Fitted, fit
 from crossplan.bench.pdf_page import ASCENT, MM_PER_POINT, NO_BREAK, TIGHT, Pages, line_height
 from crossplan.bench.words import (
@@ -24,8 +24,10 @@ from crossplan.bench.words import (
     dates_phrases,
     fly_text,
     keep_rule,
+    short_genotypes,
     source_text,
     warm,
+    with_sex_sign,
 )
 from crossplan.plan.model import StepRecord
 
@@ -86,12 +88,20 @@ class LabelFace:
         bold: bool = False,
         run_on: str = "",
         prose: bool = False,
+        first: float | None = None,
     ) -> Fitted:
-        return fit(self.pages, texts, width, height, largest, SMALLEST_TYPE, bold, run_on, TIGHT, prose)
+        asked = (tuple(texts), width, height, largest, bold, run_on, prose, first)
+        known: Fitted | None = self.pages.laid_out.get(asked)
+        if known is None:
+            known = fit(self.pages, texts, width, height, largest, SMALLEST_TYPE, bold, run_on, TIGHT, prose, first)
+            self.pages.laid_out[asked] = known
+        return known
 
     def _place_code(self) -> None:
         """Take the largest modules with which the code has at most 66 % of the height, 34 % of the width."""
-        self.code_size = len(pattern(Vial(self.step, vials_of(self.step)).code().text()))
+        longest = Vial(self.step, vials_of(self.step)).code().text()
+        self.mask = best_mask(longest)
+        self.code_size = len(pattern(longest, self.mask))
         modules = self.code_size + 2 * QUIET_ZONE
         room = min(0.66 * self.height, 0.34 * self.width)
         self.module = next((m for m in MODULE_SIZES if m * modules <= room), MODULE_SIZES[-1])
@@ -127,19 +137,27 @@ class LabelFace:
     def _place_middle(self) -> None:
         """Share out what is left: the rule as little as lets it stand whole, the genotype the rest.
 
-        If both cannot stand whole, the genotype has all but one line.
+        If both cannot stand whole, the genotype is given in a short form that ends with a mark; if that is too long
+        too, the rule goes first, since nobody can sort flies by half a rule.
         """
         middle = self.dates_top - self.edge - self.header_height
         self.parents = self._fit_parents(max(ONE_LINE, 0.25 * middle))
         room = middle - self.parents.height
-        for keep_share in (0.4, 0.5, 0.6):
-            self.keep = self._fit_keep(max(ONE_LINE, keep_share * room))
-            self.genotype = self._fit_genotype(room - self.keep.height)
-            if self.keep.whole and self.genotype.whole:
-                break
-        else:
-            self.genotype = self._fit_genotype(room - ONE_LINE)
-        self.keep = self._fit_keep(room - self.genotype.height)
+        forms = (None, *short_genotypes(self.step.keep.fly))
+        if not any(self._share(room, short) for short in forms):
+            self.keep = self._fit_keep(max(ONE_LINE, room - ONE_LINE))
+            self.genotype = self._fit_genotype(room - self.keep.height, forms[-1])
+
+    def _share(self, room: float, short: str | None) -> bool:
+        """Share out `room` between the rule and this form of the genotype; return whether both are there whole."""
+        for keep_room in (0.4 * room, 0.5 * room, 0.6 * room, 0.0):
+            self.keep = self._fit_keep(max(ONE_LINE, keep_room))
+            self.genotype = self._fit_genotype(room - (self.keep.height if keep_room else ONE_LINE), short)
+            if self._all_there:
+                self.keep = self._fit_keep(room - self.genotype.height)
+                if self.keep.whole and self.keep.height <= room - self.genotype.height + 1e-6:
+                    return True
+        return False
 
     def _fit_parents(self, room: float) -> Fitted:
         """Fit mother x father; without room for both names shorten the longer one, so that both show."""
@@ -154,30 +172,45 @@ class LabelFace:
             left[left.index(max(left))] -= 1
 
     def _fit_keep(self, room: float) -> Fitted:
-        """Fit what to keep; below the code in the whole width, unless the temperature stands there."""
-        text = [f"keep {keep_rule(self.step.keep)}"]
-        largest = 0.9 * self.largest
-        if not self.temperature_below and self.below_code >= ONE_LINE:
-            across = self._fit(text, self.width - 2 * self.edge, min(room, self.below_code), largest, prose=True)
-            if across.whole or room < 2 * ONE_LINE:
-                return across
-        return self._fit(text, self.text_width, room, largest, prose=True)
-
-    def _fit_genotype(self, room: float) -> Fitted:
-        """Fit the genotype of the kept flies, in bold if it can stand whole so."""
-        lines = [line.replace(": ", f":{NO_BREAK}", 1) for line in chromosome_lines(self.step.keep.fly)]
-        run_on = fly_text(self.step.keep.fly)
-        for self.bold_genotype in (True, False):
-            fitted = self._fit(lines, self.text_width, room, self.largest, self.bold_genotype, run_on)
+        """Fit what to keep, with a sign for the sex where the word has no room."""
+        rule = keep_rule(self.step.keep)
+        for text in (f"keep {rule}", f"keep {with_sex_sign(rule)}"):
+            fitted = self._fit_rule(text, room)
             if fitted.whole:
                 break
         return fitted
+
+    def _fit_rule(self, text: str, room: float) -> Fitted:
+        """Fit the rule beside the code, or below it in the whole width, or both, the first line beside it.
+
+        Where the temperature stands below the code there is room beside it only.
+        """
+        largest, whole_width = 0.9 * self.largest, self.width - 2 * self.edge
+        if self.temperature_below or self.below_code < ONE_LINE:
+            return self._fit([text], self.text_width, room, largest, prose=True)
+        below = min(room, self.below_code)
+        across = self._fit([text], whole_width, below, largest, prose=True)
+        if across.whole or room < 2 * ONE_LINE:
+            return across
+        both = self._fit([text], whole_width, min(room, below + ONE_LINE), largest, prose=True, first=self.text_width)
+        return both if both.whole else self._fit([text], self.text_width, room, largest, prose=True)
+
+    def _fit_genotype(self, room: float, short: str | None = None) -> Fitted:
+        """Fit the genotype of the kept flies, or its short form and a mark, in bold if it can stand whole so."""
+        lines = [line.replace(": ", f":{NO_BREAK}", 1) for line in chromosome_lines(self.step.keep.fly)]
+        texts, run_on = (lines, fly_text(self.step.keep.fly)) if short is None else ([f"{short} {SHORT_CUT_MARK}"], "")
+        for self.bold_genotype in (True, False):
+            fitted = self._fit(texts, self.text_width, room, self.largest, self.bold_genotype, run_on)
+            if fitted.whole:
+                break
+        self._all_there = fitted.whole and fitted.height <= room + 1e-6
+        return replace(fitted, whole=fitted.whole and short is None)
 
     def draw(self, vial: Vial, x: float, y: float) -> None:
         """Draw the label of one vial with its top left corner at (x, y), in mm."""
         left, top = x + self.edge, y + self.edge
         self._draw_header(vial, left, top)
-        self.pages.modules(x + self.code_left, y + self.code_top, pattern(vial.code().text()), self.module)
+        self.pages.modules(x + self.code_left, y + self.code_top, pattern(vial.code().text(), self.mask), self.module)
         if self.temperature_below:
             wide = self.code_size * self.module / self.pages.width_of(warm(self.step.temperature_C), 1.0, bold=True)
             size = min(9.0, self.below_code / line_height(1.0, TIGHT), wide)

@@ -8,7 +8,7 @@ from __future__ import annotations
 
 import datetime as dt
 import re
-from collections.abc import Sequence
+from collections.abc import Hashable, Sequence
 from importlib.resources import files
 from typing import Any
 
@@ -66,6 +66,8 @@ class Pages:
         fonts: Any = self._pdf.fonts
         self._known = frozenset(fonts["bench"].cmap)
         self._widths: dict[tuple[str, bool], float] = {}
+        #: what was laid out already, by all that it was laid out from: labels of a batch have much in common
+        self.laid_out: dict[Hashable, Any] = {}
 
     def __enter__(self) -> Pages:
         return self
@@ -91,19 +93,23 @@ class Pages:
 
     def width_of(self, text: str | Line, size: float, bold: bool = False) -> float:
         """Return the width in mm of one line of text."""
-        return sum(
-            self._char_width(c, bold) * size * (RAISED_SIZE if raised else 1.0)
-            for part, raised in _line(text)
-            for c in part
-        )
+        widths = self._widths
+        total = 0.0
+        for part, raised in _line(text):
+            for c in part:
+                width = widths.get((c, bold))
+                total += (self._char_width(c, bold) if width is None else width) * (RAISED_SIZE if raised else 1.0)
+        return total * size
 
-    def wrap(self, text: str, size: float, width: float, bold: bool = False) -> list[Line]:
-        """Break a text into lines of at most `width` mm: after a space, `/`, `;` or `,`, else anywhere."""
+    def wrap(self, text: str, size: float, width: float, bold: bool = False, first: float | None = None) -> list[Line]:
+        """Break a text into lines of at most `width` mm, the first of at most `first` mm if that is given: after a
+        space, `/`, `;` or `,`, else anywhere."""
         chars = [(c, raised) for part, raised in raised_runs(re.sub(r"[ \t\r\n]+", " ", text.strip())) for c in part]
         lines: list[Line] = []
         start = 0
         while start < len(chars):
-            end = self._line_end(chars, start, size, width, bold)
+            room = width if first is None or lines else first
+            end = self._line_end(chars, start, size, room, bold)
             lines.append(_joined(chars[start:end]))
             start = end
             while start < len(chars) and chars[start][0] == " ":
@@ -195,16 +201,15 @@ class Pages:
         All modules are one shape: single rectangles are rounded to whole dots one by one by some programs,
         which spoils a code of small modules, and leave seams in others.
         """
-        from fpdf.drawing import PaintedPath
-
-        path = PaintedPath()
-        path.style.fill_color = "#000000"
-        path.style.stroke_color = None
-        path.style.auto_close = True
-        for row, modules in enumerate(pattern):
-            for start, end in _dark_stretches(modules):
-                path.rectangle(x + start * size, y + row * size, (end - start) * size, size)
-        self._pdf.draw_path(path, copy=False)
+        # the library has no quick way to draw many rectangles; in the co-ordinates of the modules the numbers are whole
+        k = 1 / MM_PER_POINT
+        place = f"{size * k:.5g} 0 0 {-size * k:.5g} {x * k:.4f} {(self.height - y) * k:.4f} cm"
+        dark = " ".join(
+            f"{start} {row} {end - start} 1 re"
+            for row, modules in enumerate(pattern)
+            for start, end in _dark_stretches(modules)
+        )
+        self._pdf._out(f"q 0 g {place} {dark} f Q")
 
     def finish(self) -> bytes:
         """Return the file."""

@@ -141,6 +141,46 @@ LAYOUTS: Final[dict[str, SheetLayout]] = {
 }
 
 
+def layout_of(text: str) -> SheetLayout:
+    """Return the layout of this name, or the one that the sizes in the text make.
+
+    `A4 4x11 48.5x25.4` is 4 columns and 11 rows of labels of 48.5 x 25.4 mm; `pitch 50x26` and `margin 8x9` (left x
+    top) may follow; the page may also be `Letter` or `210x297`. `roll 38x19` is a roll.
+
+    Raises:
+        InputError: no layout has this name, or the sizes cannot be read or do not fit.
+    """
+    words = text.replace("×", "x").replace(",", ".").split()
+    if len(words) == 1 or not words:
+        return layout_named(text.strip())
+    try:
+        if words[0].lower() == "roll":
+            return roll(*_pair(words[1]))
+        page = next((name for name in PAPERS if name.lower() == words[0].lower()), None) or _pair(words[0])
+        columns, rows = (int(n) for n in words[1].lower().split("x"))
+        width, height = _pair(words[2])
+        more = dict(zip(words[3::2], (_pair(w) for w in words[4::2]), strict=True))
+        if set(more) - {"pitch", "margin"}:
+            raise ValueError
+    except (ValueError, IndexError):
+        raise InputError(
+            f"the label sheet {text!r} cannot be read",
+            "Write page, columns x rows and size in mm, 'A4 4x11 48.5x25.4', with 'pitch 50x26' and 'margin 8x9' if "
+            "needed; or 'roll 38x19'; or a name.",
+        ) from None
+    pitch, margin = more.get("pitch", (None, None)), more.get("margin", (None, None))
+    return sheet(page, columns, rows, width, height, pitch_x=pitch[0], pitch_y=pitch[1],
+                 margin_left=margin[0], margin_top=margin[1])  # fmt: skip
+
+
+def _pair(text: str) -> tuple[float, float]:
+    """Return `48.5x25.4` as two finite numbers above or at 0; ValueError if it is not that."""
+    first, second = (float(n) for n in text.lower().removesuffix("mm").split("x"))
+    if not (0 <= first < 10_000 and 0 <= second < 10_000):
+        raise ValueError
+    return first, second
+
+
 def layout_named(name: str) -> SheetLayout:
     """Return the layout of this name; InputError lists the names there are."""
     if name not in LAYOUTS:

@@ -128,6 +128,20 @@ def chromosome_lines(fly: FlyRecord) -> tuple[str, ...]:
     return lines or ("+",)
 
 
+def short_genotypes(fly: FlyRecord) -> tuple[str, ...]:
+    """Return shorter and shorter forms of a genotype, each chromosome with its name: without a white-eyed
+    background; then also without landing sites and without what stands around the name of an insertion."""
+    shown = [(name, pair) for name, pair in pairs_of(fly) if not is_plain(pair)]
+    no_white = [(n, p) for n, p in shown if n != "X" or not _only_white(p)] or shown
+    one = "; ".join(f"{name}: {pair_text(pair)}" for name, pair in no_white)
+    inner = re.sub(r"[A-Z]\w*\{[^{}=]*=([^{}]*)\}", r"\1@", one)
+    return one, re.sub(r"@[^\s/;,]*(\([^)\s]*\))?[^\s/;,]*", "", inner)
+
+
+def _only_white(pair: list[list[str]]) -> bool:
+    return all(re.fullmatch(r"w(\[[^\]]*\])?|Y", element) for homologue in pair for element in homologue)
+
+
 def fly_text(fly: FlyRecord) -> str:
     """Return the genotype on one line: as the plan writes it, or put together from the homologues."""
     return fly.genotype or "; ".join(pair_text(pair) for _, pair in pairs_of(fly))
@@ -146,6 +160,14 @@ def parents_text(mother: ParentRecord, father: ParentRecord) -> str:
 def keep_rule(keep: KeepRecord) -> str:
     """Return what to keep in a few words: the plan's own rule, or sex and signs."""
     return keep.rule or keep_words(keep)
+
+
+def with_sex_sign(rule: str) -> str:
+    """Return a rule with a sign in place of the word: `virgin females: curly wings` is `virgin ♀: curly wings`."""
+    short = re.sub(
+        r"^((?:all |virgin )*)(?:fe(male)|male)s\b", lambda m: m[1] + (FEMALE_SIGN if m[2] else MALE_SIGN), rule
+    )
+    return re.sub(r"^both sexes\b", FEMALE_SIGN + MALE_SIGN, short)
 
 
 def keep_words(keep: KeepRecord) -> str:

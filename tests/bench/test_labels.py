@@ -12,9 +12,10 @@ import pytest
 from example_plan import LONG_SYMBOLS, example_plan, long_plan
 from reading_back import codes, packed, pictures, texts
 
-from crossplan.bench.code2d import read_vial_code
-from crossplan.bench.labels import labels_pdf, shortened_labels
+from crossplan.bench.code2d import read_stock_code, read_vial_code, stock_code
+from crossplan.bench.labels import labels_pdf, shortened_labels, shortened_stock_labels, stock_labels_pdf
 from crossplan.bench.sheet_layout import DEFAULT_LAYOUT, LAYOUTS, layout_named, roll, sheet
+from crossplan.bench.stock_label import StockLabel
 from crossplan.errors import InputError
 
 SMALLEST = layout_named("roll-25x13")
@@ -112,7 +113,7 @@ def test_a_long_genotype_on_the_smallest_label_is_shortened_with_a_mark() -> Non
     assert "S04" in shortened_labels(plan, SMALLEST)
     words = texts(labels_pdf(plan, SMALLEST, steps=["S04"]))[0]
     assert "…" in words
-    assert "P{y" in words
+    assert "2: made-up-01" in words
     assert LONG_SYMBOLS[-1] not in words
 
 
@@ -155,6 +156,51 @@ def test_a_character_that_the_font_lacks_is_a_box() -> None:
     assert "□ α-Cat" in texts(labels_pdf(plan, DEFAULT, steps=["S01"]))[0]
 
 
+def test_the_short_form_leaves_out_white_eyes_then_sites_and_says_so() -> None:
+    plan = example_plan()
+    keep = plan.steps[2].keep.model_copy(update={"rule": "males: curly wings"})
+    plan.steps[2] = plan.steps[2].model_copy(update={"keep": keep})
+    words = texts(labels_pdf(plan, SMALLEST, steps=["S03"]))[0]
+    assert "S03" in shortened_labels(plan, SMALLEST)
+    assert "2: AD-K12/CyO; 3: DBD-Q07/TM6B Tb1 …" in words
+
+
+def test_what_to_keep_stands_whole_before_the_genotype_does() -> None:
+    words = texts(labels_pdf(example_plan(), SMALLEST, steps=["S01"]))[0]
+    assert "keep virgin females: curly wings, extra humeral bristles" in words
+
+
+# --- stock labels -------------------------------------------------------------------------------------------
+
+STOCKS = [
+    StockLabel("PT025", "w[1118]; P{y[+t7.7] w[+mC]=AD-K12}attP40/CyO", "T02/12", 18.0),
+    StockLabel("double balancer α", "w; Sp/CyO; TM2/TM6B, Tb[1]"),
+    StockLabel("n" * 900, "w; +; " + " ".join(LONG_SYMBOLS), "cold room, rack 3"),
+]
+
+
+@pytest.mark.parametrize("dpi", [203, 300])
+@pytest.mark.parametrize("name", LAYOUTS)
+def test_stock_codes_are_read_back_and_a_name_too_long_has_none(name: str, dpi: int) -> None:
+    found = codes(stock_labels_pdf(STOCKS[:2], LAYOUTS[name]), dpi)
+    assert sorted(found) == sorted(stock_code(s.name) for s in STOCKS[:2])
+    assert STOCKS[2].name in shortened_stock_labels(STOCKS, LAYOUTS[name])
+
+
+def test_a_stock_label_says_name_place_and_genotype() -> None:
+    words = texts(stock_labels_pdf(STOCKS, DEFAULT, names=["PT025"]))[0]
+    for part in ("PT025", "T02/12 · 18 °C · flipped", "P{y+t7.7 w+mC=AD-K12}attP40/CyO"):
+        assert part in words
+    assert read_stock_code(stock_code("PT 1: a")) == "PT 1: a"
+    assert read_stock_code("crossplan/1 S01 v1/4 undated") is None
+    assert read_vial_code(stock_code("x v1/2 undated")) is None
+
+
+def test_a_stock_that_is_not_on_the_list_is_refused() -> None:
+    with pytest.raises(InputError, match="no PT999"):
+        stock_labels_pdf(STOCKS, DEFAULT, names=["PT999"])
+
+
 # --- choice and places --------------------------------------------------------------------------------------
 
 
@@ -168,6 +214,12 @@ def test_choice_by_step_day_and_person() -> None:
     assert len(codes(labels_pdf(plan, SMALLEST, steps=["S02", "S05"]), 203)) == 4
     assert len(codes(labels_pdf(plan, SMALLEST, dates=["2027-02-22"]), 203)) == 6
     assert len(codes(labels_pdf(plan, SMALLEST, dates=["2027-02-22"], person="Tomas"), 203)) == 2
+
+
+def test_one_vial_printed_again() -> None:
+    assert codes(labels_pdf(example_plan(), SMALLEST, steps=["S04"], vials=[3]), 203) == [
+        "crossplan/1 S04 v3/6 2027-03-22"
+    ]
 
 
 def test_copies_and_a_sheet_already_begun() -> None:

@@ -2,7 +2,7 @@ from __future__ import annotations
 
 import pytest
 
-from crossplan.bench.sheet_layout import LAYOUTS, SheetLayout, layout_named, roll, sheet
+from crossplan.bench.sheet_layout import LAYOUTS, SheetLayout, layout_named, layout_of, roll, sheet
 from crossplan.errors import InputError
 
 
@@ -45,3 +45,23 @@ def test_a_roll_has_one_label_a_page() -> None:
 def test_what_cannot_be_is_refused_in_words(make: object, words: str) -> None:
     with pytest.raises(InputError, match=words):
         make()  # type: ignore[operator]
+
+
+def test_a_layout_from_sizes() -> None:
+    layout = layout_of("A4 4x11 48.5x25.4")
+    assert (layout.columns, layout.rows, layout.label_width, layout.page_height) == (4, 11, 48.5, 297)
+    own = layout_of("210x297 3×8 60x30 pitch 65x33 margin 7x10")
+    assert (own.corner(0), own.corner(4)) == ((7, 10), (72, 43))
+    assert layout_of("letter 3x10 66,7x25,4").page_width == 215.9
+    assert layout_of("roll 38x19mm").per_page == 1
+    assert layout_of("roll-25x13") is LAYOUTS["roll-25x13"]
+
+
+@pytest.mark.parametrize(
+    "text",
+    ["A4 4x11", "A4 4x11 48", "roll", "roll 38", "A9 4x11 40x20", "A4 4x11 nanx20", "A4 2x2 40x20 pitch",
+     "A4 2x2 40x20 gap 3x3", "A4 2x2 40x-20", "", "roll 1e9x20"],
+)  # fmt: skip
+def test_sizes_that_cannot_be_read_are_refused(text: str) -> None:
+    with pytest.raises(InputError):
+        layout_of(text)

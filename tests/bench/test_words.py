@@ -17,6 +17,8 @@ from crossplan.bench.words import (
     pair_text,
     percent,
     raised_runs,
+    short_genotypes,
+    with_sex_sign,
 )
 
 
@@ -82,3 +84,28 @@ def test_superscripts(text: str, runs: tuple[tuple[str, bool], ...]) -> None:
 def test_no_character_is_lost(text: str) -> None:
     rebuilt = "".join(f"[{part}]" if raised else part for part, raised in raised_runs(text))
     assert rebuilt == text
+
+
+@pytest.mark.parametrize(
+    ("rule", "short"),
+    [
+        ("virgin females: curly wings", "virgin ♀: curly wings"),
+        ("males: no females' signs", "♂: no females' signs"),
+        ("all females", "all ♀"),
+        ("both sexes: red eyes", "♀♂: red eyes"),
+        ("curly females", "curly females"),
+    ],
+)
+def test_the_sex_at_the_head_of_a_rule_as_a_sign(rule: str, short: str) -> None:
+    assert with_sex_sign(rule) == short
+
+
+def test_short_genotypes_drop_white_then_sites_and_what_stands_around_a_name() -> None:
+    kept = fly("male", [["AD-K12@attP40"], ["CyO"]], [["P{y[+t7.7] w[+mC]=UAS-Kx}VK00005"], []])
+    assert short_genotypes(kept) == (
+        "2: AD-K12@attP40/CyO; 3: P{y[+t7.7] w[+mC]=UAS-Kx}VK00005/+",
+        "2: AD-K12/CyO; 3: UAS-Kx/+",
+    )
+    assert short_genotypes(fly("female"))[1] == "X: w[1118]"
+    marked = fly("male", [["Sp"], ["CyO"]], x=[["FM7a"], ["Y"]])
+    assert short_genotypes(marked)[1] == "X: FM7a/Y; 2: Sp/CyO"
