@@ -18,6 +18,7 @@ from crossplan.stocks.shelf import Stock
 _UNSURE = re.compile(
     r"(?i)\?|\b(?:if|when|maybe|perhaps|should|could|may|might|check|not sure|mostly|some|few|from|lost|over|crossed)\b"
 )
+_REMARK = re.compile(r"[.,;:()]")
 #: a remark that states that flies with two copies do not live
 _NO_HOMOZYGOTES = re.compile(
     r"(?i)\bhomozyg\w*[\s-]*(?:is |are )?lethal\b|\blethal (?:when |if )?homozyg\w*|\bno homozyg\w*|\bhomozyg\w* (?:never|do(?:es)? not|don't) (?:live|seen|eclose|emerge)"
@@ -97,24 +98,35 @@ def check_notes_against_looks(view: View) -> Iterator[Finding]:
     """A remark about the looks of the flies that the genotype contradicts."""
     patterns = _sign_patterns(view)
     for stock in view.usable:
-        remarks = [r for r in re.split(r"[.,;:()]", stock.notes) if r.strip() and not _UNSURE.search(r)]
-        if not remarks or (stock.reading.female is None and stock.reading.male is None):
+        if not stock.notes or (stock.reading.female is None and stock.reading.male is None):
+            continue
+        said = [found for remark in _REMARK.split(stock.notes) if (found := _statement(remark, patterns)) is not None]
+        if not said:
             continue
         seen, always = _looks(stock, view)
-        for remark in remarks:
-            for pattern, sign, present in patterns:
-                match = pattern.search(remark)
-                if match and (sign not in seen if present else sign in always):
-                    yield found_in(
-                        stock, "looks-contradict", Severity.WARNING,
-                        f"the notes say '{match[0].strip()}', but flies of this genotype"
-                        f" {'do not show it' if present else 'show ' + sign}",
-                        "look at the flies: the vial, the note or the genotype is wrong",
-                    )  # fmt: skip
-                    break
+        for words, sign, present in said:
+            if sign not in seen if present else sign in always:
+                yield found_in(
+                    stock, "looks-contradict", Severity.WARNING,
+                    f"the notes say '{words}', but flies of this genotype"
+                    f" {'do not show it' if present else 'show ' + sign}",
+                    "look at the flies: the vial, the note or the genotype is wrong",
+                )  # fmt: skip
 
 
-def _sign_patterns(view: View) -> list[tuple[re.Pattern[str], str, bool]]:
+Statement = tuple[re.Pattern[str], str, bool]
+
+
+def _statement(remark: str, patterns: list[Statement]) -> tuple[str, str, bool] | None:
+    """Return what a remark states about a sign: its words, the sign, and whether it is said to be there."""
+    for pattern, sign, present in patterns:
+        match = pattern.search(remark)
+        if match:
+            return None if _UNSURE.search(remark) else (match[0].strip(), sign, present)
+    return None
+
+
+def _sign_patterns(view: View) -> list[Statement]:
     """Return for each easy adult sign how a remark says that it is there, or that it is not."""
     patterns = []
     for sign in view.catalogue.signs.values():

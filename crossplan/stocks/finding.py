@@ -80,8 +80,11 @@ class View:
     @cached_property
     def lives(self) -> tuple[tuple[Stock, str | None, str | None], ...]:
         """Each usable stock with why its flies as written die, and why they are sterile; None where they are not."""
-        told = []
+        told: list[tuple[Stock, str | None, str | None]] = []
         for stock in self.usable:
+            if _is_harmless(stock):
+                told.append((stock, None, None))
+                continue
             flies = [f for f in (stock.reading.female, stock.reading.male) if f is not None]
             dead = next((c for f in flies if (c := cause_of_death(f))), None)
             told.append((stock, dead, dead or next((w for f in flies if (w := sterile_because(f))), None)))
@@ -106,6 +109,23 @@ class View:
 
 
 Rule = Callable[[View], Iterator[Finding]]
+
+
+def _is_harmless(stock: Stock) -> bool:
+    """Return whether nothing that the stock carries kills or sterilises anybody, so that its flies need no judging."""
+    for element in stock.reading.elements:
+        does = element.traits
+        if (
+            does.lethal
+            or does.male_lethal
+            or does.female_sterile
+            or does.male_sterile
+            or does.linked_to
+            or does.compound
+        ):
+            return False
+    male = stock.reading.male
+    return male is None or male.pair("X")[1].is_y
 
 
 def found_in(stock: Stock, code: str, severity: Severity, message: str, suggestion: str) -> Finding:
