@@ -58,6 +58,8 @@ CODES: Mapping[str, Code] = {
     "insertion-on-balancer": Code("sorting against the balancer throws the insertion away"),
     "not-told-apart": Code("copies of mini-white cannot be counted or told apart by eye colour (Levis et al. 1985, Science"
                            " 229:558)"),
+    "eye-colour-masked": Code("picking coloured eyes keeps flies without the insertion: w[a] and red eyes pass for mini-white"
+                              " (stock-centre pages on X balancers)"),
     "unseen-marker": Code("a scheme that sorts by its marker would sort blindly"),
     "near-symbol": Code("a name written two ways is two insertions to every plan", ("genotype",)),
     # what transgenes do

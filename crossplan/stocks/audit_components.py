@@ -19,6 +19,8 @@ from crossplan.stocks.shelf import Stock
 #: classes of transgene whose cautions concern whoever keeps or crosses the stock; what a bare half-driver or reporter does
 #: is known to everybody
 CAUTIOUS_CLASSES = frozenset(("effector", "repressor", "helper"))
+#: classes that hold whatever no other class takes: their caution says no more than that
+CATCH_ALL = frozenset(("other UAS", "other LexAop", "other QUAS"))
 _SPLIT_WORDS = re.compile(r"(?i)\bsplit[\s-]*(?:gal4|line|driver|pair)?\b")
 _GAL4_IN_BALANCER = re.compile(r"(?i)(?:Kr|twi)-?GFP")
 _GREEN = "green fluorescence"
@@ -189,7 +191,9 @@ def _caution(symbol: str, kind: str, catalogue: Catalogue) -> tuple[str, str, st
         balancer = catalogue.balancer(symbol)
         return (balancer.name, balancer.caution, balancer.origin) if balancer is not None and balancer.caution else None
     entry = _entry(symbol.partition("@")[0], catalogue) if kind in CAUTIOUS_CLASSES else None
-    return (entry.name, entry.caution, entry.origin) if entry is not None and entry.caution else None
+    if entry is None or not entry.caution or entry.name in CATCH_ALL:
+        return None
+    return entry.name, entry.caution, entry.origin
 
 
 def check_missing_half(view: View) -> Iterator[Finding]:

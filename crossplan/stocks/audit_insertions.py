@@ -127,6 +127,34 @@ def _free_insertions(fly: Fly) -> list[Element]:
     return list(free)
 
 
+def check_eye_colour(view: View) -> Iterator[Finding]:
+    """Insertions with mini-white beside a balancer that colours the eye itself, or whose white eyes are not white."""
+    masked: dict[str, list[Stock]] = {}
+    for stock, fly in view.flies:
+        balancers = [e for h in dict.fromkeys(h for _, h in fly.homologues()) for e in h.elements if e.is_balancer]
+        colouring = [b for b in balancers if _colours_eyes(b)]
+        if not colouring:
+            continue
+        others = (e for _, h in fly.homologues() if h.balancer is None for e in h.elements)
+        if any(e.kind is Kind.INSERTION and WHITE in e.traits.restores for e in others):
+            for balancer in colouring:
+                masked.setdefault(balancer.symbol, []).append(stock)
+    for symbol, stocks in sorted(masked.items()):
+        yield found_among(
+            stocks, "eye-colour-masked", Severity.NOTE,
+            f"{symbol} colours the eyes itself, so they do not tell whether a fly with it has an insertion marked with"
+            f" mini-white: {listed(s.name for s in stocks)}",
+            "follow the insertion by the absence of a balancer, or use one with white eyes, such as FM7h",
+        )  # fmt: skip
+
+
+def _colours_eyes(balancer: Element) -> bool:
+    """Return whether a white-eyed fly with one copy, or a male with it as his X, has colour in its eyes."""
+    if balancer.traits.compound:
+        return False
+    return WHITE in balancer.traits.restores or (balancer.chromosome == "X" and WHITE not in balancer.traits.null_for)
+
+
 def check_unseen_marker(view: View) -> Iterator[Finding]:
     """Insertions over a balancer whose own marker cannot be seen on the background of their stock, said once."""
     unseen: list[tuple[Stock, str]] = []

@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator
 
 from crossplan.errors import Problem, Severity
+from crossplan.genetics.element import Kind
 from crossplan.stocks.finding import Finding, View, found_among, found_in, listed, number_of
 from crossplan.stocks.shelf import Stock
 
@@ -77,7 +78,7 @@ def check_two_places(view: View) -> Iterator[Finding]:
     for stock, fly in view.flies:
         for chromosome, homologue in fly.homologues():
             for element in homologue.elements:
-                if not (element.is_balancer or element.site or homologue.is_y):
+                if element.kind in (Kind.INSERTION, Kind.UNKNOWN) and not element.site and homologue.balancer is None:
                     places.setdefault(element.symbol, {}).setdefault(chromosome, []).append(stock)
     for symbol, by_chromosome in places.items():
         if len(by_chromosome) > 1:

@@ -265,6 +265,7 @@ FAULTS: tuple[Callable[[Maker], Fault], ...] = (
     lambda m: _one("site-trouble", N, f"w; {m.insertion('AD', 'attP40')}; +", m),
     lambda m: _one("insertion-on-balancer", N, f"w; {m.pick('Sco', 'If')}/CyO, UAS-{m.word()}{m.new()}; +", m),
     lambda m: _one("not-told-apart", W, f"w; UAS-{m.word()}{m.new()}@VK00018/UAS-{m.word()}{m.new()}@VK00001; +", m),
+    lambda m: _one("eye-colour-masked", N, f"w[1118]/{m.pick('FM7a', 'FM7d', 'Basc')}; {m.on_2('UAS')}/CyO; +", m),
     lambda m: _one("unseen-marker", N, f"w; P{{y[+t7.7] v[+t1.8]=UAS-{m.word()}{m.new()}.IR}}attP40/CyO; +", m),
     _near_symbols,
     # what transgenes do

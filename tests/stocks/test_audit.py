@@ -190,6 +190,14 @@ CASES = [
         "all give eye colour", ["A|w; UAS-Zap@VK00018/CyO; UAS-Zop@attP2/TM3, Sb"], id="two coloured insertions",
     ),
     pytest.param(
+        "eye-colour-masked", Severity.NOTE, "stock|genotype", ["A|FM7a/w[1118]; UAS-Zap@VK00018/CyO"], "A", "FM7a colours",
+        ["A|FM7h/w[1118]; UAS-Zap@VK00018/CyO", "B|FM7a/w[1118]; Sco/CyO"], id="w[a] passes for mini-white",
+    ),
+    pytest.param(
+        "eye-colour-masked", Severity.NOTE, "stock|genotype", ["A|w; UAS-Zap@VK00018/CyO-GFP"], "A", "CyO-GFP colours",
+        ["A|w; UAS-Zap@VK00018/CyO"], id="the balancer brings mini-white",
+    ),
+    pytest.param(
         "unseen-marker", Severity.NOTE, "stock|genotype",
         ["A|w; P{v[+t1.8] y[+t7.7]=UAS-zap.IR}VK00018/CyO"], "A", "A (UAS-zap.IR@VK00018",
         ["A|y v; P{v[+t1.8] y[+t7.7]=UAS-zap.IR}VK00018/CyO"], id="vermilion sought on white eyes",
