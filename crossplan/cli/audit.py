@@ -36,7 +36,9 @@ def audit(
     stocks: Annotated[Path, typer.Option("--stocks", help="Stock list: CSV, TSV, XLSX or ODS.")],
     screen: Annotated[Path | None, typer.Option("--screen", help="Screen file: what is missing for it?")] = None,
     sheet: Annotated[str | None, typer.Option(help="Sheet of a workbook with several.")] = None,
-    settings: Annotated[Path | None, typer.Option(help="How to read the list (written by 'crossplan shelf --remember').")] = None,
+    settings: Annotated[
+        Path | None, typer.Option(help="How to read the list (written by 'crossplan shelf --remember').")
+    ] = None,
     today: Annotated[str | None, typer.Option(help="Judge dates as of this day (YYYY-MM-DD).")] = None,
     notes: Annotated[bool, typer.Option("--notes", help="Show notes too, not only errors and warnings.")] = False,
     accepted: Annotated[Path | None, typer.Option(help="Findings accepted before (see 'crossplan accept').")] = None,
@@ -77,7 +79,9 @@ def accept(
         "accepted.toml"
     ),
     sheet: Annotated[str | None, typer.Option(help="Sheet of a workbook with several.")] = None,
-    settings: Annotated[Path | None, typer.Option(help="How to read the list (written by 'crossplan shelf --remember').")] = None,
+    settings: Annotated[
+        Path | None, typer.Option(help="How to read the list (written by 'crossplan shelf --remember').")
+    ] = None,
     today: Annotated[str | None, typer.Option(help="Judge dates as of this day (YYYY-MM-DD).")] = None,
     lab_file: Annotated[Path | None, typer.Option("--lab", help="The lab's own catalogue entries (TOML).")] = None,
 ) -> None:

@@ -53,7 +53,9 @@ def correct(
         Path | None, typer.Option(help="Write the corrected table here (CSV), and the changes beside it.")
     ] = None,
     sheet: Annotated[str | None, typer.Option(help="Sheet of a workbook with several.")] = None,
-    settings: Annotated[Path | None, typer.Option(help="How to read the list (written by 'crossplan shelf --remember').")] = None,
+    settings: Annotated[
+        Path | None, typer.Option(help="How to read the list (written by 'crossplan shelf --remember').")
+    ] = None,
     lab_file: Annotated[Path | None, typer.Option("--lab", help="The lab's own catalogue entries (TOML).")] = None,
     as_json: Annotated[bool, typer.Option("--json", help="Print one JSON document.")] = False,
 ) -> None:

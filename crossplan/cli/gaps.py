@@ -29,7 +29,9 @@ def gaps(
     offers: Annotated[Path | None, typer.Option(help="A list of stocks that can be had elsewhere.")] = None,
     quick: Annotated[bool, typer.Option("--quick", help="Look at the parts only, search no schemes.")] = False,
     sheet: Annotated[str | None, typer.Option(help="Sheet of a workbook with several.")] = None,
-    settings: Annotated[Path | None, typer.Option(help="How to read the list (written by 'crossplan shelf --remember').")] = None,
+    settings: Annotated[
+        Path | None, typer.Option(help="How to read the list (written by 'crossplan shelf --remember').")
+    ] = None,
     html: Annotated[Path | None, typer.Option(help="Write a report to read in a browser.")] = None,
     table: Annotated[Path | None, typer.Option("--csv", help="Write the targets as a CSV table.")] = None,
     lab_file: Annotated[Path | None, typer.Option("--lab", help="The lab's own catalogue entries (TOML).")] = None,

@@ -28,7 +28,9 @@ def rota(
     plan: Annotated[Path | None, typer.Option(help="A plan: its expansions and collections are put in.")] = None,
     out: Annotated[Path | None, typer.Option(help="Folder for bench list, calendar and table.")] = None,
     sheet: Annotated[str | None, typer.Option(help="Sheet of a workbook with several.")] = None,
-    settings: Annotated[Path | None, typer.Option(help="How to read the list (written by 'crossplan shelf --remember').")] = None,
+    settings: Annotated[
+        Path | None, typer.Option(help="How to read the list (written by 'crossplan shelf --remember').")
+    ] = None,
     lab_file: Annotated[Path | None, typer.Option("--lab", help="The lab's own catalogue entries (TOML).")] = None,
     as_json: Annotated[bool, typer.Option("--json", help="Print one JSON document.")] = False,
 ) -> None:
@@ -65,7 +67,9 @@ def checklist(
     stocks: Annotated[Path, typer.Option("--stocks", help="Stock list: CSV, TSV, XLSX or ODS.")],
     out: Annotated[Path, typer.Option(help="The table to write.")] = Path("yearly_checks.csv"),
     sheet: Annotated[str | None, typer.Option(help="Sheet of a workbook with several.")] = None,
-    settings: Annotated[Path | None, typer.Option(help="How to read the list (written by 'crossplan shelf --remember').")] = None,
+    settings: Annotated[
+        Path | None, typer.Option(help="How to read the list (written by 'crossplan shelf --remember').")
+    ] = None,
     lab_file: Annotated[Path | None, typer.Option("--lab", help="The lab's own catalogue entries (TOML).")] = None,
 ) -> None:
     """Write what the flies of every stock must look like, to be checked once a year."""

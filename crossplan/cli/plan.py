@@ -30,7 +30,9 @@ def plan(
         str | None, typer.Option(help="First day of work (YYYY-MM-DD); the screen file's start, or today, otherwise.")
     ] = None,
     sheet: Annotated[str | None, typer.Option(help="Sheet of a workbook with several.")] = None,
-    settings: Annotated[Path | None, typer.Option(help="How to read the list (written by 'crossplan shelf --remember').")] = None,
+    settings: Annotated[
+        Path | None, typer.Option(help="How to read the list (written by 'crossplan shelf --remember').")
+    ] = None,
     lab_file: Annotated[Path | None, typer.Option("--lab", help="The lab's own catalogue entries (TOML).")] = None,
     as_json: Annotated[bool, typer.Option("--json", help="Print the plan as one JSON document.")] = False,
 ) -> None:
