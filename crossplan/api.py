@@ -855,7 +855,7 @@ def write_calendar(
     *,
     dates: str | None = None,
     person: str | None = None,
-    alarm_minutes: int | None = None,
+    alarm_minutes: Sequence[int] | None = None,
     instead_of: Path | None = None,
 ) -> int:
     """Write the calendar of a plan; return its size in bytes. `instead_of` is the calendar file or plan given out before."""
@@ -863,9 +863,54 @@ def write_calendar(
 
     previous: Plan | bytes | None = None
     if instead_of is not None:
-        previous = instead_of.read_bytes() if instead_of.suffix == ".ics" else load_plan(instead_of)
+        previous = _read(instead_of) if instead_of.suffix == ".ics" else load_plan(instead_of)
     content = calendar_ics(load_plan(plan), parse_days(dates), person, alarm_minutes, previous)
     return _write(out, content)
+
+
+def write_calendars(
+    plan: Path,
+    folder: Path,
+    *,
+    dates: str | None = None,
+    alarm_minutes: Sequence[int] | None = None,
+    instead_of: Path | None = None,
+) -> tuple[Path, ...]:
+    """Write a calendar for each person into a folder, `calendar-NAME.ics`; return the files.
+
+    `instead_of` is the plan given out before, or the folder that holds its calendars.
+
+    Raises:
+        InputError: the plan names nobody, or `instead_of` is neither.
+        OutputError: the folder cannot be written.
+    """
+    from crossplan.bench.calendar_file import calendars_by_person
+    from crossplan.bench.plan_folder import write_files
+
+    if instead_of is not None and instead_of.suffix == ".ics":
+        raise InputError(
+            f"{instead_of} is one calendar file", "Give the earlier plan, or the folder with its calendars, instead."
+        )
+    found = sorted(instead_of.glob("calendar-*.ics")) if instead_of is not None and instead_of.is_dir() else []
+    made = load_plan(plan)
+    if found:
+        before: Plan | dict[str, bytes] | None = {p.stem.removeprefix("calendar-"): _read(p) for p in found}
+    else:
+        before = load_plan(instead_of) if instead_of is not None else None
+    calendars = calendars_by_person(made, parse_days(dates), alarm_minutes, before)
+    files = {f"calendar-{who.replace('/', '-')}.ics": content for who, content in calendars.items()}
+    try:
+        folder.mkdir(parents=True, exist_ok=True)
+        return write_files(folder, files)
+    except OSError as error:
+        raise OutputError(f"cannot write into {folder}: {error.strerror or error}", "choose another folder") from error
+
+
+def _read(path: Path) -> bytes:
+    try:
+        return path.read_bytes()
+    except OSError as error:
+        raise InputError(f"cannot read {path}: {error.strerror or error}", "check the name of the file") from error
 
 
 def _write(out: Path, content: bytes) -> int:

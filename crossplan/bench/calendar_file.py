@@ -2,7 +2,7 @@
 
 One entry is one round: all that one person does at one hour of one day, in walking order, since nobody
 wants forty entries at nine o'clock. Assays are entries of their own, because they are at the rig and others
-need to see them.
+need to see them. Emptying vials in the morning, for virgins later that day, is part of the morning's round.
 
 An entry is named after the first of its tasks (by task id) and the screen, so that it keeps its identity
 when the plan is made again and the round moves to another day or hour. The time stamp comes from the plan,
@@ -17,26 +17,30 @@ from __future__ import annotations
 
 import datetime as dt
 import re
-from collections.abc import Iterable
+from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
 from itertools import groupby
 from typing import Any
 from zoneinfo import ZoneInfo
 
-from crossplan.bench.choice import check_person, chosen_days, chosen_tasks, first_day, natural
-from crossplan.bench.words import WALKING_ORDER, Day, count, keep_rule, listed, parents_text, warm
+from crossplan.bench.choice import check_person, chosen_days, chosen_tasks, first_day, natural, people_of
+from crossplan.bench.walk import EMPTY, ORDER, Stop, vials_for, walk_of
+from crossplan.bench.words import Day, count, keep_rule, listed, parents_text, warm
 from crossplan.errors import InputError
-from crossplan.plan.model import Plan, StepRecord, TaskRecord
+from crossplan.plan.model import Plan
 
+#: What the identity of every entry ends with: entries of others are never touched.
+OURS = ".crossplan"
 #: An entry whose tasks bring no minutes with them is shown this long.
 SHORTEST_MINUTES = 15
 DOING = {
+    EMPTY: "empty vials of",
     "clear": "clear",
     "collect": "collect from",
     "shift": "move to another temperature:",
     "food": "special food for",
-    "expand": "expand stock for",
-    "virgins": "virgins from stock for",
+    "expand": "expand",
+    "virgins": "virgins from",
     "set up": "set up",
     "assay": "assay",
     "discard": "discard",
@@ -56,11 +60,16 @@ class Entry:
 
     def same_as(self, event: Any) -> bool:
         """Whether an event of an earlier file says the same."""
+        try:
+            start, length = event.decoded("DTSTART"), event.decoded("DURATION")
+        except (KeyError, ValueError):
+            return False
         return (
             _text(event, "SUMMARY") == self.summary
             and _text(event, "DESCRIPTION") == self.description
-            and event.decoded("DTSTART").replace(tzinfo=None) == self.start
-            and event.decoded("DURATION") == dt.timedelta(minutes=self.minutes)
+            and isinstance(start, dt.datetime)
+            and start.replace(tzinfo=None) == self.start
+            and length == dt.timedelta(minutes=self.minutes)
         )
 
 
@@ -68,7 +77,7 @@ def calendar_ics(
     plan: Plan,
     dates: Iterable[Day] | None = None,
     person: str | None = None,
-    alarm_minutes: int | None = None,
+    alarm_minutes: int | Sequence[int] | None = None,
     previous: Plan | bytes | None = None,
 ) -> bytes:
     """Return the calendar file.
@@ -79,10 +88,11 @@ def calendar_ics(
             times of whoever reads the file.
         dates: only these days; None for all.
         person: only this person; None for everybody.
-        alarm_minutes: remind so many minutes before each entry; None for no reminder.
+        alarm_minutes: remind so many minutes before each entry, once or several times; None for no reminder.
         previous: what was given out before, as a plan or, better, as the very file (made for the same days
         and
-            person). Entries that changed get the next sequence number, entries that are gone are cancelled.
+            person). Entries that changed get the next sequence number, entries that are gone are cancelled; what
+            stands in the file and is none of ours is left alone.
             A plan counts as given out once; only the file knows of more than one change.
 
     Raises InputError for an unknown person, day or time zone, or a previous file that cannot be read.
@@ -102,6 +112,30 @@ def calendar_ics(
     return _calendar(plan, zone, events)
 
 
+def calendars_by_person(
+    plan: Plan,
+    dates: Iterable[Day] | None = None,
+    alarm_minutes: int | Sequence[int] | None = None,
+    previous: Plan | Mapping[str, bytes] | None = None,
+) -> dict[str, bytes]:
+    """Return a calendar file for each person of the plan, and for those whose work of before is gone, by name.
+
+    `previous` is the earlier plan, or the earlier files by person.
+
+    Raises InputError for a plan that names nobody, and as `calendar_ics` does.
+    """
+    before = set(people_of(previous)) if isinstance(previous, Plan) else set(previous or ())
+    people = sorted(before | set(people_of(plan)))
+    if not people:
+        raise InputError("the plan names nobody", 'Name people in the screen file: [calendar] people = ["..."].')
+    days = None if dates is None else list(dates)
+    found = {}
+    for who in people:
+        earlier = previous if isinstance(previous, Plan) or previous is None else previous.get(who)
+        found[who] = calendar_ics(plan, days, who, alarm_minutes, earlier)
+    return found
+
+
 def entries_of(plan: Plan, dates: Iterable[Day] | None = None, person: str | None = None) -> list[Entry]:
     """Return the rounds and assays on these days (None: all) of this person (None: everybody), in order of
     time.
@@ -109,64 +143,84 @@ def entries_of(plan: Plan, dates: Iterable[Day] | None = None, person: str | Non
     Rounds are put together before they are chosen, so that an entry is the same whatever is asked for.
     """
     days = chosen_days(dates)
-    tasks = [t for t in chosen_tasks(plan) if person is None or t.person == person]
-
-    def round_of(task: TaskRecord) -> tuple[str, str, str, str]:
-        return (task.date, task.time, task.person, task.target or task.step if task.kind == "assay" else "")
-
-    rounds = [list(group) for _, group in groupby(sorted(tasks, key=round_of), key=round_of)]
-    entries = [_entry(plan, tasks) for tasks in rounds if days is None or tasks[0].date in days]
+    tasks = sorted((t for t in chosen_tasks(plan) if person is None or t.person == person), key=lambda t: t.person)
+    entries = []
+    for who, theirs in groupby(tasks, key=lambda t: t.person):
+        for (date, time, _), stops in groupby(sorted(walk_of(plan, theirs), key=_round), key=_round):
+            if days is None or date in days:
+                entries.append(_entry(plan, date, time, who, list(stops)))
     return sorted(entries, key=lambda e: (e.start, natural(e.uid)))
 
 
-def _entry(plan: Plan, tasks: list[TaskRecord]) -> Entry:
-    first = min(tasks, key=lambda t: natural(t.id))
-    ordered = sorted(tasks, key=lambda t: (WALKING_ORDER.index(t.kind), natural(t.step), natural(t.id)))
+def _round(stop: Stop) -> tuple[str, str, str]:
+    """Return what the stops of one entry have in common: day and hour, and for an assay its target."""
+    task = stop.tasks[0]
+    return (stop.date, stop.time, task.target or task.step if stop.kind == "assay" else "")
+
+
+def _entry(plan: Plan, date: str, time: str, person: str, stops: list[Stop]) -> Entry:
+    ids = sorted((t.id for s in stops if s.kind != EMPTY for t in s.tasks), key=natural)
+    # a round that only empties vials is named after the first collection that it is for
+    first = ids[0] if ids else min((t.id for s in stops for t in s.tasks), key=natural) + "-empty"
+    ordered = sorted(stops, key=lambda s: (ORDER.index(s.kind), natural(s.place)))
     return Entry(
-        uid=f"{_plain(first.id)}@{_plain(plan.screen.name)}.crossplan",
-        start=dt.datetime.fromisoformat(f"{first.date}T{first.time}"),
-        minutes=max(SHORTEST_MINUTES, sum(t.minutes for t in tasks)),
-        person=first.person,
+        uid=f"{_plain(first)}@{_plain(plan.screen.name)}{OURS}",
+        start=dt.datetime.fromisoformat(f"{date}T{time}"),
+        minutes=max(SHORTEST_MINUTES, sum(s.minutes for s in stops)),
+        person=person,
         summary=_summary(ordered),
-        description="\n".join(_description(plan, ordered)),
+        description="\n".join(_description(plan, ordered, person)),
     )
 
 
-def _summary(tasks: list[TaskRecord]) -> str:
-    """Return `Flies: clear S01 and S02; collect from S03`; above four steps of a kind only how many."""
-    if tasks[0].kind == "assay":
-        return f"Assay: {tasks[0].target or tasks[0].step}"
+def _summary(stops: list[Stop]) -> str:
+    """Return `Flies: clear S01 and S02; collect from S03`; above four of a kind only how many."""
+    first = stops[0]
+    if first.kind == "assay":
+        return f"Assay: {first.tasks[0].target or first.place}"
     parts = []
-    for kind, group in groupby(tasks, key=lambda t: t.kind):
-        steps = list(dict.fromkeys(t.step for t in group))
-        parts.append(f"{DOING[kind]} {listed(steps) if len(steps) <= 4 else count(len(steps), 'cross', 'crosses')}")
+    for kind, group in groupby(stops, key=lambda s: s.kind):
+        here = list(group)
+        places = list(dict.fromkeys(s.place for s in here))
+        many = count(
+            len(places), "stock" if all(s.stock for s in here) else "cross", "" if here[0].stock else "crosses"
+        )
+        parts.append(f"{DOING[kind]} {listed(places) if len(places) <= 4 else many}")
     return f"Flies: {'; '.join(parts)}"
 
 
-def _description(plan: Plan, tasks: list[TaskRecord]) -> list[str]:
-    steps = {step.id: step for step in plan.steps}
+def _description(plan: Plan, stops: list[Stop], person: str) -> list[str]:
     lines = []
-    for kind, group in groupby(tasks, key=lambda t: t.kind):
+    for kind, group in groupby(stops, key=lambda s: s.kind):
         lines.append(kind.upper())
-        lines += [_task_line(task, steps.get(task.step)) for task in group]
-    if tasks[0].person:
-        lines.append(f"Person: {tasks[0].person}")
+        lines += [_stop_line(plan, stop) for stop in group]
+    if person:
+        lines.append(f"Person: {person}")
     return lines
 
 
-def _task_line(task: TaskRecord, step: StepRecord | None) -> str:
-    parts = [task.step]
-    if step and task.kind == "set up":
+def _stop_line(plan: Plan, stop: Stop) -> str:
+    step = next((s for s in plan.steps if s.id == stop.place), None)
+    task, vials = stop.tasks[0], sum(vials_for(plan, stop).values())
+    where = next((s.mother.location for s in plan.steps if stop.stock and s.mother.stock == stop.stock), "")
+    parts = [f"{stop.place} ({where})" if where else stop.place]
+    if stop.kind in (EMPTY, "expand", "virgins", "clear", "discard") and vials:
+        parts.append(count(vials, "vial"))
+    if stop.stock and vials:
+        parts.append(f"for {', '.join(stop.steps)}")
+    if stop.kind == EMPTY:
+        parts.append(f"virgins at {stop.then}")
+    if step and stop.kind == "set up":
         parts.append(
             f"{parents_text(step.mother, step.father)}, {count(step.vials, 'vial')}, {warm(step.temperature_C)}"
         )
-    if step and task.kind == "collect":
+    if step and stop.kind == "collect":
         parts.append(keep_rule(step.keep))
-    if step and task.kind in ("clear", "discard"):
-        parts.append(count(step.vials, "vial"))
-    if task.target and task.kind != "assay":
+    if task.target and stop.kind != "assay":
         parts.append(task.target)
-    return "- " + " – ".join(part for part in [", ".join(parts), task.note] if part)
+    # the notes of what is done to a stock say no more than this line and the hour of emptying
+    note = "" if stop.stock and vials else stop.note
+    return "- " + " – ".join(part for part in [", ".join(parts), note] if part)
 
 
 def _plain(text: str) -> str:
@@ -204,7 +258,7 @@ def _previous_events(previous: Plan | bytes | None, dates: Iterable[Day] | None,
         previous = calendar_ics(previous, dates, person)
     try:
         events = Calendar.from_ical(previous).walk("VEVENT")
-        return {_text(event, "UID"): event for event in events}
+        return {_text(event, "UID"): event for event in events if _text(event, "UID").endswith(OURS)}
     except (ValueError, KeyError, IndexError):
         raise InputError("the earlier calendar file cannot be read", "Give the file as crossplan wrote it.") from None
 
@@ -217,7 +271,11 @@ def _text(event: Any, name: str) -> str:
 
 
 def _event(
-    entry: Entry, zone: ZoneInfo | None, stamp: dt.datetime, before: Any | None, alarm_minutes: int | None
+    entry: Entry,
+    zone: ZoneInfo | None,
+    stamp: dt.datetime,
+    before: Any | None,
+    alarm_minutes: int | Sequence[int] | None,
 ) -> Any:
     from icalendar import Event
 
@@ -232,8 +290,9 @@ def _event(
     event.add("description", entry.description)
     event.add("sequence", sequence)
     event.add("status", "CONFIRMED")
-    if alarm_minutes is not None:
-        event.add_component(_alarm(entry, alarm_minutes))
+    several = (alarm_minutes,) if isinstance(alarm_minutes, int) else alarm_minutes or ()
+    for minutes in sorted(set(several), reverse=True):
+        event.add_component(_alarm(entry, minutes))
     return event
 
 
@@ -257,7 +316,8 @@ def _cancelled(before: Any, stamp: dt.datetime) -> Any:
     sequence = int(before.get("SEQUENCE", 0)) + fresh
     event = Event()
     for name in ("UID", "DTSTART", "DURATION", "SUMMARY", "DESCRIPTION"):
-        event[name] = before[name]
+        if name in before:
+            event[name] = before[name]
     event.add("dtstamp", stamp + dt.timedelta(minutes=sequence))
     event.add("sequence", sequence)
     event.add("status", "CANCELLED")

@@ -1,4 +1,4 @@
-"""`crossplan calendar PLAN`: the calendar file again, for some days or one person."""
+"""`crossplan calendar PLAN`: the calendar file again, for some days, one person, or a file for each person."""
 
 from __future__ import annotations
 
@@ -17,20 +17,37 @@ def register(app: typer.Typer) -> None:
 
 def calendar(
     plan: Annotated[Path, typer.Argument(help="plan.json, or the folder that holds it.")],
-    out: Annotated[Path, typer.Option("--out", help="iCalendar file to write.")] = Path("calendar.ics"),
+    out: Annotated[
+        Path | None, typer.Option("--out", help="iCalendar file to write; with --per-person the folder.")
+    ] = None,
     dates: Annotated[str | None, typer.Option("--dates", help="Only these days: DAY or FROM..TO (YYYY-MM-DD).")] = None,
     person: Annotated[str | None, typer.Option("--person", help="Only this person's work.")] = None,
-    alarm: Annotated[int | None, typer.Option("--alarm", help="Remind this many minutes before.")] = None,
+    per_person: Annotated[bool, typer.Option("--per-person", help="A file for each person.")] = False,
+    alarm: Annotated[
+        list[int] | None, typer.Option("--alarm", help="Remind this many minutes before; may be given again.")
+    ] = None,
     instead_of: Annotated[
-        Path | None, typer.Option("--instead-of", help="Earlier plan.json: its work that is gone is cancelled.")
+        Path | None,
+        typer.Option("--instead-of", help="Earlier calendar or plan.json: its work that is gone is cancelled."),
     ] = None,
     as_json: Annotated[bool, typer.Option("--json", help="Print one JSON document.")] = False,
 ) -> None:
     """Write the calendar of a plan (iCalendar)."""
     from crossplan import api
+    from crossplan.errors import InputError
 
-    size = api.write_calendar(plan, out, dates=dates, person=person, alarm_minutes=alarm, instead_of=instead_of)
-    if as_json:
-        print_json({"written": str(out), "bytes": size})
+    if per_person:
+        if person is not None:
+            raise InputError("--person and --per-person contradict each other", "Give one of them.")
+        written = api.write_calendars(plan, out or Path(), dates=dates, alarm_minutes=alarm, instead_of=instead_of)
     else:
-        console().print(f"wrote {out}")
+        place = out or Path("calendar.ics")
+        api.write_calendar(plan, place, dates=dates, person=person, alarm_minutes=alarm, instead_of=instead_of)
+        written = (place,)
+    if as_json and not per_person:
+        print_json({"written": str(written[0]), "bytes": written[0].stat().st_size})
+    elif as_json:
+        print_json({"written": [str(p) for p in written], "bytes": sum(p.stat().st_size for p in written)})
+    else:
+        for path in written:
+            console().print(f"wrote {path}", markup=False, soft_wrap=True)

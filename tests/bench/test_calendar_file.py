@@ -5,11 +5,11 @@ import re
 
 import ics
 import pytest
-from example_plan import example_plan
+from example_plan import example_plan, virgins_plan
 from hypothesis import given
 from hypothesis import strategies as st
 
-from crossplan.bench.calendar_file import calendar_ics, entries_of
+from crossplan.bench.calendar_file import calendar_ics, calendars_by_person, entries_of
 from crossplan.errors import InputError
 from crossplan.plan.model import Plan
 
@@ -235,6 +235,64 @@ def test_choice_by_person_and_day() -> None:
 def test_reminders_come_before_the_entry() -> None:
     assert set(properties(calendar_ics(example_plan(), alarm_minutes=45), "TRIGGER")) == {"-PT45M"}
     assert b"VALARM" not in calendar_ics(example_plan())
+
+
+def test_several_reminders() -> None:
+    data = calendar_ics(example_plan(), alarm_minutes=[10, 1440, 10])
+    assert sorted(set(properties(data, "TRIGGER"))) == ["-P1D", "-PT10M"]
+    assert data.count(b"BEGIN:VALARM") == 2 * data.count(b"BEGIN:VEVENT")
+
+
+def test_emptying_for_virgins_stands_in_the_morning() -> None:
+    found = {e.start.strftime("%H:%M"): e for e in entries_of(virgins_plan(), ["2027-03-17"], "Tomas")}
+    morning = found["08:30"]
+    assert morning.summary == "Flies: empty vials of CsChrimson attP18; expand CsChrimson attP18"
+    assert "- CsChrimson attP18 (tray 7, vial 1), 8 vials, for S04, S05, virgins at 15:00" in morning.description
+    assert found["15:00"].summary == "Flies: virgins from CsChrimson attP18"
+    (ida,) = [e for e in entries_of(virgins_plan(), ["2027-03-17"], "Ida") if e.start.hour == 8]
+    assert ida.summary.startswith("Flies: empty vials of CsChrimson attP18 and S01")
+
+
+def test_a_round_that_only_empties_has_an_identity_of_its_own() -> None:
+    plan = virgins_plan()
+    plan.tasks[:] = [t for t in plan.tasks if t.kind != "expand"]
+    data = calendar_ics(plan, dates=["2027-03-17"], person="Tomas")
+    assert sorted(events(data)) == [
+        "S04-virgins-1-empty@red-light-batch-1.crossplan",
+        "S04-virgins-1@red-light-batch-1.crossplan",
+    ]
+
+
+def test_two_libraries_read_the_same_hours_on_both_sides_of_the_change() -> None:
+    import icalendar
+
+    data = calendar_ics(example_plan(), alarm_minutes=15)
+    ours = {str(e["UID"]): e.decoded("DTSTART").timestamp() for e in icalendar.Calendar.from_ical(data).walk("VEVENT")}
+    theirs = {uid: e.begin.timestamp() for uid, e in events(data).items()}
+    assert ours == theirs
+    assert len({dt.datetime.fromtimestamp(t, dt.UTC).hour for t in ours.values()}) > 2
+
+
+def test_a_file_for_each_person_and_for_who_has_left() -> None:
+    before = calendars_by_person(example_plan())
+    assert before == {who: calendar_ics(example_plan(), person=who) for who in ("Ida", "Tomas")}
+    plan = example_plan()
+    alone = plan.model_copy(update={"tasks": [t.model_copy(update={"person": "Ida"}) for t in plan.tasks],
+                                    "steps": [s.model_copy(update={"person": "Ida"}) for s in plan.steps]})  # fmt: skip
+    after = calendars_by_person(alone, previous=before)
+    assert set(properties(after["Tomas"], "STATUS")) == {"CANCELLED"}
+    assert after["Tomas"].count(b"BEGIN:VEVENT") == before["Tomas"].count(b"BEGIN:VEVENT")
+    assert calendars_by_person(alone, previous=example_plan()) == after
+    nobody = plan.model_copy(update={"tasks": [], "steps": []})
+    with pytest.raises(InputError, match="nobody"):
+        calendars_by_person(nobody)
+
+
+def test_entries_of_others_in_the_earlier_file_are_left_alone() -> None:
+    other = b"BEGIN:VEVENT\r\nUID:dentist@elsewhere\r\nDTSTART;VALUE=DATE:20270308\r\nSUMMARY:Dentist\r\nEND:VEVENT\r\n"
+    first = calendar_ics(example_plan())
+    mixed = first.replace(b"BEGIN:VEVENT", other + b"BEGIN:VEVENT", 1)
+    assert calendar_ics(example_plan(), previous=mixed) == first
 
 
 @pytest.mark.parametrize(
