@@ -36,6 +36,7 @@ from crossplan.genetics.progeny import ProgenyClass as ProgenyClass
 from crossplan.genetics.sorting import is_hidden
 
 if TYPE_CHECKING:
+    from crossplan.bench.terminal import TextLine as TextLine
     from crossplan.genetics.catalogue import Catalogue
     from crossplan.logbook.day import DayReport as DayReport
     from crossplan.plan.model import Plan as Plan
@@ -904,6 +905,33 @@ def write_calendars(
         return write_files(folder, files)
     except OSError as error:
         raise OutputError(f"cannot write into {folder}: {error.strerror or error}", "choose another folder") from error
+
+
+def show(plan: Plan, what: str, width: int = 80, person: str | None = None) -> list[TextLine]:
+    """Return what a plan says of a cross, a target or a day, in lines for a terminal.
+
+    Raises:
+        InputError: the plan holds nothing of this name, or has no work for the person.
+    """
+    from crossplan.bench.terminal import show_lines
+
+    return show_lines(plan, what, width, person)
+
+
+def show_json(plan: Plan, what: str, person: str | None = None) -> dict[str, Any]:
+    """Return the same as one JSON document: `{"step": ...}`, `{"target": ..., "steps": [...]}` or `{"day": ..., "tasks": [...]}`."""
+    from crossplan.bench.choice import chosen_tasks
+    from crossplan.bench.scheme_drawing import crosses_of
+    from crossplan.bench.terminal import shown
+    from crossplan.plan.model import StepRecord, TargetRecord
+
+    found = shown(plan, what)
+    if isinstance(found, StepRecord):
+        return {"step": found.model_dump(by_alias=True)}
+    if isinstance(found, TargetRecord):
+        steps = [step.model_dump(by_alias=True) for step in crosses_of(plan, found)]
+        return {"target": found.model_dump(by_alias=True), "steps": steps}
+    return {"day": found, "tasks": [task.model_dump() for task in chosen_tasks(plan, [found], person)]}
 
 
 def _read(path: Path) -> bytes:

@@ -56,6 +56,11 @@ def forms_of(plan: Plan, steps: Sequence[str] | None = None) -> list[Form]:
     ]
 
 
+def crosses_of(plan: Plan, target: TargetRecord) -> tuple[StepRecord, ...]:
+    """Return the crosses of a target's scheme, generation by generation."""
+    return _crosses(target, {step.id: step for step in plan.steps})
+
+
 def _crosses(target: TargetRecord, known: dict[str, StepRecord]) -> tuple[StepRecord, ...]:
     crosses = [known[step] for step in target.scheme if step in known]
     place = {step: at for at, step in enumerate(target.scheme)}
