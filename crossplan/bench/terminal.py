@@ -128,7 +128,13 @@ def fly_drawing(fly: FlyRecord, chromosomes: Sequence[str], width: int) -> list[
         wide = max(len(above), len(below), 3)
         columns.append((above.center(wide), "─" * wide, below.center(wide), name.center(wide)))
     if any(len(column[1]) > width for column in columns):
-        return list(chromosome_lines(fly))
+        return [
+            part
+            for line in chromosome_lines(fly)
+            for part in textwrap.wrap(
+                line, width, subsequent_indent="   ", break_long_words=False, break_on_hyphens=False
+            )
+        ]
     lines: list[str] = []
     row: list[tuple[str, str, str, str]] = []
     for column in columns:

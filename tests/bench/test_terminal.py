@@ -32,7 +32,7 @@ def test_homologues_stand_above_and_below_a_line() -> None:
 def test_a_narrow_terminal_takes_chromosomes_below_each_other_and_then_on_lines() -> None:
     pair = fly("female", [["AD-K12@attP40"], ["CyO"]])
     assert len(fly_drawing(pair, ["X", "2"], 20)) == 8
-    assert fly_drawing(pair, ["X", "2"], 12) == ["X: w[1118]", "2: AD-K12@attP40/CyO"]
+    assert fly_drawing(pair, ["X", "2"], 12) == ["X: w[1118]", "2:", "   AD-K12@attP40/CyO"]
 
 
 def test_a_wide_terminal_has_mother_and_father_side_by_side() -> None:
