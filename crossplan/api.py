@@ -362,12 +362,14 @@ def audit_stocks(
         search: whether schemes are searched for the screen, beyond what the parts alone tell.
     """
     from crossplan.stocks.accepted import mark_accepted, read_accepted
-    from crossplan.stocks.audit import audit
+    from crossplan.stocks.audit import audit, collector_held
 
     catalogue = load_catalogue(lab_file)
-    shelf = read_stocks(stocks, settings=settings, lab_file=lab_file)
+    with collector_held():
+        shelf = read_stocks(stocks, settings=settings, lab_file=lab_file)
     gaps, wanted = (None, {}) if screen is None else _gaps_for(screen, shelf, catalogue, None, search, None)
-    findings = audit(shelf, today, catalogue, wanted)
+    with collector_held():
+        findings = audit(shelf, today, catalogue, wanted)
     stale: tuple[Problem, ...] = ()
     if accepted is not None:
         findings, stale = mark_accepted(findings, read_accepted(accepted), shelf, str(accepted))

@@ -7,7 +7,9 @@ finding matters stands in `audit_codes`.
 from __future__ import annotations
 
 import datetime as dt
-from collections.abc import Iterable, Mapping
+import gc
+from collections.abc import Iterable, Iterator, Mapping
+from contextlib import contextmanager
 from dataclasses import replace
 
 from crossplan.errors import Severity
@@ -25,7 +27,7 @@ from crossplan.stocks.audit_codes import why_of
 from crossplan.stocks.finding import Finding, Rule, View
 from crossplan.stocks.shelf import Shelf
 
-__all__ = ["FAMILIES", "RULES", "Finding", "Rule", "View", "audit"]
+__all__ = ["FAMILIES", "RULES", "Finding", "Rule", "View", "audit", "collector_held"]
 
 #: the files of rules, in the order in which they are asked
 FAMILIES = (
@@ -41,6 +43,22 @@ RULES: tuple[Rule, ...] = tuple(
     rule for family in FAMILIES for name, rule in vars(family).items() if name.startswith("check_")
 )
 _RANK = {Severity.ERROR: 0, Severity.WARNING: 1, Severity.NOTE: 2}
+
+
+@contextmanager
+def collector_held() -> Iterator[None]:
+    """Hold Python's collector of cyclic garbage.
+
+    A long list makes millions of values, none of them cyclic, and the collector would walk through all of them again and
+    again.
+    """
+    was_on = gc.isenabled()
+    gc.disable()
+    try:
+        yield
+    finally:
+        if was_on:
+            gc.enable()
 
 
 def audit(

@@ -29,10 +29,10 @@ _BROAD_LETHAL = re.compile(r"(?i)\belav")
 
 @dataclass(frozen=True)
 class Part:
-    """An element with the class of transgene that the catalogue finds for it."""
+    """An element with the class of transgene that it is, and the row of the catalogue that says more of it."""
 
     element: Element
-    entry: ComponentEntry | None
+    catalogue: Catalogue
 
     @property
     def cls(self) -> str:
@@ -40,7 +40,11 @@ class Part:
 
     @property
     def row(self) -> str:
-        return self.entry.name if self.entry is not None else ""
+        """The name of the row; empty for drivers and their halves, of which the class says enough."""
+        if self.cls not in CAUTIOUS_CLASSES and self.cls != "reporter":
+            return ""
+        entry = _entry(self.element.symbol.partition("@")[0], self.catalogue)
+        return entry.name if entry is not None else ""
 
 
 @dataclass(frozen=True)
@@ -113,10 +117,10 @@ CLASHES: tuple[Clash, ...] = (
 
 def clashes(elements: Iterable[Element], catalogue: Catalogue) -> Iterator[tuple[Clash, Element, Element]]:
     """Yield what does not go together among the elements of one fly, each clash once."""
-    parts = [Part(e, _entry(e.symbol.partition("@")[0], catalogue)) for e in dict.fromkeys(elements)]
-    parts = [p for p in parts if p.entry is not None or p.element.traits.dominant or p.cls]
-    if len(parts) < 2:
+    active = [e for e in dict.fromkeys(elements) if e.component or e.traits.dominant]
+    if len(active) < 2:
         return
+    parts = [Part(e, catalogue) for e in active]
     for clash in CLASHES:
         pair = next(((a, b) for a in parts if clash.one(a) for b in parts if b is not a and clash.other(b)), None)
         if pair is not None:
@@ -146,10 +150,10 @@ def check_temperature(view: View) -> Iterator[Finding]:
         for element in elements:
             if "l(3)DTS4" in element.traits.lethal and stock.temperature_C >= 29:
                 yield _too_warm(stock, element, "its l(3)DTS4 kills all carriers at 29 C", 25)
-            entry = _entry(element.symbol.partition("@")[0], view.catalogue)
-            if entry is None or entry.rear_max_C is None or stock.temperature_C <= entry.rear_max_C:
+            if not (element.component == "helper" or (driven and element.component in CAUTIOUS_CLASSES)):
                 continue
-            if driven or entry.cls == "helper":
+            entry = _entry(element.symbol.partition("@")[0], view.catalogue)
+            if entry is not None and entry.rear_max_C is not None and stock.temperature_C > entry.rear_max_C:
                 yield _too_warm(stock, element, "it acts, or leaks, when warm", entry.rear_max_C)
 
 

@@ -158,17 +158,17 @@ def _colours_eyes(balancer: Element) -> bool:
 def check_unseen_marker(view: View) -> Iterator[Finding]:
     """Insertions over a balancer whose own marker cannot be seen on the background of their stock, said once."""
     unseen: list[tuple[Stock, str]] = []
-    for stock, fly in view.flies:
-        mutant = _mutant_genes(fly)
-        for _, carrier, opposite in opposites(fly):
-            if opposite.balancer is None or carrier.balancer is not None:
-                continue
-            for element in carrier.elements:
-                if element.kind is not Kind.INSERTION or not element.traits.restores or element.traits.dominant:
-                    continue
-                if not _shows(element, mutant):
-                    genes = "".join(f"{g}+" for g in sorted(element.traits.restores))
-                    unseen.append((stock, f"{stock.name} ({element.symbol}, {genes})"))
+    for stock, fly, _, carrier, opposite in view.facing:
+        if opposite.balancer is None or carrier.balancer is not None:
+            continue
+        marked = [
+            e for e in carrier.elements if e.kind is Kind.INSERTION and e.traits.restores and not e.traits.dominant
+        ]
+        mutant = _mutant_genes(fly) if marked else frozenset[str]()
+        for element in marked:
+            if not _shows(element, mutant):
+                genes = "".join(f"{g}+" for g in sorted(element.traits.restores))
+                unseen.append((stock, f"{stock.name} ({element.symbol}, {genes})"))
     if unseen:
         yield found_among(
             [stock for stock, _ in unseen], "unseen-marker", Severity.NOTE,
