@@ -43,7 +43,24 @@ app = typer.Typer(
     context_settings={"help_option_names": ["-h", "--help"]},
 )
 
-for module in (plan, progeny, read, shelf, audit, gaps, keep, compare, labels, calendar, show, today, log, rear, count, demo):
+for module in (
+    plan,
+    progeny,
+    read,
+    shelf,
+    audit,
+    gaps,
+    keep,
+    compare,
+    labels,
+    calendar,
+    show,
+    today,
+    log,
+    rear,
+    count,
+    demo,
+):
     module.register(app)
 
 #: what the shell expects of a program that was stopped with Ctrl-C
