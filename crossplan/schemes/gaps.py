@@ -113,8 +113,8 @@ class _Finder:
         #: elements by every name under which a component may mean them, and by those names with one letter less
         self._near: dict[str, dict[str, Carried]] = {}
         for symbol, carried in self.shelf.items():
-            for name in {symbol, base_name(symbol), carried.element.standard} - {""}:
-                for key in _one_less(name):
+            for name in dict.fromkeys((symbol, base_name(symbol), carried.element.standard)):
+                for key in _one_less(name) if name else ():
                     self._near.setdefault(key, {})[symbol] = carried
         self._found: dict[str, Carried | Refusal] = {}
         self._brought: dict[str, Source | None] = {}

@@ -20,7 +20,7 @@ _WEAK = re.compile(r"(?i)\b(?:sick|weak|poor|dying|mites?|mou?ld\w*|contaminat\w
 
 def check_copies(view: View) -> Iterator[Finding]:
     """Stocks that hang by one vial."""
-    for stock in view.usable:
+    for stock in view.kept:
         if stock.copies is not None and stock.copies < FEWEST_COPIES:
             targets = view.targets_of(stock)
             more = (
@@ -41,7 +41,7 @@ def _depending(targets: tuple[str, ...]) -> str:
 
 def check_transfers(view: View) -> Iterator[Finding]:
     """Stocks that are overdue for new food, by their temperature."""
-    for stock in view.usable:
+    for stock in view.kept:
         if stock.last_transfer is None:
             continue
         days = (view.today - stock.last_transfer).days
@@ -61,7 +61,7 @@ def check_transfers(view: View) -> Iterator[Finding]:
 
 def check_dates_missing(view: View) -> Iterator[Finding]:
     """Stocks never dated, once, where the list has dates."""
-    undated = [s for s in view.usable if s.last_transfer is None]
+    undated = [s for s in view.kept if s.last_transfer is None]
     if undated and any(s.last_transfer for s in view.shelf.stocks):
         yield found_among(undated, "never-dated", Severity.NOTE,
                           f"{len(undated)} stock(s) have no date of transfer: {listed(s.name for s in undated)}",
@@ -70,7 +70,7 @@ def check_dates_missing(view: View) -> Iterator[Finding]:
 
 def check_places(view: View) -> Iterator[Finding]:
     """Stocks without a tray, once, where the list has trays."""
-    lost = [s for s in view.usable if not s.tray]
+    lost = [s for s in view.kept if not s.tray]
     if lost and any(s.tray for s in view.shelf.stocks):
         yield found_among(lost, "no-place", Severity.NOTE,
                           f"{len(lost)} stock(s) have no tray: {listed(s.name for s in lost)}",
@@ -79,9 +79,9 @@ def check_places(view: View) -> Iterator[Finding]:
 
 def check_sources(view: View) -> Iterator[Finding]:
     """Stocks of which nothing says where they came from, once, where the list mostly says it."""
-    usable = view.usable
-    missing = [s for s in usable if not s.source]
-    if missing and len(usable) - len(missing) >= USUALLY_FILLED * len(usable):
+    kept = view.kept
+    missing = [s for s in kept if not s.source]
+    if missing and len(kept) - len(missing) >= USUALLY_FILLED * len(kept):
         yield found_among(missing, "no-source", Severity.NOTE,
                           f"{number_of(len(missing), 'stock does', 'stocks do')} not say where it came from:"
                           f" {listed(s.name for s in missing)}",
@@ -90,7 +90,7 @@ def check_sources(view: View) -> Iterator[Finding]:
 
 def check_temperatures(view: View) -> Iterator[Finding]:
     """Temperatures at which no stock is kept."""
-    for stock in view.usable:
+    for stock in view.kept:
         kept = stock.temperature_C
         if kept is not None and not COLDEST_C <= kept <= WARMEST_C:
             yield found_in(stock, "odd-temperature", Severity.WARNING, f"kept at {kept:g} C",
@@ -128,7 +128,7 @@ def check_quarantine(view: View) -> Iterator[Finding]:
 
 def check_health(view: View) -> Iterator[Finding]:
     """Stocks that the list itself calls weak or infested."""
-    for stock in view.usable:
+    for stock in view.kept:
         match = _WEAK.search(stock.status)
         if match:
             targets = view.targets_of(stock)

@@ -26,6 +26,9 @@ FIELDS = {
     "notes": "notes",
 }
 
+#: characters of a genotype that a message shows
+MOST_SHOWN = 200
+
 
 @dataclass(frozen=True, slots=True)
 class Change:
@@ -60,7 +63,7 @@ def compare(old: Shelf, new: Shelf) -> tuple[Change, ...]:
     ]
     new_names = set(renamed.values())
     changes += [
-        Change("gained", s.name, f"{s.name} is new: {_genotype(s)}", after=_genotype(s))
+        Change("gained", s.name, f"{s.name} is new: {_genotype(s)}{_newcomer(s)}", after=_genotype(s))
         for s in gained
         if s.name not in new_names
     ]
@@ -72,8 +75,15 @@ def compare(old: Shelf, new: Shelf) -> tuple[Change, ...]:
     return tuple(changes)
 
 
+def _newcomer(stock: Stock) -> str:
+    """Return a word of warning for a stock that came from elsewhere and is not in quarantine."""
+    made_here = any(word in stock.source.lower() for word in ("here", "injected", "this lab"))
+    return "" if not stock.source or made_here or "quarantine" in stock.status.lower() else " (not in quarantine)"
+
+
 def _genotype(stock: Stock) -> str:
-    return stock.reading.canonical or stock.genotype
+    text = stock.reading.canonical or stock.genotype
+    return text if len(text) <= MOST_SHOWN else text[: MOST_SHOWN - 3] + "..."
 
 
 def _renamed(lost: Iterable[Stock], gained: Iterable[Stock]) -> Iterator[tuple[str, str]]:

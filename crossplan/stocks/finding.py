@@ -67,6 +67,11 @@ class View:
         return self.shelf.usable()
 
     @cached_property
+    def kept(self) -> tuple[Stock, ...]:
+        """The stocks in use, understood or not: food and copies are owed to all of them."""
+        return tuple(s for s in self.shelf.stocks if s.in_use)
+
+    @cached_property
     def flies(self) -> tuple[tuple[Stock, Fly], ...]:
         """Each usable stock with its female, or its male where it has no female."""
         both = ((s, s.reading.female or s.reading.male) for s in self.usable)

@@ -50,7 +50,7 @@ def _one_letter_apart(names: list[str]) -> Iterator[tuple[str, str]]:
             if len(word) < FEWEST_LETTERS or word.isdigit():
                 continue
             rest = (*words[:i], str(i), *words[i + 1 :])
-            for variant in {word, *(word[:k] + word[k + 1 :] for k in range(len(word)))}:
+            for variant in dict.fromkeys((word, *(word[:k] + word[k + 1 :] for k in range(len(word))))):
                 meeting.setdefault((*rest, variant), []).append((name, word))
     for group in meeting.values():
         for k, (one, word) in enumerate(group):

@@ -380,6 +380,12 @@ def test_stocks_out_of_use_are_not_judged(tmp_path: Path) -> None:
     assert findings(tmp_path, rows, "stock|genotype|copies|last flip|status") == ()
 
 
+def test_a_stock_that_is_not_understood_is_kept_all_the_same(tmp_path: Path) -> None:
+    rows = ["A|w; Sco/CyO/If|1|2026-08-01", "B|w; UAS-Zap|1|2026-08-01"]
+    found = {(f.code, f.stock) for f in findings(tmp_path, rows, "stock|genotype|copies|last flip")}
+    assert {(code, stock) for code in ("single-copy", "overdue") for stock in "AB"} <= found
+
+
 def test_errors_come_first_then_rows_in_order(tmp_path: Path) -> None:
     rows = ["A|w|1", "B|w; Sco/+|2", "C|y|1", "D|f; Sco/Sco|2"]
     found = findings(tmp_path, rows, "stock|genotype|copies")

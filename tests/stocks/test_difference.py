@@ -59,3 +59,20 @@ def test_equal_lists_have_no_difference_whatever_the_order(tmp_path: Path) -> No
 def test_a_change_on_two_chromosomes_is_two_changes(tmp_path: Path) -> None:
     found = changes(tmp_path, ["A|w; Sco/CyO; TM3, Sb/TM6B, Tb|2|"], ["A|w; If/CyO; MKRS/TM6B, Tb|2|"])
     assert [c.chromosome for c in found] == ["2", "3"]
+
+
+@pytest.mark.parametrize(
+    ("source", "status", "warned"),
+    [
+        ("Heron lab 2026", "ok", True),
+        ("Heron lab 2026", "in quarantine", False),
+        ("made here", "ok", False),
+        ("", "ok", False),
+    ],
+)
+def test_a_newcomer_that_is_not_in_quarantine_is_said(source: str, status: str, warned: bool, tmp_path: Path) -> None:
+    old, new = tmp_path / "a.csv", tmp_path / "b.csv"
+    old.write_text("stock|genotype|source|status\nA|w||ok\n", encoding="utf-8")
+    new.write_text(f"stock|genotype|source|status\nA|w||ok\nB|y|{source}|{status}\n", encoding="utf-8")
+    (change,) = compare(read_stocks(old), read_stocks(new))
+    assert ("not in quarantine" in change.message) is warned
