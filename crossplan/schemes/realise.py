@@ -17,7 +17,8 @@ from crossplan.genetics.fly import Fly
 from crossplan.genetics.progeny import Progeny, ProgenyClass, cross
 from crossplan.genetics.sorting import easily_mistaken, rule_for, words_of
 from crossplan.schemes.forms import Form, Reducer, Source
-from crossplan.schemes.search import Leaf, Node, accepted_looks
+from crossplan.schemes.scheme import Leaf, Node
+from crossplan.schemes.whole_progeny import accepted_looks
 from crossplan.schemes.wish import Wish
 
 

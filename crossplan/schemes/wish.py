@@ -84,3 +84,11 @@ class Wish:
     def carried(self, homologue: Homologue) -> frozenset[str]:
         """Return the wanted elements that the homologue carries."""
         return frozenset(homologue.symbols).intersection(self.symbols)
+
+
+def may_be_given(wish: Wish, chromosome: str, homologue: Homologue) -> bool:
+    """Return whether a gamete with this homologue can be one half of a wanted fly."""
+    if any(wish.forbids(e) for e in homologue.elements):
+        return False
+    doubled = {s for s, place, copies in wish.components if copies > 1 and place == chromosome}
+    return doubled <= set(homologue.symbols)

@@ -7,7 +7,8 @@ import pytest
 from crossplan.genetics.appearance import Observer
 from crossplan.genetics.catalogue import default_catalogue
 from crossplan.schemes.forms import reduce_shelf
-from crossplan.schemes.search import Node, Status, find_schemes
+from crossplan.schemes.scheme import Node
+from crossplan.schemes.search import Status, find_schemes
 from tests.schemes import brute_force
 from tests.schemes.random_shelves import random_case
 
