@@ -263,12 +263,17 @@ def _day_lines(plan: Plan, day: str, width: int, person: str | None) -> list[Tex
 
 def stop_lines(plan: Plan, stop: Stop, width: int) -> list[TextLine]:
     """Return one stop of a day's walk, its place in front."""
-    step = next((s for s in plan.steps if s.id == stop.place), None)
     who = f" [{', '.join(stop.people)}]" if stop.people else ""
-    return _wrapped("; ".join(part for part in _stop_parts(plan, stop, step) if part) + who, width, stop.place)
+    return _wrapped(stop_words(plan, stop) + who, width, stop.place)
 
 
-def _stop_parts(plan: Plan, stop: Stop, step: StepRecord | None) -> list[str]:
+def stop_words(plan: Plan, stop: Stop) -> str:
+    """Return what is done at a stop, on one line, without its place and people."""
+    return "; ".join(part for part in _stop_parts(plan, stop) if part)
+
+
+def _stop_parts(plan: Plan, stop: Stop) -> list[str]:
+    step = next((s for s in plan.steps if s.id == stop.place), None)
     vials = vials_for(plan, stop)
     total = count(sum(vials.values()), "vial")
     if stop.kind == EMPTY:
