@@ -7,14 +7,19 @@ from collections.abc import Iterator
 
 from crossplan.errors import Severity
 from crossplan.stocks.finding import Finding, View, found_among, found_in, listed, number_of
-from crossplan.stocks.keeping import FEWEST_COPIES, OVERDUE_FACTOR, USUAL_TEMPERATURE, flip_interval_days
+from crossplan.stocks.keeping import (
+    FEWEST_COPIES,
+    OVERDUE_FACTOR,
+    USUAL_TEMPERATURE,
+    flip_interval_days,
+    is_quarantined,
+)
 from crossplan.stocks.shelf import Stock
 
 #: temperatures in degrees C between which stocks are kept (common practice, no source)
 COLDEST_C, WARMEST_C = 16.0, 29.0
 #: a column that at least this share of the list fills is one that the lab means to keep filled (our choice)
 USUALLY_FILLED = 0.5
-_QUARANTINE = re.compile(r"(?i)\bquarantine")
 _WEAK = re.compile(r"(?i)\b(?:sick|weak|poor|dying|mites?|mou?ld\w*|contaminat\w*|infected|wolbachia)\b")
 
 
@@ -112,7 +117,7 @@ def check_places_shared(view: View) -> Iterator[Finding]:
 
 def check_quarantine(view: View) -> Iterator[Finding]:
     """Newcomers in quarantine: what they are, once; and those that share a tray with the others."""
-    kept = [s for s in view.shelf.stocks if _QUARANTINE.search(s.status)]
+    kept = [s for s in view.shelf.stocks if is_quarantined(s)]
     if not kept:
         return
     trays = {s.tray: s for s in reversed(view.shelf.stocks) if s.tray and s.in_use}

@@ -13,6 +13,7 @@ from crossplan.genetics.catalogue import Catalogue
 from crossplan.genetics.chromosome import PAIRS
 from crossplan.genetics.fly import Fly, Homologue
 from crossplan.genetics.survival import cause_of_death, sterile_because
+from crossplan.stocks.keeping import is_kept
 from crossplan.stocks.shelf import Shelf, Stock
 
 #: a finding that concerns many stocks names so many of them in its message (all are in `stocks`)
@@ -68,8 +69,8 @@ class View:
 
     @cached_property
     def kept(self) -> tuple[Stock, ...]:
-        """The stocks in use, understood or not: food and copies are owed to all of them."""
-        return tuple(s for s in self.shelf.stocks if s.in_use)
+        """The stocks to which food and copies are owed, understood or not."""
+        return tuple(s for s in self.shelf.stocks if is_kept(s))
 
     @cached_property
     def flies(self) -> tuple[tuple[Stock, Fly], ...]:

@@ -8,6 +8,10 @@ a Drosophila laboratory, from memory).
 
 from __future__ import annotations
 
+import re
+
+from crossplan.stocks.shelf import Stock
+
 INTERVALS = ((18.0, 28.0), (21.5, 21.0), (25.0, 14.0))
 OVERDUE_FACTOR = 1.5
 FEWEST_COPIES = 2
@@ -27,3 +31,13 @@ def flip_interval_days(temperature_C: float) -> float:
         if a <= temperature_C <= b:
             return days_a + (days_b - days_a) * (temperature_C - a) / (b - a)
     raise AssertionError("intervals do not cover the temperature")
+
+
+def is_quarantined(stock: Stock) -> bool:
+    """Return whether the list says that the stock stands apart, until it is known to be clean."""
+    return re.search(r"(?i)\bquarantine", stock.status) is not None
+
+
+def is_kept(stock: Stock) -> bool:
+    """Return whether food and copies are owed to it: it is in use, or in quarantine (where flies are fed, but not used)."""
+    return stock.in_use or (is_quarantined(stock) and stock.copies != 0)

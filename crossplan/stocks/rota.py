@@ -14,7 +14,7 @@ from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass, field
 from math import ceil
 
-from crossplan.stocks.keeping import OVERDUE_FACTOR, USUAL_TEMPERATURE, flip_interval_days
+from crossplan.stocks.keeping import OVERDUE_FACTOR, USUAL_TEMPERATURE, flip_interval_days, is_kept
 from crossplan.stocks.shelf import Shelf, Stock
 
 #: how far a transfer may be brought forward, as a share of its interval (our choice)
@@ -59,7 +59,7 @@ def make_rota(shelf: Shelf, start: dt.date, days: int, week: Week | None = None)
     """Return all transfers of the period, in order of day, person and place.
 
     Args:
-        shelf: the stocks; those out of use are left out, those never dated are due at once.
+        shelf: the stocks; those that are gone are left out, those in quarantine are fed.
         start: first day of the period.
         days: its length.
         week: working days and people; Monday to Friday and nobody by name by default.
@@ -68,7 +68,7 @@ def make_rota(shelf: Shelf, start: dt.date, days: int, week: Week | None = None)
     open_days = [d for i in range(days) if calendar.works(d := start + dt.timedelta(days=i))]
     last = start + dt.timedelta(days=days - 1)
     load: dict[dt.date, int] = dict.fromkeys(open_days, 0)
-    wanted = [w for stock in shelf.stocks if stock.in_use for w in _halves(stock, start)]
+    wanted = [w for stock in shelf.stocks if is_kept(stock) for w in _halves(stock, start)]
     planned: list[Transfer] = []
     # those with the least room first; a stock that is flipped twice in the period comes back with its next due day
     queue = sorted(wanted, key=lambda w: (w.latest, w.stock.row, w.half))

@@ -100,8 +100,8 @@ def test_an_overdue_stock_comes_first_and_is_said(tmp_path: Path) -> None:
 
 
 def test_stocks_out_of_use_and_an_empty_period(tmp_path: Path) -> None:
-    shelf = shelf_of(tmp_path, ["A|w|2|18|2026-11-01|T1|1|dead", "B|y|2|18||T1|2|ok"])
-    assert {t.stock.name for t in make_rota(shelf, START, 28)} == {"B"}
+    shelf = shelf_of(tmp_path, ["A|w|2|18|2026-11-01|T1|1|dead", "B|y|2|18||T1|2|ok", "C|f|2|18||Q1|1|quarantine"])
+    assert {t.stock.name for t in make_rota(shelf, START, 28)} == {"B", "C"}
     assert make_rota(shelf, dt.date(2026, 12, 5), 2) == ()
 
 
