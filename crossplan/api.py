@@ -592,7 +592,14 @@ def transfer_rota(
 
 
 def write_rota(
-    transfers: Sequence[Transfer], folder: Path, *, name: str, day: dt.date, plan: Path | None = None, page: str = "A4"
+    transfers: Sequence[Transfer],
+    folder: Path,
+    *,
+    name: str,
+    day: dt.date,
+    days: int,
+    plan: Path | None = None,
+    page: str = "A4",
 ) -> tuple[Path, ...]:
     """Write the rota as a bench list (PDF), a calendar file and a CSV table; with a plan, what it asks of stocks too.
 
@@ -602,7 +609,7 @@ def write_rota(
     from crossplan.bench.plan_folder import write_files
     from crossplan.bench.rota_sheet import rota_csv, rota_ics, rota_pdf, stock_tasks
 
-    tasks = stock_tasks(load_plan(plan)) if plan is not None else ()
+    tasks = stock_tasks(load_plan(plan), day, days) if plan is not None else ()
     files = {
         "rota.pdf": rota_pdf(f"transfers, {name}", transfers, tasks, page),
         "rota.ics": rota_ics(name, transfers, day),

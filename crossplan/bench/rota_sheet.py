@@ -19,9 +19,10 @@ MINUTES_PER_VIAL = 1.0
 OF_STOCKS = ("expand", "virgins")
 
 
-def stock_tasks(plan: Plan) -> tuple[TaskRecord, ...]:
-    """Return the tasks of a plan that are done to stocks: expansions ahead of collections, and the collections."""
-    return tuple(t for t in plan.tasks if t.kind in OF_STOCKS)
+def stock_tasks(plan: Plan, start: dt.date, days: int) -> tuple[TaskRecord, ...]:
+    """Return what a plan asks to be done to stocks in a period: expansions ahead of collections, and the collections."""
+    last = start + dt.timedelta(days=days - 1)
+    return tuple(t for t in plan.tasks if t.kind in OF_STOCKS and start.isoformat() <= t.date <= last.isoformat())
 
 
 def rota_csv(transfers: Iterable[Transfer]) -> str:

@@ -43,7 +43,9 @@ def rota(
         holidays=[api.parse_day(d) for d in _parts(holidays)], settings=api.list_settings(settings, sheet=sheet),
         lab_file=lab_file,
     )  # fmt: skip
-    written = api.write_rota(transfers, out, name=stocks.stem, day=first, plan=plan) if out is not None else ()
+    written: tuple[Path, ...] = ()
+    if out is not None:
+        written = api.write_rota(transfers, out, name=stocks.stem, day=first, days=7 * weeks, plan=plan)
     if as_json:
         print_json({"from": first.isoformat(), "days": 7 * weeks, "transfers": [
             {"date": t.day.isoformat(), "person": t.person, "stock": t.stock.name, "tray": t.stock.tray, "half": t.half,
