@@ -31,8 +31,13 @@ def read_text(path: Path, header_words: Iterable[str]) -> tuple[Grid, list[Probl
     filled = [line for line in lines if line.strip()]
     if not filled:
         raise StockListError(f"{path} holds only blank lines", "export the list again from the spreadsheet")
-    delimiter = _delimiter(filled, frozenset(header_words))
     csv.field_size_limit(LONGEST_CELL)
+    try:
+        delimiter = _delimiter(filled, frozenset(header_words))
+    except csv.Error as error:
+        raise StockListError(
+            f"{path} has a cell of more than {LONGEST_CELL:,} characters in its first rows", "look at the quotes"
+        ) from error
     grid = _rows(lines, delimiter, path, problems)
     return grid, problems
 

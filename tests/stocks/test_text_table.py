@@ -83,3 +83,10 @@ class TestRemarks:
         shelf = shelf_of(tmp_path, b"#,genotype\n#12,w[1118]\n#13,w; Sp/CyO\n")
         assert names(shelf) == ["#12", "#13"]
         assert not coded(shelf, "remarks")
+
+
+def test_a_very_long_cell_is_no_fault_of_the_program(tmp_path: Path) -> None:
+    shelf = shelf_of(tmp_path, b"stock,genotype,notes\nA,w[1118]," + b"x" * 400_000 + b"\nB,w,\n")
+    assert names(shelf) == ["A", "B"]
+    with pytest.raises(StockListError, match="more than 1,000,000 characters"):
+        shelf_of(tmp_path, b"stock,genotype,notes\nA,w[1118]," + b"x" * 1_500_000 + b"\nB,w,\n")
