@@ -14,7 +14,7 @@ from crossplan.genetics.appearance import Observer
 from crossplan.genetics.fly import Fly
 from crossplan.plan.screen_file import WantedTarget
 from crossplan.schemes.explain import explain_failure
-from crossplan.schemes.forms import Source, reduce_shelf, usable_sources
+from crossplan.schemes.forms import ShelfIndex, Source, reduce_shelf, usable_sources
 from crossplan.schemes.realise import Cross, NotCarriedOut, Realiser
 from crossplan.schemes.search import SearchResult, Status, find_schemes
 from crossplan.schemes.target import Refusal, carried_elements, make_wish, stock_already
@@ -67,6 +67,8 @@ class BatchPlanner:
         self.max_generations = max_generations
         self.alternatives = alternatives
         self.shelf = carried_elements(sources)
+        self.index = ShelfIndex(self.sources, observer.means.distrust, max_generations)
+        self._with_helper: dict[str, ShelfIndex] = {}
         self._by_name = {s.name: s for s in self.sources}
         self._searches: dict[object, SearchResult] = {}
         self._planned: set[tuple[object, ...]] = set()
@@ -95,7 +97,7 @@ class BatchPlanner:
         return Answer(asked, "planned", wish, last, proved_minimal=proved, searched_to=result.searched_to)
 
     def _best(self, wish: Wish) -> tuple[Cross | None, SearchResult]:
-        shelf, reducer = reduce_shelf(self.sources, wish)
+        shelf, reducer = reduce_shelf(self.index, wish)
         result = self._search(shelf.key, lambda: find_schemes(
             shelf, self.observer, self.max_generations, self.alternatives))  # fmt: skip
         realiser = Realiser(wish, self._by_name, reducer, shelf.forms, self.observer)
@@ -117,5 +119,20 @@ class BatchPlanner:
         return found
 
     def _search_only(self, wish: Wish, sources: Sequence[Source]) -> SearchResult:
-        shelf, _ = reduce_shelf(usable_sources(sources), wish)
-        return self._search(shelf.key, lambda: find_schemes(shelf, self.observer, self.max_generations, 1))
+        index = self._index_of(sources)
+        shelf, _ = reduce_shelf(index, wish)
+        return self._search(
+            (index.sources[-1].name, len(index.sources), shelf.key),
+            lambda: find_schemes(shelf, self.observer, self.max_generations, 1),
+        )
+
+    def _index_of(self, sources: Sequence[Source]) -> ShelfIndex:
+        """Return the shelf of the planner, or that shelf with one helper stock more."""
+        if len(sources) == len(self.sources):
+            return self.index
+        helper = sources[-1].name
+        found = self._with_helper.get(helper)
+        if found is None:
+            found = ShelfIndex(usable_sources(sources), self.observer.means.distrust, self.max_generations)
+            self._with_helper[helper] = found
+        return found

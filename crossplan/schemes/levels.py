@@ -133,6 +133,8 @@ class LevelSearch:
             universe.grow(deepest, self.budget.pairs)
             if not universe.goals(deepest)[0].any():
                 return []
+        if deepest == 0:
+            return self._last_crosses(self._numbered(self._shelf[FEMALE]), self._numbered(self._shelf[MALE]), 0, most)
         pool = {sex: self._thinned(self._shelf[sex], sex, deepest, deepest, cheapest) for sex in SEXES}
         for level in range(1, generations):
             to_come = deepest - level

@@ -206,7 +206,7 @@ class PairBook:
             self._homologue(homologue)
         self._shelf = len(self.homologues)
         traits = [e.traits for h in self.homologues for e in h.elements]
-        self._may_be_sterile = self.is_x or any(t.female_sterile or t.male_sterile for t in traits)
+        self._may_be_sterile = any(t.female_sterile or t.male_sterile for t in traits)
 
     def _homologue(self, homologue: Homologue) -> int:
         found = self._id.get(homologue)
@@ -257,8 +257,13 @@ class PairBook:
             accepted=self.wish.accepts(pair, self.chromosome),
             keepable=max(first, second) < self._shelf,
             sterile_female=self._may_be_sterile and not _leaves_fertile(pair, self.chromosome, FEMALE),
-            sterile_male=self._may_be_sterile and not _leaves_fertile(pair, self.chromosome, MALE),
+            sterile_male=self._is_sterile_male(pair, sex),
         )
+
+    def _is_sterile_male(self, pair: Pair, sex: Sex) -> bool:
+        if self.is_x and (sex == FEMALE or not any(h.is_y for h in pair)):
+            return True
+        return self._may_be_sterile and not _leaves_fertile(pair, self.chromosome, MALE)
 
     def _look(self, part: Contribution) -> tuple[object, object, frozenset[str]]:
         """Return what is seen here for certain, what is seen unless an insertion elsewhere restores it, and the first in signs.

@@ -121,12 +121,14 @@ class _Search:
         Raises:
             TooLarge: the budget is not enough for a proof, and nothing was found.
         """
+        if generations == 1:
+            return self._found(self._of(self._of_last_cross()), 1, cheapest=True)
         search = self._of(range(len(self.shelf.forms)))
         if not search.hits(generations, 1, cheapest=False):
             return ()
-        schemes = self._found(search, generations, cheapest=generations == 1)
+        schemes = self._found(search, generations, cheapest=False)
         if schemes:
-            chosen = set(handiest(self.shelf, HANDY_HELPERS[min(max(generations, 2), max(HANDY_HELPERS))]))
+            chosen = set(handiest(self.shelf, HANDY_HELPERS[min(generations, max(HANDY_HELPERS))]))
             chosen.update(f for s in schemes for f in s.forms())
             try:
                 return self._found(self._of(sorted(chosen)), generations, cheapest=True) or schemes
@@ -137,6 +139,18 @@ class _Search:
         if slow is None:
             raise TooLarge
         return tuple(slow)
+
+    def _of_last_cross(self) -> list[int]:
+        """Return the forms that can be parents of a cross of stocks: between them they carry all that is wanted."""
+        wanted = frozenset(self.shelf.wish.symbols)
+        carried = [self._carried(form) for form in self.shelf.forms]
+        if any(c == wanted for c in carried):
+            return list(range(len(carried)))
+        return [i for i, c in enumerate(carried) if c]
+
+    def _carried(self, form: Form) -> frozenset[str]:
+        flies = (f for f in (form.female, form.male) if f is not None)
+        return frozenset(s for fly in flies for _, h in fly.homologues() for s in self.shelf.wish.carried(h))
 
     def _found(self, search: LevelSearch, generations: int, cheapest: bool) -> tuple[Node, ...]:
         found: list[Node] = []

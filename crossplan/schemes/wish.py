@@ -7,6 +7,7 @@ must not be there. That it splits by chromosome is what makes the search exact a
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import cached_property
 from typing import Literal
 
 from crossplan.genetics.chromosome import FEMALE, MALE, Sex
@@ -37,12 +38,22 @@ class Wish:
     stock: bool = False
     exact: bool = False
 
-    @property
+    @cached_property
     def symbols(self) -> tuple[str, ...]:
         return tuple(symbol for symbol, _, _ in self.components)
 
+    @cached_property
+    def _forbidden(self) -> dict[Element, bool]:
+        return {}
+
     def forbids(self, element: Element) -> bool:
         """Return whether the wanted flies must not carry `element`."""
+        found = self._forbidden.get(element)
+        if found is None:
+            found = self._forbidden[element] = self._decide(element)
+        return found
+
+    def _decide(self, element: Element) -> bool:
         if element.symbol in self.forbid or element.gene in self.forbid:
             return True
         if element.symbol in self.symbols:

@@ -6,7 +6,7 @@ import pytest
 
 from crossplan.genetics.appearance import Observer
 from crossplan.genetics.catalogue import default_catalogue
-from crossplan.schemes.forms import reduce_shelf
+from crossplan.schemes.forms import ShelfIndex, reduce_shelf
 from crossplan.schemes.scheme import Node
 from crossplan.schemes.search import Status, find_schemes
 from tests.schemes import brute_force
@@ -30,7 +30,7 @@ def test_same_fewest_generations_as_the_plain_method(first: int, observer: Obser
         case = random_case(seed)
         most = MOST_OF_FOUR_STOCKS if len(case.stocks) > 3 else MOST
         expected = brute_force.fewest_generations(case.flies, dict(case.wanted), case.sex, most)
-        shelf, _ = reduce_shelf(case.sources(), case.wish())
+        shelf, _ = reduce_shelf(ShelfIndex(case.sources(), generations=most), case.wish())
         result = find_schemes(shelf, observer, most)
         assert result.generations == expected, f"seed {seed}: {case}"
         assert result.status is (Status.PROVED_MINIMAL if expected else Status.IMPOSSIBLE)
