@@ -15,7 +15,7 @@ from crossplan.genetics.fly import Fly
 from crossplan.plan.screen_file import WantedTarget
 from crossplan.schemes.explain import explain_failure
 from crossplan.schemes.forms import ShelfIndex, Source, reduce_shelf, usable_sources
-from crossplan.schemes.realise import Cross, NotCarriedOut, Realiser
+from crossplan.schemes.realise import Bench, Cross, NotCarriedOut, Realiser
 from crossplan.schemes.search import SearchResult, Status, find_schemes
 from crossplan.schemes.target import Refusal, carried_elements, make_wish, stock_already
 from crossplan.schemes.wish import WantedSex, Wish
@@ -69,7 +69,8 @@ class BatchPlanner:
         self.shelf = carried_elements(sources)
         self.index = ShelfIndex(self.sources, observer.means.distrust, max_generations)
         self._with_helper: dict[str, ShelfIndex] = {}
-        self._by_name = {s.name: s for s in self.sources}
+        self._any_by_name = {s.name: s for s in sources}
+        self.bench = Bench({s.name: s for s in self.sources}, observer)
         self._searches: dict[object, SearchResult] = {}
         self._planned: set[tuple[object, ...]] = set()
 
@@ -82,7 +83,7 @@ class BatchPlanner:
             return Answer(asked, "impossible", None, reason=wish.reason, would_unlock=wish.would_unlock)
         # a control takes the same kind of cross as what it is the control for, even where a stock would do
         wish = replace(wish, exact=bool(asked.control_kind))
-        ready = None if asked.control_kind else stock_already(wish, self.all_sources)
+        ready = None if asked.control_kind else stock_already(wish, self._carriers_of_all(wish))
         if ready is not None:
             return Answer(asked, "in stock", wish, stock=ready[0], stock_fly=ready[1], proved_minimal=True)
         last, result = self._best(wish)
@@ -92,25 +93,29 @@ class BatchPlanner:
                 asked, "impossible", wish, reason=refusal.reason, would_unlock=refusal.would_unlock,
                 searched_to=result.searched_to,
             )  # fmt: skip
-        self._planned.update(c.key for c in last.crosses())
         proved = result.status is Status.PROVED_MINIMAL
         return Answer(asked, "planned", wish, last, proved_minimal=proved, searched_to=result.searched_to)
+
+    def _carriers_of_all(self, wish: Wish) -> list[Source]:
+        """Return the stocks that carry everything that is wanted, in the order of the shelf."""
+        names = [set(self.shelf[symbol].stocks) for symbol in wish.symbols]
+        return [self._any_by_name[n] for n in self.shelf[wish.symbols[0]].stocks if all(n in some for some in names)]
 
     def _best(self, wish: Wish) -> tuple[Cross | None, SearchResult]:
         shelf, reducer = reduce_shelf(self.index, wish)
         result = self._search(shelf.key, lambda: find_schemes(
             shelf, self.observer, self.max_generations, self.alternatives))  # fmt: skip
-        realiser = Realiser(wish, self._by_name, reducer, shelf.forms, self.observer)
-        best: tuple[int, int, Cross] | None = None
-        for rank, scheme in enumerate(result.schemes):
+        realiser = Realiser(wish, self.bench, reducer, shelf.forms)
+        outlines = [realiser.outline(scheme) for scheme in result.schemes]
+        new = [sum(key not in self._planned for key in outline.keys) for outline in outlines]
+        for i in sorted(range(len(outlines)), key=lambda i: (new[i], i)):
             try:
-                last = realiser.carry_out(scheme)
+                last = realiser.carry_out(result.schemes[i])
             except NotCarriedOut:
                 continue
-            new = sum(c.key not in self._planned for c in last.crosses())
-            if best is None or (new, rank) < best[:2]:
-                best = (new, rank, last)
-        return (best[2] if best else None), result
+            self._planned.update(outlines[i].keys)
+            return last, result
+        return None, result
 
     def _search(self, key: object, run: Callable[[], SearchResult]) -> SearchResult:
         found = self._searches.get(key)

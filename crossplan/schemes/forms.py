@@ -112,6 +112,12 @@ class ShelfIndex:
             found = self._backgrounds[key] = Background(self, wish, places, len(self._backgrounds))
         return found
 
+    def only_lethal(self, stock: int) -> Element | None:
+        """Return the one element with a lethal of its own that a stock carries (balancers apart) and no other stock does."""
+        elements = dict.fromkeys(e for fly in self.sources[stock].flies for e in fly.elements())
+        own = [e for e in elements if self.has_own_lethal(e) and not e.is_balancer]
+        return own[0] if len(own) == 1 and len(self.carriers[own[0]]) == 1 else None
+
     def has_own_lethal(self, element: Element) -> bool:
         """Return whether the element carries a lethal that no other element of the shelf carries."""
         return not self.private.isdisjoint(element.traits.lethal)
@@ -145,28 +151,31 @@ class Background:
         self.form_of = {i: n for n, stocks in enumerate(self.stocks) for i in stocks}
 
     def _told_apart(self) -> list[bool]:
-        """Return for each stock whether it is needed: of stocks alike but for lethals of their own, the first few are."""
+        """Return for each stock whether it is needed: of stocks alike but for one lethal of their own, the first few are."""
         seen: dict[object, int] = {}
         needed = []
-        for source in self.shelf.sources:
+        for i, source in enumerate(self.shelf.sources):
+            own = self.shelf.only_lethal(i)
+            if own is None:
+                needed.append(True)
+                continue
             kind = tuple(
-                tuple(tuple(sorted(self._anonymous(e) for e in h.elements)) for _, h in fly.homologues())
+                (name, tuple(sorted(self._anonymous(e, own) for e in h.elements)))
                 for fly in source.flies
+                for name, h in fly.homologues()
             )
-            own = any(self.shelf.has_own_lethal(e) for fly in source.flies for e in fly.elements())
             seen[kind] = seen.get(kind, 0) + 1
-            needed.append(not own or seen[kind] <= self.shelf.lethals_of_a_kind)
+            needed.append(seen[kind] <= self.shelf.lethals_of_a_kind)
         return needed
 
-    def _anonymous(self, element: Element) -> str:
+    def _anonymous(self, element: Element, own: Element) -> str:
+        """Return the role of an element, without the name of the lethal that only this stock carries."""
         reduced = self._reduced[element]
-        if reduced is None:
-            return ""
-        if not self.shelf.has_own_lethal(element):
-            return reduced.symbol
-        traits = replace(element.traits, lethal=frozenset())
-        others = sorted(element.traits.lethal - self.shelf.private)
-        return f"{element.kind} {element.chromosome} {element.is_balancer} {traits} {others} {_place(element) is None}"
+        if reduced is None or element != own:
+            return reduced.symbol if reduced is not None else ""
+        place = _place(element)
+        traits = replace(element.traits, lethal=element.traits.lethal - self.shelf.private)
+        return f"own lethal {element.kind} {traits} {place is None} {place if place in self.places else None}"
 
     def _reduce(self, element: Element) -> Element | None:
         forbidden = self.wish.forbids(element)
@@ -221,11 +230,11 @@ class Reducer:
         self._number = {symbol: i for i, symbol in enumerate(wish.symbols)}
         wanted = [e for symbol in self._number for e in shelf.by_symbol.get(symbol, ())]
         self.background = shelf.background(wish, frozenset(p for e in wanted if (p := _place(e)) is not None))
-        #: stocks that are looked at again: carriers of wanted elements, and of lethals that stand beside them
+        #: stocks that are looked at again: carriers of wanted elements
         self.special: list[int] = sorted({i for e in wanted for i in shelf.carriers[e]})
         self._own: dict[Element, Element] = {}
         self._renamed: dict[Element, Element] = {e: self._as_wanted(e, shelf) for e in wanted}
-        self._gather_lethals(shelf)
+        self._name_lethals(shelf)
         self._homologues: dict[Homologue, Homologue] = {}
 
     def _as_wanted(self, element: Element, shelf: ShelfIndex) -> Element:
@@ -237,18 +246,16 @@ class Reducer:
         lethal = frozenset(name if group in shelf.private else group for group in traits.lethal)
         return replace(element, symbol=name, standard="", component="", traits=replace(traits, lethal=lethal))
 
-    def _gather_lethals(self, shelf: ShelfIndex) -> None:
-        """Give the lethals on the special stocks names of their own, and look at all their carriers again."""
-        waiting = list(self.special)
-        while waiting:
-            source = shelf.sources[waiting.pop(0)]
-            for element in dict.fromkeys(e for fly in source.flies for e in fly.elements()):
-                if element in self._renamed or not shelf.has_own_lethal(element):
+    def _name_lethals(self, shelf: ShelfIndex) -> None:
+        """Name the lethals that only the carriers of wanted elements carry by their order, whatever they are called."""
+        special = set(self.special)
+        for i in self.special:
+            for element in dict.fromkeys(e for fly in shelf.sources[i].flies for e in fly.elements()):
+                if element in self._renamed or element.is_balancer or not shelf.has_own_lethal(element):
                     continue
-                self._own[element] = self._renamed[element] = self._named(element, f"own {len(self._own) + 1}", shelf)
-                new = [i for i in shelf.carriers[element] if i not in self.special]
-                self.special += new
-                waiting += new
+                if special.issuperset(shelf.carriers[element]):
+                    named = self._named(element, f"own {len(self._own) + 1}", shelf)
+                    self._own[element] = self._renamed[element] = named
 
     def homologue(self, homologue: Homologue) -> Homologue:
         """Return the homologue in terms of representatives."""

@@ -13,7 +13,7 @@ from functools import cached_property
 
 from crossplan.genetics.appearance import Observer
 from crossplan.genetics.chromosome import FEMALE, PAIRS, Sex
-from crossplan.genetics.fly import Fly
+from crossplan.genetics.fly import Fly, make_pair
 from crossplan.genetics.progeny import Progeny, ProgenyClass, cross
 from crossplan.genetics.sorting import easily_mistaken, rule_for, words_of
 from crossplan.schemes.forms import Form, Reducer, Source
@@ -80,17 +80,82 @@ class Cross:
         return tuple(found.values())
 
 
+class Bench:
+    """Crosses of real flies on one shelf, each made once."""
+
+    def __init__(self, sources: Mapping[str, Source], observer: Observer) -> None:
+        self.sources = sources
+        self.observer = observer
+        self._made: dict[tuple[Fly, Fly], Progeny] = {}
+        self._parents: dict[tuple[str, Sex], StockParent] = {}
+
+    def cross(self, mother: Fly, father: Fly) -> Progeny:
+        """Return the progeny of two flies."""
+        found = self._made.get((mother, father))
+        if found is None:
+            found = self._made[mother, father] = cross(mother, father, self.observer)
+        return found
+
+    def fly(self, stock: str, sex: Sex) -> Fly:
+        """Return the fly of that sex that a stock gives."""
+        source = self.sources[stock]
+        fly = source.female if sex == FEMALE else source.male
+        assert fly is not None
+        return fly
+
+    def parent(self, stock: str, sex: Sex) -> StockParent:
+        """Return the parent to take from a stock."""
+        found = self._parents.get((stock, sex))
+        if found is None:
+            made = stock_parent(self.sources[stock], self.fly(stock, sex), self.observer)
+            found = self._parents[stock, sex] = made
+        return found
+
+
+@dataclass(frozen=True)
+class Outline:
+    """A scheme on real stocks without its progeny: what is crossed with what, and the real flies that are kept.
+
+    `key` tells the work apart from other work; `keys` are those of all crosses of the scheme.
+    """
+
+    key: tuple[object, ...]
+    fly: Fly | None
+    keys: tuple[tuple[object, ...], ...] = ()
+
+
 class Realiser:
     """Carries out schemes on one shelf for one wish."""
 
-    def __init__(
-        self, wish: Wish, sources: Mapping[str, Source], reducer: Reducer, forms: tuple[Form, ...], observer: Observer
-    ) -> None:
+    def __init__(self, wish: Wish, bench: Bench, reducer: Reducer, forms: tuple[Form, ...]) -> None:
         self.wish = wish
-        self.sources = sources
+        self.bench = bench
         self.reducer = reducer
         self.forms = forms
-        self.observer = observer
+        self.observer = bench.observer
+
+    def outline(self, node: Leaf | Node) -> Outline:
+        """Return what a scheme comes to on real stocks, quickly: whether it stands is for `carry_out` to say."""
+        if isinstance(node, Leaf):
+            stock = self.forms[node.form].stock
+            return Outline((stock, node.sex), self.bench.fly(stock, node.sex))
+        mother, father = self.outline(node.mother), self.outline(node.father)
+        kept = None
+        if node.keep is not None and mother.fly is not None and father.fly is not None:
+            kept = self._real(node.keep, mother.fly, father.fly)
+        key = (mother.key, father.key, kept or node.keep)
+        return Outline(key, kept, (*mother.keys, *father.keys, key))
+
+    def _real(self, keep: Fly, mother: Fly, father: Fly) -> Fly | None:
+        """Return the child of whole parental homologues that is `keep` in reduced terms; None if it is a recombinant."""
+        pairs = []
+        for wanted, of_mother, of_father in zip(keep.pairs, mother.pairs, father.pairs, strict=True):
+            made = (make_pair(m, f) for m in of_mother for f in of_father)
+            found = next((p for p in made if make_pair(*map(self.reducer.homologue, p)) == wanted), None)
+            if found is None:
+                return None
+            pairs.append(found)
+        return Fly(keep.sex, (pairs[0], pairs[1], pairs[2], pairs[3]))
 
     def carry_out(self, scheme: Node) -> Cross:
         """Return the scheme on real stocks.
@@ -100,7 +165,7 @@ class Realiser:
         """
         mother, mother_fly = self._parent(scheme.mother)
         father, father_fly = self._parent(scheme.father)
-        progeny = cross(mother_fly, father_fly, self.observer)
+        progeny = self.bench.cross(mother_fly, father_fly)
         if scheme.keep is None:
             kept = self._last_classes(progeny)
         else:
@@ -111,10 +176,8 @@ class Realiser:
         if isinstance(node, Node):
             made = self.carry_out(node)
             return made, made.fly
-        source = self.sources[self.forms[node.form].stock]
-        fly = source.female if node.sex == FEMALE else source.male
-        assert fly is not None
-        return stock_parent(source, fly, self.observer), fly
+        stock = self.forms[node.form].stock
+        return self.bench.parent(stock, node.sex), self.bench.fly(stock, node.sex)
 
     def _class_of(self, progeny: Progeny, keep: Fly) -> ProgenyClass:
         for found in progeny.classes:

@@ -14,7 +14,7 @@ from crossplan.genetics.chromosome import MALE, PAIRS
 from crossplan.genetics.element import Element, Kind
 from crossplan.genetics.fly import Fly
 from crossplan.schemes.forms import Source
-from crossplan.schemes.wish import WantedSex, Wish
+from crossplan.schemes.wish import BALANCERS, MARKERS, OTHER_INSERTIONS, WantedSex, Wish
 
 
 @dataclass(frozen=True)
@@ -124,6 +124,9 @@ def make_wish(
 
 def _forbidden(forbid: Iterable[str], shelf: Mapping[str, Carried]) -> Iterable[str]:
     for word in forbid:
+        if word in (BALANCERS, MARKERS, OTHER_INSERTIONS):
+            yield word
+            continue
         found = find_component(word, shelf)
         yield found.element.symbol if isinstance(found, Carried) else word
 
