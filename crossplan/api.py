@@ -916,6 +916,63 @@ def write_calendars(
         raise OutputError(f"cannot write into {folder}: {error.strerror or error}", "choose another folder") from error
 
 
+def write_bench_sheets(
+    plan: Path, out: Path, *, dates: str | None = None, person: str | None = None, paper: str = "A4"
+) -> int:
+    """Write the bench sheets of a plan as a PDF; return its size in bytes."""
+    from crossplan.bench.bench_sheet import bench_sheet_pdf
+
+    return _write(out, bench_sheet_pdf(load_plan(plan), parse_days(dates), person, paper))
+
+
+def write_methods(plan: Plan, out: Path, shelf: Shelf | None = None) -> tuple[int, list[str]]:
+    """Write the genotypes of a plan as a table, CSV, Markdown or LaTeX by the ending of the name.
+
+    With the shelf, genotypes are in the standard notation of the list, and stocks have their sources. Returns how many
+    genotypes, and the insertions that are written short because the list has no standard notation of them.
+    """
+    from crossplan.bench.methods_table import Notation, methods_rows, methods_table, written_short
+
+    notation = Notation()
+    if shelf is not None:
+        elements = shelf.elements().values()
+        notation = Notation(
+            {e.symbol: e.standard or e.symbol for e in elements},
+            frozenset(e.symbol for e in elements if e.kind is Kind.BALANCER),
+            {s.name: s.source for s in shelf.stocks},
+        )
+    _write(out, methods_table(plan, out.suffix.lower().removeprefix("."), notation).encode())
+    return len(methods_rows(plan, notation)), written_short(plan, notation)
+
+
+def write_drawings(
+    plan: Plan, targets: Sequence[str], folder: Path, form: str = "svg", dpi: int = 300
+) -> tuple[Path, ...]:
+    """Write the schemes of targets into a folder as `scheme-NAME.svg` or `.png`; return the files.
+
+    Raises:
+        InputError: a target has no scheme, or there is no such form.
+        OutputError: the folder cannot be written.
+    """
+    from crossplan.bench.figure import png, scheme_figure, svg
+    from crossplan.bench.plan_folder import write_files
+
+    if form not in ("svg", "png"):
+        raise InputError(f"there is no drawing as {form!r}", "Use svg or png.")
+    files: dict[str, bytes] = {}
+    for target in targets:
+        figure = scheme_figure(plan, target)
+        name = "".join(c if c.isalnum() or c in "-_." else "-" for c in target).strip("-.") or "target"
+        while f"scheme-{name}.{form}" in files:
+            name += "-2"
+        files[f"scheme-{name}.{form}"] = svg(figure).encode() if form == "svg" else png(figure, dpi)
+    try:
+        folder.mkdir(parents=True, exist_ok=True)
+        return write_files(folder, files)
+    except OSError as error:
+        raise OutputError(f"cannot write into {folder}: {error.strerror or error}", "choose another folder") from error
+
+
 def show(plan: Plan, what: str, width: int = 80, person: str | None = None) -> list[TextLine]:
     """Return what a plan says of a cross, a target or a day, in lines for a terminal.
 

@@ -10,7 +10,7 @@ import datetime as dt
 import re
 from collections.abc import Hashable, Sequence
 from importlib.resources import files
-from typing import Any
+from typing import Any, Self
 
 from crossplan.bench.words import Run, raised_runs
 
@@ -69,7 +69,7 @@ class Pages:
         #: what was laid out already, by all that it was laid out from: labels of a batch have much in common
         self.laid_out: dict[Hashable, Any] = {}
 
-    def __enter__(self) -> Pages:
+    def __enter__(self) -> Self:
         return self
 
     def __exit__(self, *_: object) -> None:

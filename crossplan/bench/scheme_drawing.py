@@ -229,9 +229,11 @@ class CrossPiece:
 
 
 def kept_words(step: StepRecord) -> list[str]:
-    """Return what stands beside the kept class: step, rule, share, others in the class, where it goes."""
+    """Return what stands beside the kept class: step, rule, share, what it must be told from, others in the class,
+    where it goes."""
     keep = step.keep
     lines = [f"{step.id}  {SIGNS[keep.sex]}  keep {keep_rule(keep)}", share_words(keep)]
+    lines += [f"beware: {other}" for other in keep.mistaken_for]
     others = len(keep.members) - 1
     if others > 0:
         lines.append(f"{count(others, 'other genotype')} in this class look the same and serve as well")

@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
+import re
 from typing import Any
 
 import pytest
 
 from crossplan.bench.labels import labels_pdf
+from crossplan.bench.report import report_html
 from crossplan.bench.sheet_layout import LAYOUTS
 from crossplan.plan.model import Plan
 from tests.bench.example_plan import example_plan
@@ -43,3 +45,25 @@ def test_five_thousand_labels(benchmark: Any, name: str) -> None:
         peaks.append(tracemalloc.get_traced_memory()[1])
         tracemalloc.stop()
     assert peaks[1] <= 6 * peaks[0]
+
+
+def wide_plan(copies: int) -> Plan:
+    """Return a plan with so many copies of the example, every name of a target and a cross its own."""
+    plan = example_plan()
+    parts: dict[str, list[Any]] = {"targets": [], "steps": [], "tasks": []}
+    for n in range(copies):
+        text = re.sub(r"\b(S0\d)\b", rf"\1x{n}", plan.model_dump_json(by_alias=True)).replace("CsChrimson", f"Cs{n}")
+        copy = Plan.model_validate_json(text)
+        for name, found in parts.items():
+            found += getattr(copy, name)
+    return plan.model_copy(update=parts)
+
+
+def test_a_report_of_540_targets(benchmark: Any) -> None:
+    """Written in a few seconds, and in proportion to the targets."""
+    copies = 2 if benchmark.disabled else 180
+    page = benchmark.pedantic(report_html, (wide_plan(copies),), rounds=1)
+    assert page.count('<article class="item') >= 3 * copies
+    benchmark.extra_info["kB"] = len(page) // 1000
+    if not benchmark.disabled:
+        assert len(page) < 5_000_000

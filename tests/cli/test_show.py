@@ -73,3 +73,31 @@ def test_a_calendar_for_each_person_and_again(folder: Path) -> None:
     one = cals / "calendar-Ida.ics"
     assert isinstance(RUN.invoke(app, [*arguments, "--instead-of", str(one)]).exception, InputError)
     assert isinstance(RUN.invoke(app, [*arguments, "--person", "Ida"]).exception, InputError)
+
+
+def test_methods_drawings_and_sheets(folder: Path) -> None:
+    for name in ("m.csv", "m.md", "m.tex"):
+        done = RUN.invoke(app, ["methods", str(folder), "--out", str(folder / name), "--json"])
+        assert json.loads(done.output)["genotypes"] == 2
+    for form in ("svg", "png"):
+        done = RUN.invoke(app, ["draw", str(folder), "empty > CsChrimson", "--out", str(folder), "--format", form])
+        assert done.exit_code == 0
+        assert (folder / f"scheme-empty---CsChrimson.{form}").stat().st_size > 1000
+    assert isinstance(RUN.invoke(app, ["draw", str(folder), "S9", "--format", "gif"]).exception, InputError)
+    out = folder / "ida.pdf"
+    assert (
+        RUN.invoke(app, ["sheets", str(folder), "--person", "Ida", "--paper", "Letter", "--out", str(out)]).exit_code
+        == 0
+    )
+    assert out.read_bytes().startswith(b"%PDF")
+
+
+def test_methods_in_the_notation_of_the_list(folder: Path) -> None:
+    table = folder / "stocks.csv"
+    table.write_text(
+        "stock,genotype,received from\nK12-AD,w; P{y[+t7.7] w[+mC]=AD-K12}attP40/CyO,Linnet lab\n", "utf-8"
+    )
+    RUN.invoke(app, ["methods", str(folder), "--stocks", str(table), "--out", str(folder / "m.csv")])
+    written = (folder / "m.csv").read_text("utf-8")
+    assert "P{y[+t7.7] w[+mC]=AD-K12}attP40/+" in written
+    assert "K12-AD (Linnet lab)" in written
