@@ -58,8 +58,8 @@ class Entry:
     summary: str
     description: str
 
-    def same_as(self, event: Any) -> bool:
-        """Whether an event of an earlier file says the same."""
+    def same_as(self, event: Any, zone: ZoneInfo | None) -> bool:
+        """Whether an event of an earlier file says the same, at the same hour of the same time zone."""
         try:
             start, length = event.decoded("DTSTART"), event.decoded("DURATION")
         except (KeyError, ValueError):
@@ -68,7 +68,8 @@ class Entry:
             _text(event, "SUMMARY") == self.summary
             and _text(event, "DESCRIPTION") == self.description
             and isinstance(start, dt.datetime)
-            and start.replace(tzinfo=None) == self.start
+            and start == self.start.replace(tzinfo=zone)
+            and (start.tzinfo is None) == (zone is None)
             and length == dt.timedelta(minutes=self.minutes)
         )
 
@@ -109,7 +110,7 @@ def calendar_ics(
         for uid in sorted(wanted | moved_away, key=lambda u: (all_entries[u].start, natural(u)))
     ]
     events += [_cancelled(known[uid], _stamp(plan)) for uid in sorted(known, key=natural) if uid not in all_entries]
-    return _calendar(plan, zone, events)
+    return _calendar(plan, zone, events, person)
 
 
 def calendars_by_person(
@@ -279,7 +280,7 @@ def _event(
 ) -> Any:
     from icalendar import Event
 
-    changed = before is not None and not (entry.same_as(before) and _text(before, "STATUS") == "CONFIRMED")
+    changed = before is not None and not (entry.same_as(before, zone) and _text(before, "STATUS") == "CONFIRMED")
     sequence = (int(before.get("SEQUENCE", 0)) if before is not None else 0) + changed
     event = Event()
     event.add("uid", entry.uid)
@@ -324,14 +325,14 @@ def _cancelled(before: Any, stamp: dt.datetime) -> Any:
     return event
 
 
-def _calendar(plan: Plan, zone: ZoneInfo | None, events: list[Any]) -> bytes:
+def _calendar(plan: Plan, zone: ZoneInfo | None, events: list[Any], person: str | None) -> bytes:
     from icalendar import Calendar
 
     calendar = Calendar()
     calendar.add("version", "2.0")
     calendar.add("prodid", "-//crossplan//fly crosses//EN")
     calendar.add("method", "PUBLISH")
-    calendar.add("x-wr-calname", f"Flies: {plan.screen.name}")
+    calendar.add("x-wr-calname", f"Flies: {plan.screen.name}{f' ({person})' if person else ''}")
     starts = [event.decoded("DTSTART").date() for event in events]
     if zone is not None and zone.key != "UTC" and starts:
         calendar.add("x-wr-timezone", zone.key)

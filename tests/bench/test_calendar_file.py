@@ -220,6 +220,15 @@ def test_an_entry_that_moves_out_of_the_days_asked_for_is_moved_not_cancelled() 
     assert events(week)["S03-discard-1@red-light-batch-1.crossplan"].begin.date() == dt.date(2027, 3, 30)
 
 
+def test_another_time_zone_is_a_change() -> None:
+    first = calendar_ics(example_plan())
+    plan = example_plan()
+    moved_lab = plan.model_copy(update={"screen": plan.screen.model_copy(update={"timezone": "Asia/Tokyo"})})
+    second = calendar_ics(moved_lab, previous=first)
+    assert set(properties(second, "SEQUENCE")) == {"1"}
+    assert calendar_ics(moved_lab, previous=second) == second
+
+
 # --- choice and refusals ------------------------------------------------------------------------------------
 
 

@@ -156,6 +156,29 @@ def test_a_character_that_the_font_lacks_is_a_box() -> None:
     assert "□ α-Cat" in texts(labels_pdf(plan, DEFAULT, steps=["S01"]))[0]
 
 
+@pytest.mark.parametrize("dpi", [203, 300])
+def test_the_longest_genotype_of_the_reference_corpus_on_the_smallest_label(dpi: int) -> None:
+    """Both as a vial label and as a stock label: shortened with a mark, the code still read."""
+    from crossplan.genetics.notation import fly_json, read_genotype
+    from crossplan.plan.model import FlyRecord
+    from tests.reference.test_notation_corpus import UNDERSTOOD
+
+    text = max((text for text, _ in UNDERSTOOD), key=len)
+    female = read_genotype(text).female
+    assert female is not None
+    kept = FlyRecord.model_validate(fly_json(female))
+    plan = example_plan()
+    keep = plan.steps[3].keep.model_copy(update={"fly": kept, "members": [kept]})
+    plan.steps[3] = plan.steps[3].model_copy(update={"keep": keep})
+    pdf = labels_pdf(plan, SMALLEST, steps=["S04"], vials=[1])
+    assert codes(pdf, dpi) == ["crossplan/1 S04 v1/6 2027-03-22"]
+    assert ("…" in texts(pdf)[0]) == ("S04" in shortened_labels(plan, SMALLEST))
+    stock = StockLabel("PT177", text)
+    pdf = stock_labels_pdf([stock], SMALLEST)
+    assert codes(pdf, dpi) == [stock_code("PT177")]
+    assert ("…" in texts(pdf)[0]) == bool(shortened_stock_labels([stock], SMALLEST))
+
+
 def test_the_short_form_leaves_out_white_eyes_then_sites_and_says_so() -> None:
     plan = example_plan()
     keep = plan.steps[2].keep.model_copy(update={"rule": "males: curly wings"})
