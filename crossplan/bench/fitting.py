@@ -17,12 +17,13 @@ STEP = 0.25
 
 @dataclass(frozen=True, slots=True)
 class Fitted:
-    """Text as it will stand: size in points, lines, and whether all of it is there."""
+    """Text as it will stand: size in points, lines, whether all of it is there, and whether every word is unbroken."""
 
     size: float
     lines: tuple[Line, ...]
     whole: bool
     leading: float = LEADING
+    unbroken: bool = True
 
     @property
     def height(self) -> float:
@@ -75,7 +76,7 @@ def fit(
                     continue
                 lines = [line for text in texts for line in pages.wrap(text, size, width, bold, first)]
                 if len(lines) <= room:
-                    return Fitted(size, tuple(lines), True, leading)
+                    return Fitted(size, tuple(lines), True, leading, whole_words)
     return _cut(pages, flowing, width, height, sizes[-1], bold, leading, first)
 
 
@@ -94,7 +95,7 @@ def _cut(
     while high - low > 1:
         middle = (low + high) // 2
         low, high = (middle, high) if len(lines(middle)) <= room else (low, middle)
-    return Fitted(size, tuple(lines(low)), False, leading)
+    return Fitted(size, tuple(lines(low)), False, leading, False)
 
 
 def _open_ended(text: str) -> str:

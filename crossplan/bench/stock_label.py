@@ -60,7 +60,7 @@ class StockFace:
         self.place_top = self.height - self.edge - self.place.height
         beside = self._fit(self.stock.genotype, self.text_width, self.place_top - top, 9.0)
         below = self._fit(self.stock.genotype, across, self.place_top - max(top, self._code_bottom), 9.0)
-        self.below = below.whole and (not beside.whole or below.size > beside.size)
+        self.below = (below.whole, below.unbroken, below.size) > (beside.whole, beside.unbroken, beside.size)
         self.genotype = below if self.below else beside
         self.genotype_top = self.place_top - below.height if self.below else top
 

@@ -9,6 +9,9 @@ import typer
 
 from crossplan.cli.render import console, print_json
 
+#: how many shortened labels are named before the rest is only counted
+SHOWN = 20
+
 
 def register(app: typer.Typer) -> None:
     """Add the command to the program."""
@@ -60,7 +63,8 @@ def labels(
         return
     console().print(f"wrote {out}", markup=False)
     if short:
-        console().print(f"shortened, marked on the label: {', '.join(short)}", markup=False)
+        more = f" and {len(short) - SHOWN} more (--json names all)" if len(short) > SHOWN else ""
+        console().print(f"shortened, marked on the label: {', '.join(short[:SHOWN])}{more}", markup=False)
 
 
 def _list_layouts(as_json: bool) -> None:

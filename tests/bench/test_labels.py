@@ -219,6 +219,11 @@ def test_a_stock_label_says_name_place_and_genotype() -> None:
     assert read_vial_code(stock_code("x v1/2 undated")) is None
 
 
+def test_a_name_is_not_broken_where_it_fits_below_the_code() -> None:
+    stock = StockLabel("PT024", "w[1118] P{y[+t7.7] w[+mC]=UAS-CsChrimson}attP18")
+    assert "w+mC=UAS-CsChrimson}attP18" in texts(stock_labels_pdf([stock], SMALLEST))[0]
+
+
 def test_a_stock_that_is_not_on_the_list_is_refused() -> None:
     with pytest.raises(InputError, match="no PT999"):
         stock_labels_pdf(STOCKS, DEFAULT, names=["PT999"])
